@@ -1,0 +1,21 @@
+#include "image/read.h"
+
+#include "image/file_type.h"
+#include "image/input_checks.h"
+#include "image/read_opencv.h"
+#include "image/read_tiff.h"
+
+namespace stillfield {
+
+int count_pages(const std::filesystem::path& path) {
+  return file_type(path) == FileType::kTiff ? count_tiff_pages(path) : 1;
+}
+
+Field read_page(const std::filesystem::path& path, int page, const ReadLimits& limits) {
+  const FileType type = file_type(path);
+  if (type == FileType::kTiff) return read_tiff_page(path, page, limits);
+  check_page(path, page, 1);
+  return read_opencv(path, type, limits);
+}
+
+}  // namespace stillfield

@@ -1,0 +1,29 @@
+// Reading image files: TIFF and BigTIFF, PNG, JPEG, BMP, PNM (PBM, PGM, PPM).
+//
+// The kind of a file is decided by its first bytes, never by its name. Sizes are taken from the
+// header and checked before any pixel memory is asked for.
+// Colour   becomes luminance, with a note; an alpha channel is ignored, with a note
+// Pages    count from 0; reduced-resolution copies and masks inside a TIFF are not pages
+// Errors   Error(kInput), one sentence: file, what is wrong, what to do
+// Threads  safe on different or equal files
+#ifndef STILLFIELD_IMAGE_READ_H_
+#define STILLFIELD_IMAGE_READ_H_
+
+#include <cstdint>
+#include <filesystem>
+
+#include "image/field.h"
+
+namespace stillfield {
+
+struct ReadLimits {
+  std::int64_t max_pixels = std::int64_t{1} << 30;  // width x height of one page
+};
+
+int count_pages(const std::filesystem::path& path);
+
+Field read_page(const std::filesystem::path& path, int page = 0, const ReadLimits& limits = {});
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_IMAGE_READ_H_

@@ -1,0 +1,84 @@
+#include "image/read_opencv.h"
+
+#include <algorithm>
+#include <opencv2/core/utils/logger.hpp>
+#include <opencv2/imgcodecs.hpp>
+
+#include "image/luminance.h"
+#include "image/raster_header.h"
+
+namespace stillfield {
+namespace {
+
+constexpr std::int64_t kMaxPixels = std::int64_t{1} << 30;  // OpenCV's own limit
+
+RasterHeader check(const std::filesystem::path& file, FileType type, const ReadLimits& limits,
+                   std::vector<std::byte>& bytes) {
+  if (type == FileType::kJpeg) return check_jpeg(file, bytes, limits);
+  if (type == FileType::kBmp) return check_bmp(file, bytes, limits);
+  std::vector<std::byte> plain;
+  const auto header = type == FileType::kPng ? check_png(file, bytes, limits, plain)
+                                             : check_pnm(file, bytes, limits, plain);
+  bytes.swap(plain);
+  return header;
+}
+
+cv::Mat decode(const std::filesystem::path& file, std::vector<std::byte>& bytes) {
+  static const auto silenced =
+      cv::utils::logging::setLogLevel(cv::utils::logging::LOG_LEVEL_SILENT);
+  static_cast<void>(silenced);
+  cv::Mat mat;
+  try {
+    const cv::Mat buffer(1, static_cast<int>(bytes.size()), CV_8UC1, bytes.data());
+    mat = cv::imdecode(buffer, cv::IMREAD_UNCHANGED);
+  } catch (const cv::Exception&) {
+    mat.release();
+  }
+  if (mat.empty()) {
+    throw_input(file,
+                std::string("the picture data are damaged and cannot be decoded") + kCopyAgain);
+  }
+  return mat;
+}
+
+template <typename T>
+void copy_row(const cv::Mat& mat, int y, int spread, float* out) {
+  const T* in = mat.ptr<T>(y);
+  const int channels = mat.channels();
+  for (int x = 0; x < mat.cols; ++x, in += channels) {
+    out[x] = channels == 1 ? static_cast<float>(in[0] / spread) : luminance(in[2], in[1], in[0]);
+  }
+}
+
+}  // namespace
+
+Field read_opencv(const std::filesystem::path& file, FileType type, const ReadLimits& limits) {
+  std::vector<std::byte> bytes = read_whole(file);
+  const ReadLimits tighter{std::min(limits.max_pixels, kMaxPixels)};
+  const RasterHeader header = check(file, type, tighter, bytes);
+  const cv::Mat mat = decode(file, bytes);
+  const bool known_layout = (mat.depth() == CV_8U || mat.depth() == CV_16U) &&
+                            (mat.channels() == 1 || mat.channels() >= 3);
+  if (mat.cols != header.width || mat.rows != header.height || !known_layout) {
+    throw_input(file, std::string("the picture is not what its header claims") + kCopyAgain);
+  }
+
+  Field field;
+  field.pixels = Volume<float>({mat.cols, mat.rows});
+  field.format = {SampleKind::kUnsigned, header.palette ? 8 : header.bits};
+  const bool colour_palette = header.palette && mat.channels() >= 3;
+  field.channels_in_file = header.channels;
+  if (colour_palette) field.notes.emplace_back(kPaletteNote);
+  if (!header.palette && header.channels >= 3) field.notes.emplace_back(kLuminanceNote);
+  if (header.alpha) field.notes.emplace_back(kAlphaNote);
+  for (int y = 0; y < mat.rows; ++y) {
+    if (mat.depth() == CV_8U) {
+      copy_row<std::uint8_t>(mat, y, header.spread, field.pixels.row(y));
+    } else {
+      copy_row<std::uint16_t>(mat, y, header.spread, field.pixels.row(y));
+    }
+  }
+  return field;
+}
+
+}  // namespace stillfield

@@ -1,0 +1,200 @@
+#include "image/read_tiff.h"
+
+#include <algorithm>
+#include <cmath>
+#include <limits>
+
+#include "image/file_bytes.h"
+#include "image/input_checks.h"
+#include "image/luminance.h"
+#include "image/tiff_handle.h"
+#include "image/tiff_layout.h"
+#include "image/tiff_samples.h"
+
+namespace stillfield {
+namespace {
+
+constexpr double kLargestExactInteger = 16777216;  // 2^24, for float
+
+bool is_page(TIFF* tiff) {
+  std::uint32_t kind = 0;
+  if (TIFFGetField(tiff, TIFFTAG_SUBFILETYPE, &kind) == 1) {
+    return (kind & (FILETYPE_REDUCEDIMAGE | FILETYPE_MASK)) == 0;
+  }
+  std::uint16_t old_kind = OFILETYPE_IMAGE;
+  return TIFFGetField(tiff, TIFFTAG_OSUBFILETYPE, &old_kind) != 1 ||
+         old_kind != OFILETYPE_REDUCEDIMAGE;
+}
+
+std::vector<std::uint64_t> page_offsets(const std::filesystem::path& file, TiffHandle& tiff) {
+  std::vector<std::uint64_t> offsets;
+  do {
+    if (is_page(tiff.get())) offsets.push_back(TIFFCurrentDirOffset(tiff.get()));
+    tiff.forget_messages();
+  } while (TIFFReadDirectory(tiff.get()) == 1);
+  if (!tiff.first_error().empty()) {
+    throw_input(file, "a TIFF directory cannot be read (" + tiff.first_error() + ")" + kCopyAgain);
+  }
+  if (offsets.empty()) {
+    throw_input(file, "the TIFF holds reduced copies or masks only; save the full image");
+  }
+  return offsets;
+}
+
+// Turns the decoded rows of blocks into pixels of a field.
+class PixelWriter {
+ public:
+  PixelWriter(TIFF* tiff, const TiffLayout& layout, Field& field) : layout_(layout), field_(field) {
+    const auto width = static_cast<std::size_t>(layout.block_width);
+    for (auto& samples : samples_) samples.resize(width);
+    if (!layout.palette) return;
+    std::uint16_t* table[3] = {};
+    if (TIFFGetField(tiff, TIFFTAG_COLORMAP, &table[0], &table[1], &table[2]) != 1) return;
+    for (int i = 0; i < 1 << layout.format.bits; ++i) {
+      palette_.push_back(luminance(table[0][i] / 257.0, table[1][i] / 257.0, table[2][i] / 257.0));
+    }
+  }
+
+  bool has_palette() const { return !palette_.empty(); }
+  bool rounded() const { return rounded_; }
+  std::int64_t infinite() const { return infinite_; }
+
+  // Row y of the image from column x0 on; planes[c] is the row of channel c, or planes[0] of all.
+  void write_row(const std::byte* const planes[3], int x0, int y, int count) {
+    const int used = layout_.colour ? 3 : 1;
+    const auto step = static_cast<std::size_t>(layout_.samples_in_block());
+    for (int c = 0; c < used; ++c) {
+      const bool own_plane = layout_.separate;
+      unpack_samples(planes[own_plane ? c : 0], layout_.format,
+                     own_plane ? 0 : static_cast<std::size_t>(c), step,
+                     static_cast<std::size_t>(count), samples_[c].data());
+    }
+    float* out = field_.pixels.row(y) + x0;
+    for (int x = 0; x < count; ++x) out[x] = pixel(static_cast<std::size_t>(x));
+  }
+
+ private:
+  float pixel(std::size_t x) {
+    double value = samples_[0][x];
+    if (layout_.colour) return finite(luminance(value, samples_[1][x], samples_[2][x]));
+    if (layout_.palette) return palette_[static_cast<std::size_t>(value)];
+    if (layout_.inverted) value = (1 << layout_.format.bits) - 1 - value;
+    const bool integer = layout_.format.kind != SampleKind::kFloat;
+    rounded_ |= integer && std::fabs(value) > kLargestExactInteger;
+    return finite(static_cast<float>(value));
+  }
+
+  float finite(float value) {
+    if (!std::isinf(value)) return value;
+    ++infinite_;
+    return std::numeric_limits<float>::quiet_NaN();
+  }
+
+  const TiffLayout& layout_;
+  Field& field_;
+  std::vector<double> samples_[3];
+  std::vector<float> palette_;
+  bool rounded_ = false;
+  std::int64_t infinite_ = 0;
+};
+
+// Decodes strip or tile `block` into `buffer`, whose size is that of the decoded data.
+void decode_block(const std::filesystem::path& file, TiffHandle& tiff, bool tiled,
+                  std::uint32_t block, std::vector<std::byte>& buffer) {
+  const auto size = static_cast<tmsize_t>(buffer.size());
+  const tmsize_t got = tiled ? TIFFReadEncodedTile(tiff.get(), block, buffer.data(), size)
+                             : TIFFReadEncodedStrip(tiff.get(), block, buffer.data(), size);
+  if (got == size) return;
+  const std::string& why = tiff.first_error();
+  throw_input(file, "strip or tile " + std::to_string(block + 1) + " of the TIFF is damaged (" +
+                        (why.empty() ? "too little data" : why) + ")" + kCopyAgain);
+}
+
+void read_pixels(const std::filesystem::path& file, TiffHandle& tiff, const TiffLayout& layout,
+                 PixelWriter& writer) {
+  const int planes = layout.separate && layout.colour ? 3 : 1;
+  const auto across = (layout.width + layout.block_width - 1) / layout.block_width;
+  const auto down = (layout.height + layout.block_height - 1) / layout.block_height;
+  std::vector<std::byte> buffers[3];
+  for (std::int64_t by = 0; by < down; ++by) {
+    const std::int64_t y0 = by * layout.block_height;
+    const std::int64_t rows = std::min(layout.block_height, layout.height - y0);
+    const std::int64_t stored_rows = layout.tiled ? layout.block_height : rows;
+    for (std::int64_t bx = 0; bx < across; ++bx) {
+      for (int plane = 0; plane < planes; ++plane) {
+        const auto block = static_cast<std::uint32_t>((plane * down + by) * across + bx);
+        buffers[plane].resize(static_cast<std::size_t>(layout.row_bytes() * stored_rows));
+        decode_block(file, tiff, layout.tiled, block, buffers[plane]);
+      }
+      const std::int64_t x0 = bx * layout.block_width;
+      const auto count = static_cast<int>(std::min(layout.block_width, layout.width - x0));
+      for (std::int64_t y = 0; y < rows; ++y) {
+        const std::byte* row_planes[3] = {};
+        for (int plane = 0; plane < planes; ++plane) {
+          row_planes[plane] = buffers[plane].data() + y * layout.row_bytes();
+        }
+        writer.write_row(row_planes, static_cast<int>(x0), static_cast<int>(y0 + y), count);
+      }
+    }
+  }
+}
+
+void add_notes(const TiffHandle& tiff, const TiffLayout& layout, const PixelWriter& writer,
+               Field& field) {
+  std::uint16_t orientation = ORIENTATION_TOPLEFT;
+  TIFFGetField(tiff.get(), TIFFTAG_ORIENTATION, &orientation);
+  if (layout.colour) field.notes.emplace_back(kLuminanceNote);
+  if (layout.palette) field.notes.emplace_back(kPaletteNote);
+  if (layout.alpha) field.notes.emplace_back(kAlphaNote);
+  if (layout.inverted) field.notes.emplace_back("zero is white in the file: values inverted");
+  if (orientation != ORIENTATION_TOPLEFT) {
+    field.notes.emplace_back("orientation tag not applied: rows are in stored order");
+  }
+  if (writer.rounded()) {
+    field.notes.emplace_back("integers above 16777216 rounded to single precision");
+  }
+  if (writer.infinite() > 0) {
+    field.notes.push_back(std::to_string(writer.infinite()) +
+                          " infinite pixel(s) treated as missing");
+  }
+  if (!tiff.first_warning().empty()) {
+    field.notes.push_back("the TIFF decoder warns: " + tiff.first_warning());
+  }
+}
+
+}  // namespace
+
+int count_tiff_pages(const std::filesystem::path& file) {
+  TiffHandle tiff = TiffHandle::open(file);
+  return static_cast<int>(page_offsets(file, tiff).size());
+}
+
+Field read_tiff_page(const std::filesystem::path& file, int page, const ReadLimits& limits) {
+  TiffHandle tiff = TiffHandle::open(file);
+  const auto offsets = page_offsets(file, tiff);
+  check_page(file, page, static_cast<int>(offsets.size()));
+  if (TIFFSetSubDirectory(tiff.get(), offsets[static_cast<std::size_t>(page)]) != 1) {
+    throw_input(file, "page " + std::to_string(page + 1) + " of the TIFF cannot be read (" +
+                          tiff.first_error() + ")" + kCopyAgain);
+  }
+  const TiffLayout layout = tiff_layout(file, tiff, limits);
+  tiff.forget_messages();
+
+  Field field;
+  field.pixels = Volume<float>({static_cast<int>(layout.width), static_cast<int>(layout.height)});
+  field.format = layout.format;
+  field.channels_in_file = layout.channels;
+  field.pixel_size_um = tiff_pixel_size_um(tiff.get());
+  PixelWriter writer(tiff.get(), layout, field);
+  if (layout.palette) {
+    if (!writer.has_palette()) {
+      throw_input(file, std::string("the colour map of the TIFF is missing") + kCopyAgain);
+    }
+    field.format.bits = 8;
+  }
+  read_pixels(file, tiff, layout, writer);
+  add_notes(tiff, layout, writer, field);
+  return field;
+}
+
+}  // namespace stillfield

@@ -1,0 +1,15 @@
+// TIFF pages through libtiff. Pages count from 0 and leave out reduced-resolution copies and masks.
+#ifndef STILLFIELD_IMAGE_READ_TIFF_H_
+#define STILLFIELD_IMAGE_READ_TIFF_H_
+
+#include "image/read.h"
+
+namespace stillfield {
+
+int count_tiff_pages(const std::filesystem::path& file);
+
+Field read_tiff_page(const std::filesystem::path& file, int page, const ReadLimits& limits);
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_IMAGE_READ_TIFF_H_

@@ -1,0 +1,170 @@
+#include "image/walk.h"
+
+#include <algorithm>
+#include <set>
+#include <string_view>
+
+#include "core/error.h"
+#include "image/output_names.h"
+
+namespace stillfield {
+namespace {
+
+namespace fs = std::filesystem;
+
+constexpr std::string_view kExtensions[] = {".png", ".jpg", ".jpeg", ".bmp", ".pgm",
+                                            ".ppm", ".pnm", ".pbm",  ".tif", ".tiff"};
+
+[[noreturn]] void throw_path(ErrorKind kind, const fs::path& path, const std::string& what) {
+  throw Error(kind, path.string() + ": " + what);
+}
+
+std::string known_extensions() {
+  std::string list;
+  for (const auto extension : kExtensions) list.append(" ").append(extension.substr(1));
+  return list;
+}
+
+bool is_hidden(const fs::path& path) {
+  return path.filename().native().starts_with('.');
+}
+
+fs::path real_path(const fs::path& path) {
+  std::error_code error;
+  fs::path found = fs::weakly_canonical(path, error);
+  return error ? path.lexically_normal() : found;
+}
+
+// Whether `inner` is `outer` or lies below it; both canonical.
+bool is_within(const fs::path& inner, const fs::path& outer) {
+  return std::mismatch(outer.begin(), outer.end(), inner.begin(), inner.end()).first == outer.end();
+}
+
+std::vector<fs::path> sorted_entries(const fs::path& folder) {
+  std::error_code error;
+  std::vector<fs::path> entries;
+  fs::directory_iterator it(folder, error);
+  for (; !error && it != fs::directory_iterator(); it.increment(error))
+    entries.push_back(it->path());
+  if (error) {
+    throw_path(ErrorKind::kInput, folder,
+               "the folder cannot be listed (" + error.message() + "); change its access rights");
+  }
+  std::sort(entries.begin(), entries.end(),
+            [](const fs::path& a, const fs::path& b) { return a.native() < b.native(); });
+  return entries;
+}
+
+class Walker {
+ public:
+  explicit Walker(const fs::path& output_folder)
+      : output_folder_(output_folder.empty() ? fs::path() : real_path(output_folder)) {}
+
+  void add_file(const fs::path& path, const fs::path& relative) {
+    if (files_seen_.insert(real_path(path)).second) files_.push_back({path, relative, {}});
+  }
+
+  // `prefix` is where the folder's mirror starts below the output folder.
+  void add_folder(const fs::path& folder, const fs::path& prefix) {
+    const fs::path real = real_path(folder);
+    if (!output_folder_.empty() && real == output_folder_) {
+      throw_path(ErrorKind::kUsage, folder,
+                 "is both an input and the output folder; choose another output folder");
+    }
+    if (folders_seen_.contains(real)) return;
+    const std::size_t images_before = images_met_;
+    const std::size_t first = files_.size();
+    walk(folder, real, prefix);
+    std::sort(files_.begin() + static_cast<std::ptrdiff_t>(first), files_.end(),
+              [](const InputFile& a, const InputFile& b) {
+                return a.relative.generic_string() < b.relative.generic_string();
+              });
+    if (images_met_ == images_before) {
+      throw_path(ErrorKind::kInput, folder,
+                 "no image in this folder or below it; files ending in" + known_extensions() +
+                     " were looked for");
+    }
+  }
+
+  std::vector<InputFile> take() {
+    assign_output_names(files_);
+    return std::move(files_);
+  }
+
+ private:
+  void walk(const fs::path& folder, const fs::path& real, const fs::path& relative) {
+    if (!folders_seen_.insert(real).second) return;
+    for (const auto& entry : sorted_entries(folder)) {
+      if (is_hidden(entry)) continue;
+      std::error_code ignored;
+      if (fs::is_directory(entry, ignored)) {
+        walk_inner(entry, real, relative / entry.filename());
+      } else if (has_image_extension(entry)) {
+        ++images_met_;
+        add_file(entry, relative / entry.filename());
+      }
+    }
+  }
+
+  void walk_inner(const fs::path& folder, const fs::path& real_parent, const fs::path& relative) {
+    const fs::path real = real_path(folder);
+    const bool leads_back = is_within(real_parent, real);
+    const bool is_output = !output_folder_.empty() && real == output_folder_;
+    if (!leads_back && !is_output) walk(folder, real, relative);
+  }
+
+  fs::path output_folder_;
+  std::vector<InputFile> files_;
+  std::set<fs::path> files_seen_;    // canonical
+  std::set<fs::path> folders_seen_;  // canonical
+  std::size_t images_met_ = 0;       // in folders, duplicates too
+};
+
+// Own name of a folder, made unique among those handed out before.
+fs::path mirror_name(const fs::path& folder, std::set<std::string>& taken) {
+  const std::string own = real_path(folder).filename().string();
+  std::string name = own;
+  for (int n = 2; !taken.insert(name).second; ++n) name = own + "-" + std::to_string(n);
+  return name;
+}
+
+}  // namespace
+
+bool has_image_extension(const fs::path& path) {
+  std::string extension = path.extension().string();
+  for (char& c : extension) c = c >= 'A' && c <= 'Z' ? static_cast<char>(c - 'A' + 'a') : c;
+  return std::find(std::begin(kExtensions), std::end(kExtensions), extension) !=
+         std::end(kExtensions);
+}
+
+std::vector<InputFile> find_inputs(const std::vector<fs::path>& inputs,
+                                   const fs::path& output_folder) {
+  std::set<fs::path> folders;
+  for (const auto& input : inputs) {
+    std::error_code error;
+    const fs::file_status status = fs::status(input, error);
+    if (status.type() == fs::file_type::not_found) {
+      throw_path(ErrorKind::kInput, input,
+                 "there is no such file or folder; check the spelling of the path");
+    }
+    if (!fs::status_known(status)) {
+      throw_path(ErrorKind::kInput, input,
+                 "cannot be looked at (" + error.message() + "); check its access rights");
+    }
+    if (fs::is_directory(status)) folders.insert(real_path(input));
+  }
+
+  Walker walker(output_folder);
+  std::set<std::string> names;
+  std::set<fs::path> mirrored;
+  for (const auto& input : inputs) {
+    if (!fs::is_directory(input)) {
+      walker.add_file(input, input.filename());
+    } else if (mirrored.insert(real_path(input)).second) {
+      walker.add_folder(input, folders.size() > 1 ? mirror_name(input, names) : fs::path());
+    }
+  }
+  return walker.take();
+}
+
+}  // namespace stillfield

@@ -1,0 +1,60 @@
+// Writing results: TIFF for numbers, PNG for eyes. The same pixels give the same bytes.
+//
+// TIFF     deflate at a fixed level through zlib, little-endian, strips of about 256 KiB, no date;
+//          predictor none for 8 bits, horizontal for 16 bits, floating-point for floats; BigTIFF
+//          from 3.5 GB of pixels on; a view of depth > 1 becomes a page a plane
+// Errors   Error(kOutput), one sentence; nothing is left behind (see atomic_file.h)
+#ifndef STILLFIELD_IMAGE_WRITE_H_
+#define STILLFIELD_IMAGE_WRITE_H_
+
+#include <cstddef>
+#include <cstdint>
+#include <filesystem>
+#include <optional>
+#include <string>
+#include <vector>
+
+#include "core/volume.h"
+
+namespace stillfield {
+
+struct TiffOptions {
+  std::optional<double> pixel_size_um;  // goes to the resolution tags, in pixels a centimetre
+  std::string description;              // ImageDescription of the first page; empty = no tag
+};
+
+template <typename T>
+struct TiffPage {
+  View<const T> pixels;
+  std::string name;  // tag PageName; empty = no tag
+};
+
+void write_tiff(const std::filesystem::path& path, View<const std::uint8_t> image,
+                const TiffOptions& options = {});
+void write_tiff(const std::filesystem::path& path, View<const std::uint16_t> image,
+                const TiffOptions& options = {});
+void write_tiff(const std::filesystem::path& path, View<const float> image,
+                const TiffOptions& options = {});
+
+void write_tiff(const std::filesystem::path& path, const std::vector<TiffPage<std::uint8_t>>& pages,
+                const TiffOptions& options = {});
+void write_tiff(const std::filesystem::path& path,
+                const std::vector<TiffPage<std::uint16_t>>& pages, const TiffOptions& options = {});
+void write_tiff(const std::filesystem::path& path, const std::vector<TiffPage<float>>& pages,
+                const TiffOptions& options = {});
+
+// Three planes of equal size.
+struct RgbView {
+  View<const std::uint8_t> red;
+  View<const std::uint8_t> green;
+  View<const std::uint8_t> blue;
+};
+
+std::vector<std::byte> encode_png(View<const std::uint8_t> grey);
+std::vector<std::byte> encode_png(const RgbView& colour);
+void write_png(const std::filesystem::path& path, View<const std::uint8_t> grey);
+void write_png(const std::filesystem::path& path, const RgbView& colour);
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_IMAGE_WRITE_H_

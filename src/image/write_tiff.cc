@@ -1,0 +1,141 @@
+#include <algorithm>
+#include <cstring>
+#include <type_traits>
+
+#include "core/error.h"
+#include "image/atomic_file.h"
+#include "image/tiff_handle.h"
+#include "image/write.h"
+
+namespace stillfield {
+namespace {
+
+// Level 1: level 6 took twice (float) to eight times (16 bits) as long for files 2-12 % smaller,
+// measured on 2048 x 2048 pixels of smooth structure with noise.
+constexpr int kDeflateLevel = 1;
+constexpr std::int64_t kStripBytes = 256 << 10;
+constexpr std::int64_t kBigTiffBytes = 3500000000;  // classic TIFF ends at 2^32
+
+template <typename T>
+int predictor() {
+  if (std::is_floating_point_v<T>) return PREDICTOR_FLOATINGPOINT;
+  return sizeof(T) > 1 ? PREDICTOR_HORIZONTAL : PREDICTOR_NONE;
+}
+
+[[noreturn]] void fail(const std::filesystem::path& path, const std::string& why) {
+  throw Error(ErrorKind::kOutput, path.string() + ": writing the TIFF failed (" +
+                                      (why.empty() ? "unknown reason" : why) +
+                                      "); check the free space and the output folder");
+}
+
+void set_resolution(TIFF* tiff, double pixel_size_um) {
+  const double per_centimetre = 10000.0 / pixel_size_um;
+  TIFFSetField(tiff, TIFFTAG_XRESOLUTION, per_centimetre);
+  TIFFSetField(tiff, TIFFTAG_YRESOLUTION, per_centimetre);
+  TIFFSetField(tiff, TIFFTAG_RESOLUTIONUNIT, RESUNIT_CENTIMETER);
+}
+
+template <typename T>
+void set_tags(TIFF* tiff, const View<const T>& plane, std::uint32_t rows_per_strip) {
+  TIFFSetField(tiff, TIFFTAG_IMAGEWIDTH, static_cast<std::uint32_t>(plane.width()));
+  TIFFSetField(tiff, TIFFTAG_IMAGELENGTH, static_cast<std::uint32_t>(plane.height()));
+  TIFFSetField(tiff, TIFFTAG_BITSPERSAMPLE, static_cast<int>(8 * sizeof(T)));
+  TIFFSetField(tiff, TIFFTAG_SAMPLESPERPIXEL, 1);
+  TIFFSetField(tiff, TIFFTAG_SAMPLEFORMAT,
+               std::is_floating_point_v<T> ? SAMPLEFORMAT_IEEEFP : SAMPLEFORMAT_UINT);
+  TIFFSetField(tiff, TIFFTAG_PHOTOMETRIC, PHOTOMETRIC_MINISBLACK);
+  TIFFSetField(tiff, TIFFTAG_PLANARCONFIG, PLANARCONFIG_CONTIG);
+  TIFFSetField(tiff, TIFFTAG_ROWSPERSTRIP, rows_per_strip);
+  TIFFSetField(tiff, TIFFTAG_COMPRESSION, COMPRESSION_ADOBE_DEFLATE);
+  TIFFSetField(tiff, TIFFTAG_PREDICTOR, predictor<T>());
+  TIFFSetField(tiff, TIFFTAG_ZIPQUALITY, kDeflateLevel);
+  TIFFSetField(tiff, TIFFTAG_DEFLATE_SUBCODEC, DEFLATE_SUBCODEC_ZLIB);
+  TIFFSetField(tiff, TIFFTAG_SOFTWARE, "stillfield");
+}
+
+// Plane z of `view` as the current directory, whose tags are set.
+template <typename T>
+bool write_strips(TIFF* tiff, const View<const T>& view, int z, int rows_per_strip) {
+  const auto width = static_cast<std::size_t>(view.width());
+  std::vector<T> strip(width * static_cast<std::size_t>(rows_per_strip));
+  std::uint32_t index = 0;
+  for (int y0 = 0; y0 < view.height(); y0 += rows_per_strip, ++index) {
+    const int rows = std::min(rows_per_strip, view.height() - y0);
+    for (int y = 0; y < rows; ++y) {
+      std::memcpy(strip.data() + width * static_cast<std::size_t>(y), view.row(y0 + y, z),
+                  width * sizeof(T));
+    }
+    const auto size = static_cast<tmsize_t>(width * static_cast<std::size_t>(rows) * sizeof(T));
+    if (TIFFWriteEncodedStrip(tiff, index, strip.data(), size) != size) return false;
+  }
+  return TIFFWriteDirectory(tiff) == 1;
+}
+
+template <typename T>
+void write_pages(const std::filesystem::path& path, const std::vector<TiffPage<T>>& pages,
+                 const TiffOptions& options) {
+  std::int64_t total_bytes = 0;
+  int total_pages = 0;
+  for (const auto& page : pages) {
+    total_bytes += page.pixels.extent().sites() * static_cast<std::int64_t>(sizeof(T));
+    total_pages += page.pixels.depth();
+    if (page.pixels.extent().sites() == 0) fail(path, "a page has no pixels");
+  }
+  if (total_pages == 0) fail(path, "there is no page to write");
+
+  AtomicFile file(path);
+  TiffHandle tiff = TiffHandle::create(file.descriptor(), path, total_bytes > kBigTiffBytes);
+  int number = 0;
+  for (const auto& page : pages) {
+    const std::int64_t row_bytes = page.pixels.width() * static_cast<std::int64_t>(sizeof(T));
+    const auto rows = static_cast<int>(
+        std::clamp<std::int64_t>(kStripBytes / row_bytes, 1, page.pixels.height()));
+    for (int z = 0; z < page.pixels.depth(); ++z, ++number) {
+      set_tags(tiff.get(), page.pixels, static_cast<std::uint32_t>(rows));
+      if (options.pixel_size_um) set_resolution(tiff.get(), *options.pixel_size_um);
+      if (number == 0 && !options.description.empty()) {
+        TIFFSetField(tiff.get(), TIFFTAG_IMAGEDESCRIPTION, options.description.c_str());
+      }
+      if (!page.name.empty()) TIFFSetField(tiff.get(), TIFFTAG_PAGENAME, page.name.c_str());
+      if (total_pages > 1) TIFFSetField(tiff.get(), TIFFTAG_SUBFILETYPE, FILETYPE_PAGE);
+      if (!write_strips(tiff.get(), page.pixels, z, rows)) fail(path, tiff.first_error());
+    }
+  }
+  tiff.close();
+  if (!tiff.first_error().empty()) fail(path, tiff.first_error());
+  file.commit();
+}
+
+}  // namespace
+
+void write_tiff(const std::filesystem::path& path, View<const std::uint8_t> image,
+                const TiffOptions& options) {
+  write_pages<std::uint8_t>(path, {{image, ""}}, options);
+}
+
+void write_tiff(const std::filesystem::path& path, View<const std::uint16_t> image,
+                const TiffOptions& options) {
+  write_pages<std::uint16_t>(path, {{image, ""}}, options);
+}
+
+void write_tiff(const std::filesystem::path& path, View<const float> image,
+                const TiffOptions& options) {
+  write_pages<float>(path, {{image, ""}}, options);
+}
+
+void write_tiff(const std::filesystem::path& path, const std::vector<TiffPage<std::uint8_t>>& pages,
+                const TiffOptions& options) {
+  write_pages(path, pages, options);
+}
+
+void write_tiff(const std::filesystem::path& path,
+                const std::vector<TiffPage<std::uint16_t>>& pages, const TiffOptions& options) {
+  write_pages(path, pages, options);
+}
+
+void write_tiff(const std::filesystem::path& path, const std::vector<TiffPage<float>>& pages,
+                const TiffOptions& options) {
+  write_pages(path, pages, options);
+}
+
+}  // namespace stillfield

@@ -1,0 +1,37 @@
+// The posterior sample of one label field, and what is known about its quality.
+#ifndef STILLFIELD_JOB_LABEL_SAMPLING_H_
+#define STILLFIELD_JOB_LABEL_SAMPLING_H_
+
+#include <memory>
+#include <string>
+#include <vector>
+
+#include "diagnose/verdict.h"
+#include "job/settings.h"
+#include "model/grey_levels.h"
+#include "posterior/label_counts.h"
+#include "posterior/traces.h"
+#include "sampler/coupling_search.h"
+
+namespace stillfield {
+
+struct LabelSampling {
+  std::unique_ptr<Colouring> colouring;  // the counts refer to it
+  std::unique_ptr<LabelCounts> counts;
+  std::unique_ptr<Traces> traces;
+  LabelPrior prior;                      // of the last block; fixed while sampling unless sampled
+  std::vector<CouplingScore> coupling_ladder;  // --coupling auto: what was tried
+  std::vector<NamedSummary> scalars;     // in the order of the traces
+  ProbabilityQuality probability;
+  Verdict verdict;
+  double log_partition_hysteresis = 0.0;
+  int adapting_sweeps = 0;
+  int warming_sweeps = 0;
+  int sampling_sweeps = 0;
+  bool warm_up_forced = false;
+  bool stopped_by_limit = false;
+};
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_JOB_LABEL_SAMPLING_H_

@@ -1,0 +1,29 @@
+// How a running job tells the outside where it is, and how it is told to stop.
+#ifndef STILLFIELD_JOB_OBSERVER_H_
+#define STILLFIELD_JOB_OBSERVER_H_
+
+#include <string>
+
+#include "sampler/schedule.h"
+
+namespace stillfield {
+
+class JobObserver {
+ public:
+  virtual ~JobObserver() = default;
+
+  // A field (one page of a file) begins: its number of all, from 0, and its name.
+  virtual void field_started(int /*number*/, int /*of*/, const std::string& /*name*/) {}
+  // Every chain has made `sweeps` sweeps in all.
+  virtual void swept(Stage /*stage*/, int /*sweeps*/) {}
+  virtual void field_finished(const std::string& /*name*/, bool /*converged*/) {}
+  virtual void field_skipped(const std::string& /*name*/) {}
+  virtual void field_failed(const std::string& /*name*/, const std::string& /*sentence*/) {}
+
+  // Asked between blocks of sweeps.
+  virtual bool stop_requested() const { return false; }
+};
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_JOB_OBSERVER_H_

@@ -1,0 +1,151 @@
+#include "job/restore_one.h"
+
+#include <algorithm>
+#include <optional>
+#include <string>
+
+#include "core/error.h"
+#include "diagnose/summary.h"
+#include "sampler/path_sampling.h"
+#include "sampler/starts.h"
+#include "sampler/sweep.h"
+
+namespace stillfield {
+namespace {
+
+// Below this size one image cannot keep two threads busy: whole chains run side by side instead.
+constexpr std::int64_t kRowParallelPixels = 320 * 320;
+constexpr double kWarmRhat = 1.1;    // chains agree well enough to start counting
+constexpr int kVisitsLimit = 255;    // visits are counted in bytes
+
+std::string scalar_name(const Trace& trace) {
+  return trace.label == 0 ? trace.name : trace.name + " of class " + std::to_string(trace.label);
+}
+
+std::vector<NamedSummary> summarise_all(const Traces& traces) {
+  std::vector<NamedSummary> result;
+  for (const Trace& t : traces.all()) result.push_back({scalar_name(t), summarise(Draws(t.chains))});
+  return result;
+}
+
+// Warm-up is over when the chains agree about every scalar in the second half of the window.
+bool chains_agree(const Traces& traces) {
+  for (const Trace& t : traces.all()) {
+    std::vector<std::vector<double>> half;
+    for (const auto& chain : t.chains) {
+      half.emplace_back(chain.begin() + static_cast<std::ptrdiff_t>(chain.size() / 2), chain.end());
+    }
+    const double rhat = summarise(Draws(half)).rhat;
+    if (rhat > kWarmRhat) return false;  // NaN (all draws equal) is agreement
+  }
+  return true;
+}
+
+void check_grey_levels(const GreyLevels& grey, int classes) {
+  const int distinct = grey.distinct();
+  if (distinct == 1) {
+    throw Error(ErrorKind::kInput,
+                "every pixel has the same grey value, so there is nothing to tell apart; leave the "
+                "image out or check how it was taken");
+  }
+  if (distinct < classes) {
+    throw Error(ErrorKind::kInput, "only " + std::to_string(distinct) +
+                                       " grey levels occur, fewer than the " +
+                                       std::to_string(classes) + " classes asked for; use --classes " +
+                                       std::to_string(distinct) + " or fewer");
+  }
+}
+
+}  // namespace
+
+LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& settings,
+                          std::uint64_t image_seed, const Pool& pool, JobObserver& observer) {
+  check_grey_levels(grey, settings.classes);
+  LabelSampling run;
+  const Extent extent = grey.level.extent();
+  run.colouring = std::make_unique<Colouring>(extent, make_neighbourhood(settings.connectivity));
+  const Colouring& colouring = *run.colouring;
+  const ObservedField field = observe(colouring, grey);
+
+  std::vector<LabelChain> chains = start_chains(
+      field, {settings.classes, settings.chains, settings.shared_variance, settings.coupling, image_seed});
+  const GaussianPrior prior = default_prior(grey, chains.front().model.classes);
+  const bool sampled = settings.coupling.mode == CouplingMode::kSampled;
+  std::optional<LogPartition> log_partition;
+  if (sampled) {
+    log_partition = integrate_log_partition(extent, colouring.neighbourhood(), settings.classes,
+                                            settings.seed, pool);
+    run.log_partition_hysteresis = log_partition->hysteresis;
+  }
+  CouplingAdaptation adaptation(field, prior);
+  Schedule schedule(settings.schedule, settings.coupling.mode == CouplingMode::kAuto);
+  run.traces = std::make_unique<Traces>(settings.classes, settings.chains, sampled);
+  run.counts = std::make_unique<LabelCounts>(colouring, settings.classes, settings.chains,
+                                             schedule.first_part());
+
+  const Pool serial(1);
+  const bool side_by_side = extent.sites() < kRowParallelPixels && pool.threads() > 1;
+  std::vector<WeightPlanes> weights(side_by_side ? chains.size() : 1);
+
+  // One block of one chain: labels given the parameters, then parameters given the labels.
+  const auto advance = [&](int c, WeightPlanes& planes, const Pool& inner) {
+    LabelChain& chain = chains[static_cast<std::size_t>(c)];
+    prepare_weights(field, chain.model, inner, planes);
+    sweep_labels(colouring, planes, schedule.sweeps_a_block(), Purpose::kLabels, inner, chain);
+    total_labels(field, inner, chain);
+    RandomStream random(chain.key, Purpose::kParameters, chain.sweeps_done);
+    draw_gaussian_classes(grey, chain.totals.classes, prior, random, chain.model.classes);
+    if (sampled) {
+      chain.model.prior.beta = draw_coupling(
+          *log_partition, chain.totals.weighted_pairs(colouring.neighbourhood()), random);
+    }
+    if (schedule.stage() != Stage::kAdapting) {
+      run.traces->record(c, chain, colouring.neighbourhood());
+    }
+    if (chain.visits_pending + schedule.sweeps_a_block() > kVisitsLimit) run.counts->take(c, chain);
+  };
+
+  while (schedule.stage() != Stage::kDone) {
+    if (observer.stop_requested()) throw Error(ErrorKind::kInterrupt, "stopped on request");
+    if (side_by_side) {
+      pool.for_each(settings.chains, [&](int c) { advance(c, weights[static_cast<std::size_t>(c)], serial); });
+    } else {
+      for (int c = 0; c < settings.chains; ++c) advance(c, weights.front(), pool);
+    }
+    schedule.block_done();
+    observer.swept(schedule.stage(), static_cast<int>(chains.front().sweeps_done));
+
+    if (schedule.stage() == Stage::kAdapting) {
+      adaptation.adapt(chains, pool);
+      if (adaptation.settled()) schedule.coupling_settled();
+    } else if (schedule.look_at_warm_up()) {
+      schedule.warm_up_judged(chains_agree(*run.traces));
+      if (schedule.stage() == Stage::kSampling) {
+        run.traces->clear();
+        for (LabelChain& chain : chains) {
+          chain.visits = AlignedBuffer<std::uint8_t>(colouring.plane_elements() *
+                                                     static_cast<std::size_t>(settings.classes - 1));
+        }
+      }
+    } else if (schedule.look_at_sampling()) {
+      for (int c = 0; c < settings.chains; ++c) {
+        run.counts->take(c, chains[static_cast<std::size_t>(c)]);
+      }
+      run.probability = run.counts->quality(pool);
+      run.scalars = summarise_all(*run.traces);
+      run.verdict = judge_convergence(run.scalars, run.probability.mcse, settings.target);
+      run.counts->merge_parts();
+      schedule.sampling_judged(run.verdict.converged);
+    }
+  }
+  run.prior = chains.front().model.prior;
+  run.coupling_ladder = adaptation.choice().ladder;
+  run.adapting_sweeps = schedule.adapting_sweeps();
+  run.warming_sweeps = schedule.warming_sweeps();
+  run.sampling_sweeps = schedule.sampling_sweeps();
+  run.warm_up_forced = schedule.warm_up_forced();
+  run.stopped_by_limit = schedule.stopped_by_limit();
+  return run;
+}
+
+}  // namespace stillfield

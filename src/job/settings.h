@@ -1,0 +1,39 @@
+// What a run of `segment` is asked to do.
+#ifndef STILLFIELD_JOB_SETTINGS_H_
+#define STILLFIELD_JOB_SETTINGS_H_
+
+#include <cstdint>
+#include <filesystem>
+
+#include "diagnose/verdict.h"
+#include "image/read.h"
+#include "model/neighbourhood.h"
+#include "sampler/coupling.h"
+#include "sampler/schedule.h"
+
+namespace stillfield {
+
+// Settings that change results; all of them stand in the record.
+struct SegmentSettings {
+  int classes = 2;                                       // 2..64
+  Connectivity connectivity = Connectivity::kFour;
+  CouplingSettings coupling;
+  bool shared_variance = false;
+  int chains = 4;                                        // 2..16
+  std::uint64_t seed = 1;
+  ScheduleSettings schedule;
+  ConvergenceTarget target;
+};
+
+// Settings that do not.
+struct RunSettings {
+  std::filesystem::path output;
+  int threads = 1;
+  bool redo = false;    // do again what is finished
+  bool strict = false;  // not converged counts in the exit code
+  ReadLimits limits;
+};
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_JOB_SETTINGS_H_

@@ -1,0 +1,27 @@
+// A measurement from the trace of its value over the draws.
+//
+// Maths    posterior mean, sd and equal-tailed intervals, MCSE, rank-normalised split R-hat, the
+//          smaller of bulk and tail ESS (diagnose/summary.h); plain_estimate is the posterior mean
+// Input    draws in `unit`; label 0 = whole image
+// Output   every number NaN for fewer than 4 draws a chain or a draw that is not finite
+#ifndef STILLFIELD_MEASURE_FROM_TRACE_H_
+#define STILLFIELD_MEASURE_FROM_TRACE_H_
+
+#include <string>
+
+#include "diagnose/draws.h"
+#include "diagnose/summary.h"
+#include "measure/measurement.h"
+
+namespace stillfield {
+
+Measurement measurement_from_trace(std::string name, int label, std::string unit,
+                                   const Draws& draws);
+
+// The same from a summary that the caller already has.
+Measurement measurement_from_summary(std::string name, int label, std::string unit,
+                                     const TraceSummary& summary);
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_MEASURE_FROM_TRACE_H_

@@ -1,0 +1,39 @@
+// Recorded scalars of a run: one value a block, chain and quantity.
+#ifndef STILLFIELD_POSTERIOR_TRACES_H_
+#define STILLFIELD_POSTERIOR_TRACES_H_
+
+#include <string>
+#include <vector>
+
+#include "sampler/label_chain.h"
+
+namespace stillfield {
+
+struct Trace {
+  std::string name;                          // area_fraction, class_mean, class_sd, ...
+  int label = 0;                             // class 1..K; 0: the whole image
+  std::vector<std::vector<double>> chains;   // [chain][draw]
+};
+
+class Traces {
+ public:
+  Traces(int classes, int chains, bool with_coupling);
+
+  // Adds the current state of one chain. Different chains may record at the same time.
+  void record(int chain_number, const LabelChain& chain, const Neighbourhood& neighbourhood);
+
+  // Forgets everything recorded so far.
+  void clear();
+
+  std::size_t draws() const { return traces_.front().chains.front().size(); }
+  const std::vector<Trace>& all() const { return traces_; }
+
+ private:
+  int classes_;
+  bool with_coupling_;
+  std::vector<Trace> traces_;
+};
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_POSTERIOR_TRACES_H_

@@ -1,0 +1,171 @@
+#include "sampler/sweep.h"
+
+#include <algorithm>
+#include <cmath>
+#include <mutex>
+
+#include "core/elementary.h"
+#include "simd/label_statistics.h"
+
+namespace stillfield {
+namespace {
+
+// A band worth a task: some 20 000 pixels.
+constexpr int kSitesPerTask = 20000;
+
+// Calls body(slice, first_row, rows) over all rows of one colour, in parallel, in pairs of rows.
+template <class Body>
+void for_row_pairs(const Colouring& c, int colour, const Pool& pool, const Body& body) {
+  const int pairs = (c.rows(colour) + 1) / 2;
+  if (pairs == 0) return;
+  const int grain = std::max(1, kSitesPerTask / (8 * c.words()));
+  pool.for_bands(c.slices(colour) * pairs, grain, [&](int first, int last) {
+    while (first < last) {
+      const int slice = first / pairs;
+      const int begin = first % pairs;
+      const int end = std::min(pairs, begin + (last - first));
+      body(slice, 2 * begin, std::min(2 * end, c.rows(colour)) - 2 * begin);
+      first += end - begin;
+    }
+  });
+}
+
+// Label 0 has fewer neighbours at the border than the two-label kernel's table assumes: the ratio
+// is corrected by exp(-beta * missing weight).
+double missing_weight(const Colouring& c, int x, int y, int z) {
+  const Extent& e = c.extent();
+  double sum = 0.0;
+  for (const NeighbourRing& ring : c.neighbourhood().rings) {
+    int missing = 0;
+    for (const Displacement& d : ring.neighbours) {
+      missing += x + d.x < 0 || x + d.x >= e.width || y + d.y < 0 || y + d.y >= e.height ||
+                 z + d.z < 0 || z + d.z >= e.depth;
+    }
+    sum += ring.weight * missing;
+  }
+  return sum;
+}
+
+void correct_border(const Colouring& c, double beta, int colour, int slice, int row,
+                    float* weights) {
+  const int y = c.y_of(colour, row);
+  const int z = c.z_of(colour, slice);
+  const int first = c.first_x(colour, slice, row);
+  const int sites = c.sites(colour, slice, row);
+  const Extent& e = c.extent();
+  const auto correct = [&](int j) {
+    const double missing = missing_weight(c, first + 2 * j, y, z);
+    if (missing > 0.0) weights[j] *= static_cast<float>(exact_exp(-beta * missing));
+  };
+  const bool edge_row = y == 0 || y == e.height - 1;
+  const bool edge_slice = c.volume() && (z == 0 || z == e.depth - 1);
+  if (edge_row || edge_slice) {
+    for (int j = 0; j < sites; ++j) correct(j);
+  } else if (sites > 0) {
+    correct(0);
+    if (sites > 1) correct(sites - 1);
+  }
+}
+
+}  // namespace
+
+void prepare_weights(const ObservedField& field, const LabelModel& model, const Pool& pool,
+                     WeightPlanes& weights) {
+  const Colouring& c = *field.colouring;
+  fill_weight_table(*field.grey, model, weights.table);
+  const auto planes = static_cast<std::size_t>(weights.table.planes);
+  if (weights.value.size() != planes * c.plane_elements()) {
+    weights.value = AlignedBuffer<float>(planes * c.plane_elements());
+  }
+  for (int colour = 0; colour < c.colours(); ++colour) {
+    for_row_pairs(c, colour, pool, [&](int slice, int first_row, int rows) {
+      for (int row = first_row; row < first_row + rows; ++row) {
+        const std::size_t at = c.plane_row(colour, slice, row);
+        const std::uint16_t* level = field.level.data() + at;
+        for (std::size_t k = 0; k < planes; ++k) {
+          const float* table = weights.table.value.data() + k * weights.table.levels;
+          float* out = weights.value.data() + k * c.plane_elements() + at;
+          for (int j = 0; j < 4 * c.words(); ++j) out[j] = table[level[j]];
+        }
+        if (model.size() == 2) {
+          correct_border(c, model.prior.beta, colour, slice, row, weights.value.data() + at);
+        }
+      }
+    });
+  }
+}
+
+void fill_ring_tables(const Neighbourhood& neighbourhood, double beta, bool two_labels,
+                      LabelBand& band) {
+  for (std::size_t r = 0; r < neighbourhood.rings.size(); ++r) {
+    Ring& ring = band.rings[r];
+    const double step = beta * neighbourhood.rings[r].weight;
+    for (int n = 0; n <= ring.neighbours; ++n) {
+      const double exponent = two_labels ? step * (ring.neighbours - 2 * n) : step * n;
+      ring.table[static_cast<std::size_t>(n)] = static_cast<float>(exact_exp(exponent));
+    }
+  }
+}
+
+void sweep_labels(const Colouring& c, const WeightPlanes& weights, int sweeps, Purpose purpose,
+                  const Pool& pool, LabelChain& chain) {
+  const bool two_labels = chain.model.size() == 2;
+  const bool counting = !chain.visits.empty();
+  for (int s = 0; s < sweeps; ++s) {
+    for (int colour = 0; colour < c.colours(); ++colour) {
+      for_row_pairs(c, colour, pool, [&](int slice, int first_row, int rows) {
+        LabelBand band = c.band(colour, slice);
+        fill_ring_tables(c.neighbourhood(), chain.model.prior.beta, two_labels, band);
+        band.classes = chain.model.size();
+        band.first_row = first_row;
+        band.rows = rows;
+        band.labels = chain.labels.data() + c.label_row(colour, slice, 0);
+        band.weights = weights.value.data() + c.plane_row(colour, slice, 0);
+        band.counts = counting ? chain.visits.data() + c.plane_row(colour, slice, 0) : nullptr;
+        band.random.key = chain.key;
+        band.random.sweep = chain.sweeps_done;
+        band.random.word3 = counter_word3(purpose, static_cast<std::uint32_t>(colour),
+                                          static_cast<std::uint32_t>(slice));
+        if (two_labels) {
+          two_label_rows(band);
+        } else {
+          label_rows(band);
+        }
+      });
+    }
+    ++chain.sweeps_done;
+    if (counting) ++chain.visits_pending;
+  }
+}
+
+void total_labels(const ObservedField& field, const Pool& pool, LabelChain& chain) {
+  const Colouring& c = *field.colouring;
+  const int classes = chain.model.size();
+  LabelSums all(classes);
+  std::mutex merging;  // sums are integers: the order of merging does not matter
+  for (int colour = 0; colour < c.colours(); ++colour) {
+    for_row_pairs(c, colour, pool, [&](int slice, int first_row, int rows) {
+      LabelBand band = c.band(colour, slice);
+      band.classes = classes;
+      band.first_row = first_row;
+      band.rows = rows;
+      band.labels = chain.labels.data() + c.label_row(colour, slice, 0);
+      LabelSums part(classes);
+      sum_label_rows(band, field.level.data() + c.plane_row(colour, slice, 0),
+                     field.grey->missing(), part);
+      const std::lock_guard<std::mutex> lock(merging);
+      all.add(part);
+    });
+  }
+  chain.totals.classes.resize(static_cast<std::size_t>(classes));
+  for (std::size_t k = 0; k < static_cast<std::size_t>(classes); ++k) {
+    chain.totals.classes[k] = {all.sites[k], all.observed[k], all.level_sum[k],
+                               all.level_square_sum[k]};
+  }
+  chain.totals.equal_pairs.resize(c.neighbourhood().rings.size());
+  for (std::size_t r = 0; r < chain.totals.equal_pairs.size(); ++r) {
+    chain.totals.equal_pairs[r] = all.equal_ends[r] / 2;
+  }
+}
+
+}  // namespace stillfield

@@ -1,0 +1,25 @@
+# Runs GENERATOR with SEED into AGAIN and compares every file with IMAGES, in both directions.
+file(REMOVE_RECURSE "${AGAIN}")
+execute_process(COMMAND "${GENERATOR}" "${AGAIN}" "${SEED}" COMMAND_ERROR_IS_FATAL ANY)
+
+set(PICTURES *.png *.tif *.csv)
+file(GLOB_RECURSE MADE RELATIVE "${AGAIN}" "${AGAIN}/*")
+list(TRANSFORM PICTURES PREPEND "${IMAGES}/" OUTPUT_VARIABLE PATTERNS)
+file(GLOB_RECURSE KEPT RELATIVE "${IMAGES}" ${PATTERNS})
+list(SORT MADE)
+list(SORT KEPT)
+# Pictures at the top of images/ illustrate the documentation and are not the generator's.
+list(FILTER KEPT INCLUDE REGEX "/")
+if(NOT MADE OR NOT "${MADE}" STREQUAL "${KEPT}")
+  message(FATAL_ERROR "The generator makes\n  ${MADE}\nbut images/ holds\n  ${KEPT}")
+endif()
+
+foreach(NAME IN LISTS MADE)
+  file(SHA256 "${AGAIN}/${NAME}" NEW)
+  file(SHA256 "${IMAGES}/${NAME}" OLD)
+  if(NOT NEW STREQUAL OLD)
+    message(SEND_ERROR "${NAME} differs from the committed file")
+  endif()
+endforeach()
+list(LENGTH MADE COUNT)
+message(STATUS "${COUNT} files compared")
