@@ -1,7 +1,7 @@
 // Writing results: TIFF for numbers, PNG for eyes. The same pixels give the same bytes.
 //
 // TIFF     deflate at a fixed level through zlib, little-endian, strips of about 256 KiB, no date;
-//          predictor none for 8 bits, horizontal for 16 bits, floating-point for floats; BigTIFF
+//          predictor horizontal for 16 bits, none for 8 bits and floats (widely readable); BigTIFF
 //          from 3.5 GB of pixels on; a view of depth > 1 becomes a page a plane
 // Errors   Error(kOutput), one sentence; nothing is left behind (see atomic_file.h)
 #ifndef STILLFIELD_IMAGE_WRITE_H_

@@ -68,6 +68,11 @@ int Colouring::z_of(int colour, int slice) const {
   return colours_ == 8 ? 2 * slice + (colour >> 2 & 1) : slice;
 }
 
+std::uint32_t Colouring::random_slice(int slice) const {
+  const std::int64_t first = colours_ == 8 ? offset_.z / 2 : offset_.z;
+  return static_cast<std::uint32_t>(first + slice);
+}
+
 Site Colouring::site(int x, int y, int z) const {
   if (!by_blocks()) return {(x + y + z) & 1, z, y, x >> 1};
   const int colour = (x & 1) | (y & 1) << 1;

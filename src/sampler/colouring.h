@@ -49,6 +49,8 @@ class Colouring {
   int first_x(int colour, int slice, int row) const;
   int y_of(int colour, int row) const;
   int z_of(int colour, int slice) const;
+  // Slice number that random words are counted by: that of the whole grid.
+  std::uint32_t random_slice(int slice) const;
 
   // Label storage: bytes in all, and the byte of word 0 of a row. Rows -1 and rows() are guards.
   std::size_t label_bytes() const { return label_bytes_; }

@@ -40,7 +40,7 @@ class CouplingAdaptation {
   static constexpr int kMinSteps = 60;
   static constexpr int kMaxSteps = 160;
   static constexpr int kWindow = 15;
-  static constexpr double kSettled = 0.01;  // largest change of alpha over kWindow steps
+  static constexpr double kSettled = 0.02;  // largest change of alpha over kWindow steps
 
  private:
   const ObservedField* field_;

@@ -13,20 +13,25 @@
 namespace stillfield {
 namespace {
 
-// Couplings tried, as multiples of the lattice's transition; walked from the strongest down.
+// Couplings tried, as multiples of the lattice's transition; walked upwards, because a field
+// that was frozen by a strong coupling takes long to thaw.
 constexpr std::array<double, 8> kLadder{0.85, 1.0, 1.2, 1.4, 1.65, 1.95, 2.3, 2.7};
 constexpr int kSettlingBlocks = 12;
 constexpr int kCountingBlocks = 20;
 constexpr int kSweepsABlock = 2;
 constexpr std::uint32_t kFolds = 8;
 constexpr int kSampledPixels = 8192;  // for alpha, a chain and block
-// Classes never seen at a pixel in the counted sweeps keep this much of one sweep.
-constexpr double kUnseen = 0.5;
+// Differences of scores below this many nats say little: the weights of rungs are softened by it.
+// Common practice, no source; of the order of the standard error of a difference on 128^2 fields.
+constexpr double kScoreNoise = 12.0;
 
+// The held-out pixels of one field. P(z_s = k | neighbours) is averaged over the counted sweeps:
+// far less noisy than the share of sweeps with label k (Rao-Blackwell).
 struct HeldOut {
-  Site site;
-  double value;
-  std::vector<int> visits;
+  std::vector<double> value;
+  std::vector<std::size_t> neighbour;  // [pixel * neighbours + i]: label bytes
+  std::vector<double> weight;          // [i], the same for all pixels
+  std::vector<double> probability;     // [pixel * classes + k]: sums over the counted sweeps
 };
 
 // One chain's part of the search: a field with some pixels held out, and a chain of its own.
@@ -36,7 +41,7 @@ struct SearchField {
   ObservedField observed;
   LabelChain chain;
   WeightPlanes weights;
-  std::vector<HeldOut> held_out;
+  HeldOut held_out;
 };
 
 // Top-left corner of chain c's window: the centres of the quarters of the image, on multiples of 4.
@@ -49,6 +54,22 @@ Offset window_corner(const Extent& e, int c, int width, int height) {
 }
 
 void hold_out(SearchField& f, int fold) {
+  const Colouring& c = *f.colouring;
+  HeldOut& held = f.held_out;
+  for (const NeighbourRing& ring : c.neighbourhood().rings) {
+    held.weight.insert(held.weight.end(), ring.neighbours.size(), ring.weight);
+  }
+  const auto hold = [&](int x, int y, int z) {
+    const Site s = c.site(x, y, z);
+    const LabelBand band = c.band(s.colour, s.slice);
+    const std::size_t at = c.label_row(s.colour, s.slice, s.row) + c.byte_of(s.column);
+    for (int r = 0; r < band.ring_count; ++r) {
+      const Ring& ring = band.rings[static_cast<std::size_t>(r)];
+      for (int i = 0; i < ring.neighbours; ++i) {
+        held.neighbour.push_back(at + ring.offset[s.row & 1][i]);
+      }
+    }
+  };
   const Extent e = f.grey.level.extent();
   for (int z = 0; z < e.depth; ++z) {
     for (int y = 0; y < e.height; ++y) {
@@ -60,12 +81,13 @@ void hold_out(SearchField& f, int fold) {
                         static_cast<std::uint32_t>(z), counter_word3(Purpose::kHeldOut, 0, 0)},
                        f.chain.key)[0];
         if (w % kFolds != static_cast<std::uint32_t>(fold) % kFolds) continue;
-        f.held_out.push_back({f.colouring->site(x, y, z), f.grey.value(level),
-                              std::vector<int>(f.chain.model.classes.mean.size())});
+        hold(x, y, z);
+        held.value.push_back(f.grey.value(level));
         level = f.grey.missing();
       }
     }
   }
+  held.probability.resize(held.value.size() * f.chain.model.classes.mean.size());
 }
 
 // Fills `f` in place: its observed field refers to its grey levels and colouring.
@@ -112,62 +134,59 @@ void advance(SearchField& f, const GaussianPrior& prior, const Pool& pool) {
   draw_gaussian_classes(f.grey, f.chain.totals.classes, prior, random, f.chain.model.classes);
 }
 
-void count_held_out(SearchField& f) {
-  for (HeldOut& h : f.held_out) {
-    const std::uint8_t k =
-        f.chain.labels[f.colouring->label_row(h.site.colour, h.site.slice, h.site.row) +
-                       f.colouring->byte_of(h.site.column)];
-    ++h.visits[k];
+// Adds P(z_s = k | neighbours) of the current labels.
+void predict_held_out(SearchField& f) {
+  HeldOut& held = f.held_out;
+  const LabelPrior& prior = f.chain.model.prior;
+  const std::size_t classes = prior.alpha.size();
+  const std::size_t neighbours = held.weight.size();
+  std::vector<double> p(classes);
+  for (std::size_t s = 0; s < held.value.size(); ++s) {
+    p = prior.alpha;
+    for (std::size_t i = 0; i < neighbours; ++i) {
+      const std::uint8_t k = f.chain.labels[held.neighbour[s * neighbours + i]];
+      if (k < classes) p[k] += prior.beta * held.weight[i];
+    }
+    const double top = *std::max_element(p.begin(), p.end());
+    double sum = 0.0;
+    for (double& v : p) sum += v = exact_exp(v - top);
+    for (std::size_t k = 0; k < classes; ++k) held.probability[s * classes + k] += p[k] / sum;
   }
 }
 
-// Sum of the log predictive densities, and the visits emptied for the next coupling.
-double score_held_out(SearchField& f, const GaussianClasses& classes) {
-  const std::size_t count = classes.mean.size();
-  const double total = kCountingBlocks + kUnseen;
+// Sum of the log predictive densities; the probabilities are emptied for the next coupling.
+double score_held_out(SearchField& f, const GaussianClasses& model) {
+  HeldOut& held = f.held_out;
+  const std::size_t classes = model.mean.size();
   double sum = 0.0;
-  for (HeldOut& h : f.held_out) {
+  for (std::size_t s = 0; s < held.value.size(); ++s) {
     double density = 0.0;
-    for (std::size_t k = 0; k < count; ++k) {
-      const double p = (h.visits[k] + kUnseen / static_cast<double>(count)) / total;
-      const double d = (h.value - classes.mean[k]) / classes.sd[k];
-      density += p * exact_exp(-0.5 * d * d) / classes.sd[k];
-      h.visits[k] = 0;
+    for (std::size_t k = 0; k < classes; ++k) {
+      const double d = (held.value[s] - model.mean[k]) / model.sd[k];
+      const double p = held.probability[s * classes + k] / kCountingBlocks;
+      density += p * exact_exp(-0.5 * d * d) / model.sd[k];
     }
     sum += exact_log(std::max(density, 1e-300));
   }
+  std::fill(held.probability.begin(), held.probability.end(), 0.0);
   return sum;
 }
 
-// Vertex of the least-squares parabola in ln beta through the best rung and two on either side.
-double best_coupling(const std::vector<CouplingScore>& ladder) {
-  std::size_t best = 0;
-  for (std::size_t i = 1; i < ladder.size(); ++i) {
-    if (ladder[i].score > ladder[best].score) best = i;
+// Mean of beta and alpha over the ladder, each rung weighted by exp((score - best) / kScoreNoise).
+void average_ladder(CouplingChoice& choice) {
+  double best = choice.ladder.front().score;
+  for (const CouplingScore& rung : choice.ladder) best = std::max(best, rung.score);
+  choice.alpha.assign(choice.ladder.front().alpha.size(), 0.0);
+  double total = 0.0;
+  choice.beta = 0.0;
+  for (const CouplingScore& rung : choice.ladder) {
+    const double w = exact_exp((rung.score - best) / kScoreNoise);
+    total += w;
+    choice.beta += w * rung.beta;
+    for (std::size_t k = 0; k < choice.alpha.size(); ++k) choice.alpha[k] += w * rung.alpha[k];
   }
-  const std::size_t first = best >= 2 ? best - 2 : 0;
-  const std::size_t last = std::min(best + 2, ladder.size() - 1);
-  double s[5] = {0, 0, 0, 0, 0}, t[3] = {0, 0, 0};
-  const double centre = exact_log(ladder[best].beta);
-  for (std::size_t i = first; i <= last; ++i) {
-    const double x = exact_log(ladder[i].beta) - centre;
-    const double y = ladder[i].score - ladder[best].score;
-    const double power[5] = {1.0, x, x * x, x * x * x, x * x * x * x};
-    for (int p = 0; p < 5; ++p) s[p] += power[p];
-    for (int p = 0; p < 3; ++p) t[p] += power[p] * y;
-  }
-  // Normal equations of y = a + b x + c x^2 by Cramer's rule.
-  const double det = s[0] * (s[2] * s[4] - s[3] * s[3]) - s[1] * (s[1] * s[4] - s[2] * s[3]) +
-                     s[2] * (s[1] * s[3] - s[2] * s[2]);
-  const double b = (s[0] * (t[1] * s[4] - t[2] * s[3]) - t[0] * (s[1] * s[4] - s[2] * s[3]) +
-                    s[2] * (s[1] * t[2] - s[2] * t[1])) /
-                   det;
-  const double c = (s[0] * (s[2] * t[2] - s[3] * t[1]) - s[1] * (s[1] * t[2] - s[2] * t[1]) +
-                    t[0] * (s[1] * s[3] - s[2] * s[2])) /
-                   det;
-  if (!(c < 0.0)) return ladder[best].beta;
-  const double low = exact_log(ladder[first].beta), high = exact_log(ladder[last].beta);
-  return exact_exp(std::clamp(centre - 0.5 * b / c, low, high));
+  choice.beta /= total;
+  for (double& a : choice.alpha) a /= total;
 }
 
 }  // namespace
@@ -185,8 +204,8 @@ CouplingChoice search_coupling(const ObservedField& field, const GaussianPrior& 
       transition_coupling(field.colouring->neighbourhood(), chains.front().model.size());
   LabelPrior current = chains.front().model.prior;
   CouplingChoice choice;
-  for (std::size_t rung = kLadder.size(); rung-- > 0;) {
-    current.beta = kLadder[rung] * transition;
+  for (const double multiple : kLadder) {
+    current.beta = multiple * transition;
     std::vector<GaussianClasses> mean_classes(chains.size());
     for (int block = 0; block < kSettlingBlocks; ++block) {
       std::vector<NeighbourCounts> samples(chains.size());
@@ -211,7 +230,7 @@ CouplingChoice search_coupling(const ObservedField& field, const GaussianPrior& 
       GaussianClasses mean = f.chain.model.classes;
       for (int block = 0; block < kCountingBlocks; ++block) {
         advance(f, prior, serial);
-        count_held_out(f);
+        predict_held_out(f);
         for (std::size_t k = 0; k < mean.mean.size(); ++k) {
           mean.mean[k] += (f.chain.model.classes.mean[k] - mean.mean[k]) / (block + 1);
           mean.sd[k] += (f.chain.model.classes.sd[k] - mean.sd[k]) / (block + 1);
@@ -221,14 +240,9 @@ CouplingChoice search_coupling(const ObservedField& field, const GaussianPrior& 
     });
     double sum = 0.0;
     for (const double s : score) sum += s;
-    choice.ladder.insert(choice.ladder.begin(), {current.beta, sum, current.alpha});
+    choice.ladder.push_back({current.beta, sum, current.alpha});
   }
-  choice.beta = best_coupling(choice.ladder);
-  const auto nearest = std::min_element(
-      choice.ladder.begin(), choice.ladder.end(), [&](const CouplingScore& a, const CouplingScore& b) {
-        return std::fabs(a.beta - choice.beta) < std::fabs(b.beta - choice.beta);
-      });
-  choice.alpha = nearest->alpha;
+  average_ladder(choice);
   return choice;
 }
 

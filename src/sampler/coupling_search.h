@@ -6,8 +6,9 @@
 //          (docs/accuracy.md has the figures).
 // Maths    score(beta) = sum over held-out pixels s of log sum_k P(z_s = k | y without the held-out
 //          pixels) f_k(y_s), the log predictive density of cross-validation (Geisser & Eddy 1979).
-//          P is the share of sweeps with label k; alpha is fitted by pseudo-likelihood at each
-//          beta. The maximum is that of a parabola in ln beta through the best points.
+//          P is the mean of P(z_s = k | neighbours) over sweeps; alpha is fitted by
+//          pseudo-likelihood at each beta. The choice averages beta and alpha over a ladder of couplings with weights
+//          exp(score / 12): pseudo-Bayesian model averaging, softened for the noise of the score.
 // Method   every chain searches with its own eighth of the pixels held out; on images above
 //          kWholeField pixels each chain searches in its own window of kWindow x kWindow.
 #ifndef STILLFIELD_SAMPLER_COUPLING_SEARCH_H_
@@ -33,7 +34,7 @@ struct CouplingChoice {
   std::vector<CouplingScore> ladder;  // by rising beta
 };
 
-inline constexpr std::int64_t kWholeField = 512 * 512;
+inline constexpr std::int64_t kWholeField = 320 * 320;
 inline constexpr int kSearchWindow = 256;
 
 // Chains give their labels and classes as the starting point and are not changed.

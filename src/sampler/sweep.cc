@@ -6,12 +6,30 @@
 
 #include "core/elementary.h"
 #include "simd/label_statistics.h"
+#include "simd/level_lookup.h"
 
 namespace stillfield {
 namespace {
 
 // A band worth a task: some 20 000 pixels.
 constexpr int kSitesPerTask = 20000;
+
+// Weights of a row: its K planes one after the other, so that a row pair is one piece of memory.
+// Long planes get a tail that keeps them from competing for the same cache lines, as pieces at
+// multiples of 2048 bytes do.
+std::ptrdiff_t weight_plane(const Colouring& c) {
+  return c.plane_stride() + (c.plane_stride() % 512 == 0 ? 80 : 0);
+}
+
+std::ptrdiff_t weight_row(const Colouring& c, int planes, int colour, int slice, int row) {
+  const auto rows = static_cast<std::ptrdiff_t>(c.plane_row(colour, slice, row)) / c.plane_stride();
+  return rows * planes * weight_plane(c);
+}
+
+std::size_t weight_elements(const Colouring& c, int planes) {
+  const auto rows = static_cast<std::ptrdiff_t>(c.plane_elements()) / c.plane_stride();
+  return static_cast<std::size_t>(rows * planes * weight_plane(c));
+}
 
 // Calls body(slice, first_row, rows) over all rows of one colour, in parallel, in pairs of rows.
 template <class Body>
@@ -73,23 +91,18 @@ void prepare_weights(const ObservedField& field, const LabelModel& model, const 
                      WeightPlanes& weights) {
   const Colouring& c = *field.colouring;
   fill_weight_table(*field.grey, model, weights.table);
-  const auto planes = static_cast<std::size_t>(weights.table.planes);
-  if (weights.value.size() != planes * c.plane_elements()) {
-    weights.value = AlignedBuffer<float>(planes * c.plane_elements());
+  const int planes = weights.table.planes;
+  if (weights.value.size() != weight_elements(c, planes)) {
+    weights.value = AlignedBuffer<float>(weight_elements(c, planes));
   }
   for (int colour = 0; colour < c.colours(); ++colour) {
     for_row_pairs(c, colour, pool, [&](int slice, int first_row, int rows) {
       for (int row = first_row; row < first_row + rows; ++row) {
-        const std::size_t at = c.plane_row(colour, slice, row);
-        const std::uint16_t* level = field.level.data() + at;
-        for (std::size_t k = 0; k < planes; ++k) {
-          const float* table = weights.table.value.data() + k * weights.table.levels;
-          float* out = weights.value.data() + k * c.plane_elements() + at;
-          for (int j = 0; j < 4 * c.words(); ++j) out[j] = table[level[j]];
-        }
-        if (model.size() == 2) {
-          correct_border(c, model.prior.beta, colour, slice, row, weights.value.data() + at);
-        }
+        const std::uint16_t* level = field.level.data() + c.plane_row(colour, slice, row);
+        float* out = weights.value.data() + weight_row(c, planes, colour, slice, row);
+        look_up_weights(weights.table.value.data(), planes, weights.table.levels, level,
+                        c.plane_stride(), out, weight_plane(c));
+        if (planes == 1) correct_border(c, model.prior.beta, colour, slice, row, out);
       }
     });
   }
@@ -111,6 +124,7 @@ void sweep_labels(const Colouring& c, const WeightPlanes& weights, int sweeps, P
                   const Pool& pool, LabelChain& chain) {
   const bool two_labels = chain.model.size() == 2;
   const bool counting = !chain.visits.empty();
+  const int planes = weights.table.planes;
   for (int s = 0; s < sweeps; ++s) {
     for (int colour = 0; colour < c.colours(); ++colour) {
       for_row_pairs(c, colour, pool, [&](int slice, int first_row, int rows) {
@@ -120,12 +134,14 @@ void sweep_labels(const Colouring& c, const WeightPlanes& weights, int sweeps, P
         band.first_row = first_row;
         band.rows = rows;
         band.labels = chain.labels.data() + c.label_row(colour, slice, 0);
-        band.weights = weights.value.data() + c.plane_row(colour, slice, 0);
+        band.weights = weights.value.data() + weight_row(c, planes, colour, slice, 0);
+        band.weight_plane = weight_plane(c);
+        band.weight_stride = planes * weight_plane(c);
         band.counts = counting ? chain.visits.data() + c.plane_row(colour, slice, 0) : nullptr;
         band.random.key = chain.key;
         band.random.sweep = chain.sweeps_done;
         band.random.word3 = counter_word3(purpose, static_cast<std::uint32_t>(colour),
-                                          static_cast<std::uint32_t>(slice));
+                                          c.random_slice(slice));
         if (two_labels) {
           two_label_rows(band);
         } else {

@@ -82,6 +82,7 @@ int main(int argc, char** argv) {
       overlap += study::dice(truth, run.counts->most_probable());
       alpha += run.prior.alpha[1];
       beta += run.prior.beta;
+      if (std::getenv("VERBOSE")) { std::printf("  %d beta %.3f alpha %.3f bias %+.4f dice %.4f:", i, run.prior.beta, run.prior.alpha[1], f.mean - truth.fraction, study::dice(truth, run.counts->most_probable())); for (const auto& l : run.coupling_ladder) std::printf(" %.2f/%.1f", l.beta, l.score); std::printf("\n"); }
       sweeps += run.adapting_sweeps + run.warming_sweeps + run.sampling_sweeps;
     }
     const double n = o.images;
