@@ -16,7 +16,7 @@ constexpr int kDeflateLevel = 1;
 constexpr std::int64_t kStripBytes = 256 << 10;
 constexpr std::int64_t kBigTiffBytes = 3500000000;  // classic TIFF ends at 2^32
 
-// None for floats: the floating-point predictor would save a fifth, but many readers lack it.
+// None for floats: the floating-point predictor makes smaller files, but many readers lack it.
 template <typename T>
 int predictor() {
   return std::is_integral_v<T> && sizeof(T) > 1 ? PREDICTOR_HORIZONTAL : PREDICTOR_NONE;

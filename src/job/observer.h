@@ -12,15 +12,16 @@ class JobObserver {
  public:
   virtual ~JobObserver() = default;
 
-  // A field (one page of a file) begins: its number of all, from 0, and its name.
+  // What is to be done is known: fields to do, and fields found finished.
+  virtual void planned(int /*to_do*/, int /*finished*/) {}
+  // A field (one page of a file) begins: its number from 0 among those to do, and its name.
   virtual void field_started(int /*number*/, int /*of*/, const std::string& /*name*/) {}
   // Every chain has made `sweeps` sweeps in all.
   virtual void swept(Stage /*stage*/, int /*sweeps*/) {}
   virtual void field_finished(const std::string& /*name*/, bool /*converged*/) {}
-  virtual void field_skipped(const std::string& /*name*/) {}
   virtual void field_failed(const std::string& /*name*/, const std::string& /*sentence*/) {}
 
-  // Asked between blocks of sweeps.
+  // Asked between blocks of sweeps and between fields.
   virtual bool stop_requested() const { return false; }
 };
 

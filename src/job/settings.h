@@ -4,10 +4,12 @@
 
 #include <cstdint>
 #include <filesystem>
+#include <vector>
 
 #include "diagnose/verdict.h"
 #include "image/read.h"
 #include "model/neighbourhood.h"
+#include "report/named_value.h"
 #include "sampler/coupling.h"
 #include "sampler/schedule.h"
 
@@ -29,10 +31,12 @@ struct SegmentSettings {
 struct RunSettings {
   std::filesystem::path output;
   int threads = 1;
-  bool redo = false;    // do again what is finished
-  bool strict = false;  // not converged counts in the exit code
+  bool redo = false;  // do again what is finished
   ReadLimits limits;
 };
+
+// All of them under the names of the record.
+std::vector<NamedValue> named_settings(const SegmentSettings& settings);
 
 }  // namespace stillfield
 

@@ -25,9 +25,9 @@ namespace stillfield {
 
 inline constexpr std::uint8_t kGuardLabel = 0x80;
 inline constexpr int kMaxLabels = 64;
-inline constexpr int kMaxRings = 5;           // faces, edges, corners, with unequal spacing along z
+inline constexpr int kMaxRings = 5;  // faces, edges, corners, with unequal spacing along z
 inline constexpr int kMaxRingNeighbours = 12;
-inline constexpr int kRowQuantum = 16;        // Q is a multiple of this
+inline constexpr int kRowQuantum = 16;  // Q is a multiple of this
 
 struct Ring {
   int neighbours = 0;
@@ -38,17 +38,17 @@ struct Ring {
 
 struct LabelBand {
   int classes = 2;
-  int words = 0;                 // Q
-  std::array<int, 2> sites{};    // sites inside the image in even and odd rows, <= 4 Q
-  int first_row = 0;             // even
+  int words = 0;               // Q
+  std::array<int, 2> sites{};  // sites inside the image in even and odd rows, <= 4 Q
+  int first_row = 0;           // even
   int rows = 0;
 
-  std::uint8_t* labels = nullptr;      // word 0 of row 0 of this colour (not of first_row)
-  std::ptrdiff_t label_stride = 0;     // bytes from row to row
-  const float* weights = nullptr;      // site 0 of row 0 of class 0
-  std::ptrdiff_t weight_stride = 0;    // floats from row to row
-  std::ptrdiff_t weight_plane = 0;     // floats from class to class
-  std::uint8_t* counts = nullptr;      // byte 0 of row 0 of class 1; null: do not count
+  std::uint8_t* labels = nullptr;    // word 0 of row 0 of this colour (not of first_row)
+  std::ptrdiff_t label_stride = 0;   // bytes from row to row
+  const float* weights = nullptr;    // site 0 of row 0 of class 0
+  std::ptrdiff_t weight_stride = 0;  // floats from row to row
+  std::ptrdiff_t weight_plane = 0;   // floats from class to class
+  std::uint8_t* counts = nullptr;    // byte 0 of row 0 of class 1; null: do not count
   std::ptrdiff_t count_stride = 0;
   std::ptrdiff_t count_plane = 0;
 

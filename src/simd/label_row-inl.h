@@ -34,10 +34,10 @@ constexpr float kUniformScale = 16777216.0f;  // uniforms are 24-bit integers ov
 
 // A run of words [first, first + words) of one row, with its random words.
 struct RowChunk {
-  std::uint8_t* labels;          // word 0 of the row
-  const float* weights;          // site 0 of the row, class 0
-  std::uint8_t* counts;          // byte 0 of the row, class 1, or null
-  const std::uint32_t* random;   // word of site b Q + first + i at random[b * random_stride + i]
+  std::uint8_t* labels;         // word 0 of the row
+  const float* weights;         // site 0 of the row, class 0
+  std::uint8_t* counts;         // byte 0 of the row, class 1, or null
+  const std::uint32_t* random;  // word of site b Q + first + i at random[b * random_stride + i]
   std::ptrdiff_t random_stride;
   int parity;
   int first;
@@ -91,10 +91,9 @@ HWY_INLINE void for_each_chunk(const LabelBand& band, const Update& update) {
     const float* even_weights = band.weights + row * band.weight_stride;
     const float* odd_weights = even_weights + (row + 1 < end_row ? band.weight_stride : 0);
     const auto draw = [&](int column, int columns, int place) HWY_ATTR {
-      draw_row_pair(band.random, pair, static_cast<std::uint32_t>(column), columns, even + place,
-                    odd + place,
-                    FetchWeights{even_weights + column, odd_weights + column, band.weight_plane,
-                                 planes});
+      draw_row_pair(
+          band.random, pair, static_cast<std::uint32_t>(column), columns, even + place, odd + place,
+          FetchWeights{even_weights + column, odd_weights + column, band.weight_plane, planes});
     };
     for (int first = 0; first < q; first += chunk_words) {
       const int words = std::min(chunk_words, q - first);
@@ -135,7 +134,8 @@ struct Lookup {
 #else
   static constexpr bool kFits = false;
 #endif
-  explicit HWY_INLINE Lookup(const float* table) : table_(table), first_(hn::LoadU(Floats(), table)) {}
+  explicit HWY_INLINE Lookup(const float* table)
+      : table_(table), first_(hn::LoadU(Floats(), table)) {}
 
   HWY_INLINE VF operator()(VW n) const {
     const Words d;

@@ -190,21 +190,27 @@ HWY_INLINE void update_chunk<0, 0, 0>(const LabelBand& band, const RowChunk& c) 
 
 template <int kClasses, int kNear, int kFar>
 void run(const LabelBand& band) {
-  for_each_chunk(band, [&band](const RowChunk& c) HWY_ATTR {
-    update_chunk<kClasses, kNear, kFar>(band, c);
-  });
+  for_each_chunk(
+      band, [&band](const RowChunk& c) HWY_ATTR { update_chunk<kClasses, kNear, kFar>(band, c); });
 }
 
 template <int kNear, int kFar>
 void run_classes(const LabelBand& band) {
   switch (band.classes) {
-    case 3: return run<3, kNear, kFar>(band);
-    case 4: return run<4, kNear, kFar>(band);
-    case 5: return run<5, kNear, kFar>(band);
-    case 6: return run<6, kNear, kFar>(band);
-    case 7: return run<7, kNear, kFar>(band);
-    case 8: return run<8, kNear, kFar>(band);
-    default: return run<0, 0, 0>(band);
+    case 3:
+      return run<3, kNear, kFar>(band);
+    case 4:
+      return run<4, kNear, kFar>(band);
+    case 5:
+      return run<5, kNear, kFar>(band);
+    case 6:
+      return run<6, kNear, kFar>(band);
+    case 7:
+      return run<7, kNear, kFar>(band);
+    case 8:
+      return run<8, kNear, kFar>(band);
+    default:
+      return run<0, 0, 0>(band);
   }
 }
 
@@ -225,7 +231,9 @@ namespace stillfield {
 
 HWY_EXPORT(label_rows);
 
-void label_rows(const LabelBand& band) { HWY_DYNAMIC_DISPATCH(label_rows)(band); }
+void label_rows(const LabelBand& band) {
+  HWY_DYNAMIC_DISPATCH(label_rows)(band);
+}
 
 }  // namespace stillfield
 #endif

@@ -19,9 +19,9 @@ struct LabelSums {
 
   void add(const LabelSums& other);
 
-  std::vector<std::uint64_t> sites;             // pixels of each class
-  std::vector<std::uint64_t> observed;          // those whose grey level is not missing
-  std::vector<std::uint64_t> level_sum;         // over observed pixels
+  std::vector<std::uint64_t> sites;      // pixels of each class
+  std::vector<std::uint64_t> observed;   // those whose grey level is not missing
+  std::vector<std::uint64_t> level_sum;  // over observed pixels
   std::vector<std::uint64_t> level_square_sum;
   // Pairs (site, neighbour) with equal labels, by ring; over a whole field each pair counts twice.
   std::array<std::uint64_t, kMaxRings> equal_ends{};

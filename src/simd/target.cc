@@ -16,7 +16,9 @@ HWY_BEFORE_NAMESPACE();
 namespace stillfield {
 namespace HWY_NAMESPACE {
 
-std::int64_t this_target() { return HWY_TARGET; }
+std::int64_t this_target() {
+  return HWY_TARGET;
+}
 
 }  // namespace HWY_NAMESPACE
 }  // namespace stillfield
@@ -80,7 +82,9 @@ std::string active_cpu_target() {
   return forced() != 0 ? name_of(forced()) : cpu_targets().front();
 }
 
-std::string compiled_cpu_target() { return name_of(HWY_DYNAMIC_DISPATCH(this_target)()); }
+std::string compiled_cpu_target() {
+  return name_of(HWY_DYNAMIC_DISPATCH(this_target)());
+}
 
 void force_cpu_target(std::string_view name) {
   const std::int64_t mask = runnable();

@@ -107,9 +107,8 @@ HWY_INLINE void update_chunk(const LabelBand& band, const RowChunk& c) {
 
 template <bool kCount, int kNear, int kFar>
 void run(const LabelBand& band) {
-  for_each_chunk(band, [&band](const RowChunk& c) HWY_ATTR {
-    update_chunk<kCount, kNear, kFar>(band, c);
-  });
+  for_each_chunk(
+      band, [&band](const RowChunk& c) HWY_ATTR { update_chunk<kCount, kNear, kFar>(band, c); });
 }
 
 #endif  // HWY_TARGET
@@ -138,7 +137,9 @@ namespace stillfield {
 
 HWY_EXPORT(two_label_rows);
 
-void two_label_rows(const LabelBand& band) { HWY_DYNAMIC_DISPATCH(two_label_rows)(band); }
+void two_label_rows(const LabelBand& band) {
+  HWY_DYNAMIC_DISPATCH(two_label_rows)(band);
+}
 
 }  // namespace stillfield
 #endif

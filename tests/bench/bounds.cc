@@ -42,8 +42,8 @@ void draw_random_words(const Colouring& c, std::uint32_t sweep) {
     for (int pair = 0; pair < (c.rows(colour) + 1) / 2; ++pair) {
       for (int first = 0; first < columns; first += kColumns) {
         plane.first_column = static_cast<std::uint32_t>(first);
-        random_row_pair(plane, static_cast<std::uint32_t>(pair), std::min(kColumns, columns - first),
-                        even, odd);
+        random_row_pair(plane, static_cast<std::uint32_t>(pair),
+                        std::min(kColumns, columns - first), even, odd);
       }
     }
   }

@@ -11,8 +11,12 @@ namespace {
 
 constexpr int kLevels = 256;
 
-double phase_mean(int k, int classes) { return kLevels * (k + 0.5) / classes; }
-double noise(int classes) { return 0.5 * kLevels / classes; }
+double phase_mean(int k, int classes) {
+  return kLevels * (k + 0.5) / classes;
+}
+double noise(int classes) {
+  return 0.5 * kLevels / classes;
+}
 
 }  // namespace
 
@@ -25,8 +29,8 @@ GreyLevels make_image(int size, int classes) {
   RandomStream random({1, 2}, Purpose::kSimulation);
   for (int y = 0; y < size; ++y) {
     for (int x = 0; x < size; ++x) {
-      const double v = phase_mean((x / 37 + y / 53) % classes, classes) +
-                       noise(classes) * random.normal();
+      const double v =
+          phase_mean((x / 37 + y / 53) % classes, classes) + noise(classes) * random.normal();
       g.level.at(x, y) = static_cast<std::uint16_t>(std::clamp(v, 0.0, kLevels - 1.0));
     }
   }
@@ -70,7 +74,9 @@ void Field::sweep(int sweeps, bool counting, const Pool& pool) {
   if (counting) std::swap(chain.visits, visits);
 }
 
-void Field::empty_counts() { empty_visits(visits.size(), visits.data(), count.data()); }
+void Field::empty_counts() {
+  empty_visits(visits.size(), visits.data(), count.data());
+}
 
 double Field::bytes_touched(bool counting) const {
   const auto n = static_cast<double>(weights.value.size() * sizeof(float)) +

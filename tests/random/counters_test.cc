@@ -45,7 +45,8 @@ TEST_CASE("words of different pixels, sweeps, colours, slices and purposes have 
 
 TEST_CASE("chains of an image have different keys") {
   std::set<PhiloxKey> keys;
-  for (std::uint32_t chain = 0; chain < 64; ++chain) keys.insert(chain_key(0x123456789abcdefULL, chain));
+  for (std::uint32_t chain = 0; chain < 64; ++chain)
+    keys.insert(chain_key(0x123456789abcdefULL, chain));
   CHECK(keys.size() == 64);
 }
 
@@ -53,10 +54,10 @@ TEST_CASE("an image's seed depends on the user's seed, every byte of the digest 
   const std::uint64_t base = seed_of(1, "abcdefgh", 0);
   CHECK(seed_of(1, "abcdefgh", 0) == base);
   std::set<std::uint64_t> seeds{base};
-  for (const auto seed : {seed_of(2, "abcdefgh", 0), seed_of(1ULL << 40, "abcdefgh", 0),
-                          seed_of(1, "abcdefgh", 1), seed_of(1, "abcdefg", 0),
-                          seed_of(1, "abcdefgi", 0), seed_of(1, "bbcdefgh", 0),
-                          seed_of(1, "abcdhgfe", 0), seed_of(1, "efghabcd", 0), seed_of(1, "", 0)}) {
+  for (const auto seed :
+       {seed_of(2, "abcdefgh", 0), seed_of(1ULL << 40, "abcdefgh", 0), seed_of(1, "abcdefgh", 1),
+        seed_of(1, "abcdefg", 0), seed_of(1, "abcdefgi", 0), seed_of(1, "bbcdefgh", 0),
+        seed_of(1, "abcdhgfe", 0), seed_of(1, "efghabcd", 0), seed_of(1, "", 0)}) {
     CHECK(seeds.insert(seed).second);
   }
 }

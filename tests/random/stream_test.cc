@@ -27,8 +27,8 @@ void check_distribution(std::vector<double> x, const Cdf& cdf) {
   double distance = 0.0;
   for (std::size_t i = 0; i < x.size(); ++i) {
     const double f = cdf(x[i]);
-    distance = std::max({distance, f - static_cast<double>(i) / n,
-                         static_cast<double>(i + 1) / n - f});
+    distance =
+        std::max({distance, f - static_cast<double>(i) / n, static_cast<double>(i + 1) / n - f});
   }
   CHECK(distance < std::sqrt(std::log(2.0 / kFalseAlarm) / (2.0 * n)));
 }
@@ -44,7 +44,9 @@ void check_counts(const std::vector<double>& observed, const std::vector<double>
   CHECK(statistic < bm::quantile(bm::complement(law, kFalseAlarm)));
 }
 
-RandomStream stream(std::uint32_t lane) { return {{2026, 12}, Purpose::kSimulation, 3, lane}; }
+RandomStream stream(std::uint32_t lane) {
+  return {{2026, 12}, Purpose::kSimulation, 3, lane};
+}
 
 constexpr int kDraws = 200000;
 

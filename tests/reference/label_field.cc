@@ -32,13 +32,15 @@ float uniform_integer(const LabelField& f, Pixel p, std::uint32_t sweep) {
   const auto x = static_cast<std::uint32_t>(p.x + f.offset.x);
   const auto y = static_cast<std::uint32_t>(p.y + f.offset.y);
   const auto z = static_cast<std::uint32_t>(p.z + f.offset.z);
-  const std::uint32_t word = pixel_word(
-      f.key, by_blocks(f) ? y / 2 : y, x / 2, sweep,
-      counter_word3(f.purpose, colour_of(f, p), blocks_in_z(f) ? z / 2 : z));
+  const std::uint32_t word =
+      pixel_word(f.key, by_blocks(f) ? y / 2 : y, x / 2, sweep,
+                 counter_word3(f.purpose, colour_of(f, p), blocks_in_z(f) ? z / 2 : z));
   return static_cast<float>(word >> 8);
 }
 
-int ring_size(const NeighbourRing& ring) { return static_cast<int>(ring.neighbours.size()); }
+int ring_size(const NeighbourRing& ring) {
+  return static_cast<int>(ring.neighbours.size());
+}
 
 int equal_in_ring(const LabelField& f, const NeighbourRing& ring, Pixel p, int k) {
   int n = 0;
@@ -62,8 +64,7 @@ std::uint8_t draw_two(const LabelField& f, Pixel p, float uniform) {
   odds *= static_cast<float>(exact_exp(-f.beta * missing));
   for (const NeighbourRing& ring : f.neighbourhood.rings) {
     const int ones = equal_in_ring(f, ring, p, 1);
-    odds *= static_cast<float>(
-        exact_exp(f.beta * ring.weight * (ring_size(ring) - 2 * ones)));
+    odds *= static_cast<float>(exact_exp(f.beta * ring.weight * (ring_size(ring) - 2 * ones)));
   }
   return uniform * (1.0f + odds) < 16777216.0f;
 }
@@ -71,8 +72,8 @@ std::uint8_t draw_two(const LabelField& f, Pixel p, float uniform) {
 std::uint8_t draw_many(const LabelField& f, Pixel p, float uniform) {
   std::vector<float> running;
   for (int k = 0; k < f.classes; ++k) {
-    float w = f.table.value[static_cast<std::size_t>(k) * f.table.levels +
-                            f.level[f.at(p.x, p.y, p.z)]];
+    float w =
+        f.table.value[static_cast<std::size_t>(k) * f.table.levels + f.level[f.at(p.x, p.y, p.z)]];
     for (const NeighbourRing& ring : f.neighbourhood.rings) {
       w *= static_cast<float>(exact_exp(f.beta * ring.weight * equal_in_ring(f, ring, p, k)));
     }

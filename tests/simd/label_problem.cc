@@ -26,7 +26,8 @@ GreyLevels make_grey(const LabelProblem& p) {
   RandomStream random = stream(p, 0);
   for_each_pixel(p.extent, [&](int x, int y, int z) {
     const std::uint32_t word = random.word();
-    const auto level = static_cast<std::uint16_t>((word >> 8) % static_cast<std::uint32_t>(p.levels));
+    const auto level =
+        static_cast<std::uint16_t>((word >> 8) % static_cast<std::uint32_t>(p.levels));
     g.level.at(x, y, z) = word % 50 == 0 ? g.missing() : level;
   });
   return g;
@@ -67,7 +68,8 @@ std::vector<std::uint8_t> Subject::labels() const {
   Volume<std::uint8_t> image(colouring.extent());
   gather_labels(colouring, chain.labels, image.view());
   std::vector<std::uint8_t> out;
-  for_each_pixel(colouring.extent(), [&](int x, int y, int z) { out.push_back(image.at(x, y, z)); });
+  for_each_pixel(colouring.extent(),
+                 [&](int x, int y, int z) { out.push_back(image.at(x, y, z)); });
   return out;
 }
 

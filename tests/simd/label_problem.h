@@ -28,8 +28,8 @@ struct Subject {
   Subject(const Subject&) = delete;
   Subject& operator=(const Subject&) = delete;
 
-  std::vector<std::uint8_t> labels() const;                    // image order
-  std::vector<std::vector<int>> visits() const;                // [class - 1][pixel]
+  std::vector<std::uint8_t> labels() const;      // image order
+  std::vector<std::vector<int>> visits() const;  // [class - 1][pixel]
   void start_counting();
   void sweep(int sweeps, const Pool& pool);
 

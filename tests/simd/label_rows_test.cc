@@ -21,8 +21,8 @@ std::ptrdiff_t differences(const std::vector<std::uint8_t>& a, const std::vector
 
 void check_against_twin(const LabelProblem& p) {
   INFO("size " << p.extent.width << " x " << p.extent.height << " x " << p.extent.depth
-               << ", neighbours " << static_cast<int>(p.connectivity) << ", classes "
-               << p.classes << ", beta " << p.beta << ", spacing " << p.spacing_z);
+               << ", neighbours " << static_cast<int>(p.connectivity) << ", classes " << p.classes
+               << ", beta " << p.beta << ", spacing " << p.spacing_z);
   reference::LabelField twin = make_twin(Subject(p));
   twin.offset = p.offset;
   const std::vector<std::uint8_t> start = twin.label;
@@ -45,8 +45,8 @@ void check_against_twin(const LabelProblem& p) {
 }  // namespace
 
 TEST_CASE("label kernels equal the slow twin in planes") {
-  const std::vector<Extent> extents = {{1, 1, 1},  {1, 9, 1},  {9, 1, 1},  {2, 2, 1},
-                                       {3, 5, 1},  {17, 9, 1}, {63, 5, 1}, {64, 5, 1},
+  const std::vector<Extent> extents = {{1, 1, 1},  {1, 9, 1},  {9, 1, 1},   {2, 2, 1},
+                                       {3, 5, 1},  {17, 9, 1}, {63, 5, 1},  {64, 5, 1},
                                        {65, 5, 1}, {66, 5, 1}, {130, 7, 1}, {257, 33, 1}};
   for (const Connectivity connectivity : {Connectivity::kFour, Connectivity::kEight}) {
     for (const int classes : {2, 3, 4, 5, 6, 7, 8, 9, 17, 64}) {

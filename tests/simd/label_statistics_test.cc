@@ -14,8 +14,8 @@ namespace {
 
 void check_totals(const LabelProblem& p) {
   INFO("size " << p.extent.width << " x " << p.extent.height << " x " << p.extent.depth
-               << ", neighbours " << static_cast<int>(p.connectivity) << ", classes "
-               << p.classes << ", levels " << p.levels);
+               << ", neighbours " << static_cast<int>(p.connectivity) << ", classes " << p.classes
+               << ", levels " << p.levels);
   Subject subject(p);
   const Pool pool(1);
   for (int round = 0; round < 2; ++round) {  // random labels, then labels with guards in use
@@ -41,8 +41,8 @@ void check_totals(const LabelProblem& p) {
 }  // namespace
 
 TEST_CASE("label sums equal the slow twin's in planes") {
-  const std::vector<Extent> extents = {{1, 1, 1},   {1, 9, 1},   {9, 1, 1},    {2, 2, 1},
-                                       {17, 9, 1},  {64, 5, 1},  {127, 4, 1},  {128, 5, 1},
+  const std::vector<Extent> extents = {{1, 1, 1},   {1, 9, 1},    {9, 1, 1},    {2, 2, 1},
+                                       {17, 9, 1},  {64, 5, 1},   {127, 4, 1},  {128, 5, 1},
                                        {129, 6, 1}, {257, 33, 1}, {511, 64, 1}, {3100, 6, 1}};
   for (const Connectivity connectivity : {Connectivity::kFour, Connectivity::kEight}) {
     for (const int classes : {2, 3, 4, 5, 8, 9, 17, 64}) {

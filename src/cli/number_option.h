@@ -1,0 +1,28 @@
+// Checks of option values that answer with a sentence.
+//
+// Each function returns an empty string for a good value, else what is wrong with it; the
+// command line puts the option's name before it.
+#ifndef STILLFIELD_CLI_NUMBER_OPTION_H_
+#define STILLFIELD_CLI_NUMBER_OPTION_H_
+
+#include <cstdint>
+#include <functional>
+#include <optional>
+#include <string>
+
+namespace stillfield {
+
+std::optional<std::uint64_t> parse_whole(const std::string& text);
+std::optional<double> parse_number(const std::string& text);
+
+// A whole number of lowest..highest.
+std::function<std::string(const std::string&)> whole_number(std::uint64_t lowest,
+                                                            std::uint64_t highest);
+
+// auto, sampled or a number from 0 to kLargestCoupling.
+inline constexpr double kLargestCoupling = 5;
+std::string check_coupling(const std::string& text);
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_CLI_NUMBER_OPTION_H_

@@ -1,0 +1,24 @@
+// The parts of a record that follow from a field and its posterior sample.
+#ifndef STILLFIELD_JOB_FIELD_RECORD_H_
+#define STILLFIELD_JOB_FIELD_RECORD_H_
+
+#include "image/field.h"
+#include "job/field_task.h"
+#include "job/label_sampling.h"
+#include "model/grey_levels.h"
+#include "report/record.h"
+
+namespace stillfield {
+
+// Without the file's digest and size.
+InputFacts describe_input(const FieldTask& task, const Field& field, const GreyLevels& grey);
+
+GreyFacts describe_grey(const GreyLevels& grey);
+
+// Model, coupling, schedule, scalars, probability (without uncertain_share), verdict, measurements.
+void describe_sampling(const LabelSampling& sampling, const SegmentSettings& settings,
+                       ImageRecord& record);
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_JOB_FIELD_RECORD_H_

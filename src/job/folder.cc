@@ -1,0 +1,124 @@
+#include "job/folder.h"
+
+#include <algorithm>
+
+#include "core/error.h"
+#include "job/output_folder.h"
+#include "job/plan.h"
+#include "job/segment_field.h"
+#include "report/run.h"
+#include "report/tables.h"
+#include "report/versions.h"
+
+namespace stillfield {
+namespace {
+
+namespace fs = std::filesystem;
+
+// What is known so far; the tables come from here.
+class RunLog {
+ public:
+  RunLog(const SegmentSettings& settings, const RunSettings& run) : run_(run) {
+    summary_.version = program_version();
+    summary_.command = "segment";
+    summary_.settings = named_settings(settings);
+  }
+
+  void add(const FieldTask& task, const ImageRecord& record, bool before) {
+    ++(before ? counts_.skipped : counts_.done);
+    if (!record.verdict.converged) ++counts_.not_converged;
+    const fs::path file = with_suffix(task.stem, kRecordSuffix);
+    list(task, before ? "skipped" : "done");
+    summary_.images.back().converged = record.verdict.converged;
+    summary_.images.back().record = file.lexically_relative(run_.output).generic_string();
+    records_.push_back(record);
+  }
+  void add_failure(const FieldTask& task, const std::string& sentence) {
+    ++counts_.failed;
+    list(task, "failed");
+    summary_.images.back().sentence = sentence;
+  }
+  void add_not_reached(const FieldTask& task) {
+    ++counts_.not_reached;
+    counts_.interrupted = true;
+    list(task, "not reached");
+  }
+
+  void write_tables() {
+    const auto count = [this](const char* name, int value) {
+      summary_.counts.push_back({name, static_cast<std::uint64_t>(value)});
+    };
+    count("done", counts_.done);
+    count("skipped", counts_.skipped);
+    count("failed", counts_.failed);
+    count("not_reached", counts_.not_reached);
+    count("not_converged", counts_.not_converged);
+    write_if_changed(run_.output / "measurements.csv", measurements_csv(records_));
+    write_if_changed(run_.output / "summary.csv", summary_csv(records_));
+    write_if_changed(run_.output / "run.json", run_text(summary_));
+  }
+  const FolderCounts& counts() const { return counts_; }
+
+ private:
+  void list(const FieldTask& task, const char* status) {
+    RunImage image;
+    image.image = task.relative.generic_string();
+    image.page = task.page + 1;
+    image.status = status;
+    summary_.images.push_back(std::move(image));
+  }
+
+  const RunSettings& run_;
+  RunSummary summary_;
+  FolderCounts counts_;
+  std::vector<ImageRecord> records_;
+};
+
+}  // namespace
+
+FolderCounts segment_folder(const std::vector<fs::path>& inputs, const SegmentSettings& settings,
+                            const RunSettings& run, JobObserver& observer) {
+  const std::vector<InputFile> files = find_inputs(inputs, run.output);
+  prepare_output_folder(run.output);
+  const std::vector<PlannedField> plan = plan_fields(files, settings, run, observer);
+  const auto finished = static_cast<int>(std::count_if(
+      plan.begin(), plan.end(), [](const PlannedField& f) { return f.finished.has_value(); }));
+  const int to_do = static_cast<int>(plan.size()) - finished;
+  observer.planned(to_do, finished);
+
+  const Pool pool(run.threads);
+  RunLog log(settings, run);
+  int number = 0;
+  bool stopped = false;
+  for (const PlannedField& field : plan) {
+    const FieldTask& task = field.task;
+    if (field.finished) {
+      log.add(task, *field.finished, true);
+      continue;
+    }
+    stopped = stopped || observer.stop_requested();
+    if (stopped) {
+      log.add_not_reached(task);
+      continue;
+    }
+    observer.field_started(number++, to_do, task.name());
+    try {
+      if (!field.failure.empty()) throw Error(ErrorKind::kInput, field.failure);
+      const ImageRecord record = segment_field(task, settings, run, pool, observer);
+      log.add(task, record, false);
+      observer.field_finished(task.name(), record.verdict.converged);
+    } catch (const Error& error) {
+      stopped = error.kind() == ErrorKind::kInterrupt;
+      if (stopped) {
+        log.add_not_reached(task);
+      } else {
+        log.add_failure(task, error.what());
+        observer.field_failed(task.name(), error.what());
+      }
+    }
+  }
+  log.write_tables();
+  return log.counts();
+}
+
+}  // namespace stillfield

@@ -1,0 +1,46 @@
+#include "job/settings.h"
+
+namespace stillfield {
+namespace {
+
+std::string coupling_name(CouplingMode mode) {
+  switch (mode) {
+    case CouplingMode::kAuto:
+      return "auto";
+    case CouplingMode::kSampled:
+      return "sampled";
+    case CouplingMode::kFixed:
+      return "fixed";
+  }
+  return {};
+}
+
+std::uint64_t whole(int value) {
+  return static_cast<std::uint64_t>(value);
+}
+
+}  // namespace
+
+std::vector<NamedValue> named_settings(const SegmentSettings& settings) {
+  std::vector<NamedValue> list = {{"classes", whole(settings.classes)},
+                                  {"neighbours", whole(static_cast<int>(settings.connectivity))},
+                                  {"coupling", coupling_name(settings.coupling.mode)}};
+  if (settings.coupling.mode == CouplingMode::kFixed) {
+    list.push_back({"coupling_value", settings.coupling.value});
+  }
+  const std::vector<NamedValue> rest = {
+      {"variance", std::string(settings.shared_variance ? "shared" : "own")},
+      {"chains", whole(settings.chains)},
+      {"seed", settings.seed},
+      {"sweeps_a_block", whole(settings.schedule.sweeps_a_block)},
+      {"first_part", whole(settings.schedule.first_part)},
+      {"first_window", whole(settings.schedule.first_window)},
+      {"max_sweeps", whole(settings.schedule.max_sweeps)},
+      {"max_rhat", settings.target.max_rhat},
+      {"min_ess", settings.target.min_ess},
+      {"max_probability_mcse", settings.target.max_probability_mcse}};
+  list.insert(list.end(), rest.begin(), rest.end());
+  return list;
+}
+
+}  // namespace stillfield
