@@ -26,7 +26,7 @@ class AlignedBuffer {
   explicit AlignedBuffer(std::size_t size) : size_(size) {
     if (size == 0) return;
     const std::size_t bytes = round_up(size * sizeof(T), kRowAlignment);
-    data_.reset(static_cast<T*>(::operator new(bytes, std::align_val_t{kRowAlignment})));
+    data_.reset(static_cast<T*>(::operator new (bytes, std::align_val_t{kRowAlignment})));
     std::memset(static_cast<void*>(data_.get()), 0, bytes);
   }
 
@@ -43,7 +43,7 @@ class AlignedBuffer {
 
  private:
   struct Free {
-    void operator()(T* p) const { ::operator delete(p, std::align_val_t{kRowAlignment}); }
+    void operator()(T* p) const { ::operator delete (p, std::align_val_t{kRowAlignment}); }
   };
   std::unique_ptr<T, Free> data_;
   std::size_t size_ = 0;

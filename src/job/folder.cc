@@ -88,6 +88,7 @@ FolderCounts segment_folder(const std::vector<fs::path>& inputs, const SegmentSe
 
   const Pool pool(run.threads);
   RunLog log(settings, run);
+  LogPartitionMemo memo;
   int number = 0;
   bool stopped = false;
   for (const PlannedField& field : plan) {
@@ -104,7 +105,7 @@ FolderCounts segment_folder(const std::vector<fs::path>& inputs, const SegmentSe
     observer.field_started(number++, to_do, task.name());
     try {
       if (!field.failure.empty()) throw Error(ErrorKind::kInput, field.failure);
-      const ImageRecord record = segment_field(task, settings, run, pool, observer);
+      const ImageRecord record = segment_field(task, settings, run, pool, observer, memo);
       log.add(task, record, false);
       observer.field_finished(task.name(), record.verdict.converged);
     } catch (const Error& error) {

@@ -19,9 +19,9 @@ struct LabelSampling {
   std::unique_ptr<Colouring> colouring;  // the counts refer to it
   std::unique_ptr<LabelCounts> counts;
   std::unique_ptr<Traces> traces;
-  LabelPrior prior;                      // of the last block; fixed while sampling unless sampled
+  LabelPrior prior;  // of the last block; fixed while sampling unless sampled
   std::vector<CouplingScore> coupling_ladder;  // --coupling auto: what was tried
-  std::vector<NamedSummary> scalars;     // in the order of the traces
+  std::vector<NamedSummary> scalars;           // in the order of the traces
   ProbabilityQuality probability;
   Verdict verdict;
   double log_partition_hysteresis = 0.0;

@@ -1,7 +1,6 @@
 #include "job/restore_one.h"
 
 #include <algorithm>
-#include <optional>
 #include <string>
 
 #include "core/error.h"
@@ -15,8 +14,8 @@ namespace {
 
 // Below this size one image cannot keep two threads busy: whole chains run side by side instead.
 constexpr std::int64_t kRowParallelPixels = 320 * 320;
-constexpr double kWarmRhat = 1.1;    // chains agree well enough to start counting
-constexpr int kVisitsLimit = 255;    // visits are counted in bytes
+constexpr double kWarmRhat = 1.1;  // chains agree well enough to start counting
+constexpr int kVisitsLimit = 255;  // visits are counted in bytes
 
 std::string scalar_name(const Trace& trace) {
   return trace.label == 0 ? trace.name : trace.name + " of class " + std::to_string(trace.label);
@@ -24,7 +23,8 @@ std::string scalar_name(const Trace& trace) {
 
 std::vector<NamedSummary> summarise_all(const Traces& traces) {
   std::vector<NamedSummary> result;
-  for (const Trace& t : traces.all()) result.push_back({scalar_name(t), summarise(Draws(t.chains))});
+  for (const Trace& t : traces.all())
+    result.push_back({scalar_name(t), summarise(Draws(t.chains))});
   return result;
 }
 
@@ -49,17 +49,18 @@ void check_grey_levels(const GreyLevels& grey, int classes) {
                 "image out or check how it was taken");
   }
   if (distinct < classes) {
-    throw Error(ErrorKind::kInput, "only " + std::to_string(distinct) +
-                                       " grey levels occur, fewer than the " +
-                                       std::to_string(classes) + " classes asked for; use --classes " +
-                                       std::to_string(distinct) + " or fewer");
+    throw Error(ErrorKind::kInput,
+                "only " + std::to_string(distinct) + " grey levels occur, fewer than the " +
+                    std::to_string(classes) + " classes asked for; use --classes " +
+                    std::to_string(distinct) + " or fewer");
   }
 }
 
 }  // namespace
 
 LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& settings,
-                          std::uint64_t image_seed, const Pool& pool, JobObserver& observer) {
+                          std::uint64_t image_seed, const Pool& pool, JobObserver& observer,
+                          LogPartitionMemo* memo) {
   check_grey_levels(grey, settings.classes);
   LabelSampling run;
   const Extent extent = grey.level.extent();
@@ -68,13 +69,16 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
   const ObservedField field = observe(colouring, grey);
 
   std::vector<LabelChain> chains = start_chains(
-      field, {settings.classes, settings.chains, settings.shared_variance, settings.coupling, image_seed});
+      field,
+      {settings.classes, settings.chains, settings.shared_variance, settings.coupling, image_seed});
   const GaussianPrior prior = default_prior(grey, chains.front().model.classes);
   const bool sampled = settings.coupling.mode == CouplingMode::kSampled;
-  std::optional<LogPartition> log_partition;
+  LogPartitionMemo own_memo;
+  const LogPartition* log_partition = nullptr;
   if (sampled) {
-    log_partition = integrate_log_partition(extent, colouring.neighbourhood(), settings.classes,
-                                            settings.seed, pool);
+    log_partition =
+        &(memo ? *memo : own_memo)
+             .get(extent, colouring.neighbourhood(), settings.classes, settings.seed, pool);
     run.log_partition_hysteresis = log_partition->hysteresis;
   }
   CouplingAdaptation adaptation(field, prior);
@@ -102,13 +106,18 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
     if (schedule.stage() != Stage::kAdapting) {
       run.traces->record(c, chain, colouring.neighbourhood());
     }
-    if (chain.visits_pending + schedule.sweeps_a_block() > kVisitsLimit) run.counts->take(c, chain);
+    // Visits move on when their bytes might overflow, and when the first part of the chain is full.
+    const int block = schedule.sweeps_a_block();
+    const bool part_full = schedule.stage() == Stage::kSampling &&
+                           schedule.sampling_sweeps() + block == schedule.first_part();
+    if (part_full || chain.visits_pending + block > kVisitsLimit) run.counts->take(c, chain);
   };
 
   while (schedule.stage() != Stage::kDone) {
     if (observer.stop_requested()) throw Error(ErrorKind::kInterrupt, "stopped on request");
     if (side_by_side) {
-      pool.for_each(settings.chains, [&](int c) { advance(c, weights[static_cast<std::size_t>(c)], serial); });
+      pool.for_each(settings.chains,
+                    [&](int c) { advance(c, weights[static_cast<std::size_t>(c)], serial); });
     } else {
       for (int c = 0; c < settings.chains; ++c) advance(c, weights.front(), pool);
     }
@@ -123,8 +132,8 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
       if (schedule.stage() == Stage::kSampling) {
         run.traces->clear();
         for (LabelChain& chain : chains) {
-          chain.visits = AlignedBuffer<std::uint8_t>(colouring.plane_elements() *
-                                                     static_cast<std::size_t>(settings.classes - 1));
+          chain.visits = AlignedBuffer<std::uint8_t>(
+              colouring.plane_elements() * static_cast<std::size_t>(settings.classes - 1));
         }
       }
     } else if (schedule.look_at_sampling()) {

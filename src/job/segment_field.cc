@@ -111,7 +111,7 @@ void write_maps(const FieldTask& task, const LabelSampling& sampling, int classe
 }
 
 ImageRecord segment(const FieldTask& task, const SegmentSettings& settings, const RunSettings& run,
-                    const Pool& pool, JobObserver& observer) {
+                    const Pool& pool, JobObserver& observer, LogPartitionMemo& memo) {
   ImageRecord record;
   Stopwatch watch;
   GreyLevels grey;
@@ -135,7 +135,7 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& settings, cons
 
   const std::uint64_t seed = seed_of(settings, record.input.sha256, task.page);
   record.image_seed = hexadecimal(seed);
-  const LabelSampling sampling = restore_one(grey, settings, seed, pool, observer);
+  const LabelSampling sampling = restore_one(grey, settings, seed, pool, observer, &memo);
   describe_sampling(sampling, settings, record);
   record.run.sample_seconds = watch.lap();
 
@@ -157,9 +157,10 @@ std::string with_name(const FieldTask& task, const std::string& sentence) {
 }  // namespace
 
 ImageRecord segment_field(const FieldTask& task, const SegmentSettings& settings,
-                          const RunSettings& run, const Pool& pool, JobObserver& observer) {
+                          const RunSettings& run, const Pool& pool, JobObserver& observer,
+                          LogPartitionMemo& memo) {
   try {
-    return segment(task, settings, run, pool, observer);
+    return segment(task, settings, run, pool, observer, memo);
   } catch (const Error& error) {
     if (error.kind() == ErrorKind::kInterrupt) throw;
     throw Error(error.kind(), with_name(task, error.what()));

@@ -13,11 +13,14 @@
 #include "job/settings.h"
 #include "parallel/pool.h"
 #include "report/record.h"
+#include "sampler/path_sampling.h"
 
 namespace stillfield {
 
+// `memo` serves all fields of a run.
 ImageRecord segment_field(const FieldTask& task, const SegmentSettings& settings,
-                          const RunSettings& run, const Pool& pool, JobObserver& observer);
+                          const RunSettings& run, const Pool& pool, JobObserver& observer,
+                          LogPartitionMemo& memo);
 
 }  // namespace stillfield
 

@@ -17,11 +17,11 @@ namespace stillfield {
 
 // Settings that change results; all of them stand in the record.
 struct SegmentSettings {
-  int classes = 2;                                       // 2..64
+  int classes = 2;  // 2..64
   Connectivity connectivity = Connectivity::kFour;
   CouplingSettings coupling;
   bool shared_variance = false;
-  int chains = 4;                                        // 2..16
+  int chains = 4;  // 2..16
   std::uint64_t seed = 1;
   ScheduleSettings schedule;
   ConvergenceTarget target;

@@ -45,11 +45,9 @@ bool draw_gaussian_classes(const GreyLevels& grey, const std::vector<ClassSums>&
     shared_scale += squares;
   }
   GaussianClasses drawn = classes;
-  const double shared =
-      classes.shared_variance ? shared_scale / random.gamma(shared_shape) : 0.0;
+  const double shared = classes.shared_variance ? shared_scale / random.gamma(shared_shape) : 0.0;
   for (std::size_t k = 0; k < count; ++k) {
-    const double variance =
-        classes.shared_variance ? shared : scale[k] / random.gamma(shape[k]);
+    const double variance = classes.shared_variance ? shared : scale[k] / random.gamma(shape[k]);
     const double weight = prior.kappa + m[k].n;
     const double centre = (prior.kappa * prior.mean + m[k].n * m[k].mean) / weight;
     drawn.sd[k] = std::sqrt(variance);

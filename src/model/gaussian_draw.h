@@ -2,7 +2,8 @@
 //
 // Prior    mean_k | sd_k ~ N(m0, sd_k^2 / kappa0),  sd_k^2 ~ Inv-Gamma(nu0 / 2, nu0 s0^2 / 2),
 //          restricted to mean_1 < ... < mean_K
-// Draw     sd_k^2 ~ Inv-Gamma((nu0 + n_k)/2, (nu0 s0^2 + SS_k + kappa0 n_k/(kappa0+n_k) (ybar_k-m0)^2)/2)
+// Draw     sd_k^2 ~ Inv-Gamma((nu0 + n_k)/2, (nu0 s0^2 + SS_k + kappa0 n_k/(kappa0+n_k)
+// (ybar_k-m0)^2)/2)
 //          mean_k ~ N((kappa0 m0 + n_k ybar_k)/(kappa0+n_k), sd_k^2/(kappa0+n_k))
 //          with a shared variance the sums run over all classes.
 //          Gelman, Carlin, Stern, Dunson, Vehtari, Rubin, Bayesian Data Analysis (3rd ed.), 3.3.
@@ -22,7 +23,7 @@ namespace stillfield {
 
 // Sums over the observed pixels of one class, in levels: exact integers.
 struct ClassSums {
-  std::uint64_t sites = 0;     // all pixels with this label, missing ones too
+  std::uint64_t sites = 0;  // all pixels with this label, missing ones too
   std::uint64_t observed = 0;
   std::uint64_t level_sum = 0;
   std::uint64_t level_square_sum = 0;

@@ -94,12 +94,14 @@ GreyLevels make_grey_levels(View<const float> pixels) {
   g.origin = range.low;
   if (exact) {
     g.levels = std::min(static_cast<int>(width) + 1, kMaxLevels);
-    if (width >= kMaxLevels) g.notes.emplace_back("the two brightest of 65536 grey values share a level");
+    if (width >= kMaxLevels)
+      g.notes.emplace_back("the two brightest of 65536 grey values share a level");
   } else {
     g.levels = width > 0.0 ? kMaxLevels : 1;
     g.step = width > 0.0 ? width / (kMaxLevels - 1) : 1.0;
     char text[96];
-    std::snprintf(text, sizeof text, "grey values were rounded to 65535 levels, %.3g apart", g.step);
+    std::snprintf(text, sizeof text, "grey values were rounded to 65535 levels, %.3g apart",
+                  g.step);
     g.notes.emplace_back(text);
   }
   const std::int64_t missing = pixels.extent().sites() - range.observed;

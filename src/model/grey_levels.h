@@ -23,14 +23,14 @@ struct GreyLevels {
   Volume<std::uint16_t> level;
   double origin = 0.0;
   double step = 1.0;
-  int levels = 0;                        // 1..65535
-  std::vector<std::int64_t> histogram;   // pixels at each level, without missing ones
-  std::int64_t observed = 0;             // pixels that are not missing
+  int levels = 0;                       // 1..65535
+  std::vector<std::int64_t> histogram;  // pixels at each level, without missing ones
+  std::int64_t observed = 0;            // pixels that are not missing
   std::vector<std::string> notes;
 
   double value(int l) const { return origin + step * l; }
   std::uint16_t missing() const { return static_cast<std::uint16_t>(levels); }
-  int distinct() const;                  // levels that occur
+  int distinct() const;  // levels that occur
 };
 
 // Throws Error(kInput) when every pixel is missing; the caller adds the file's name.

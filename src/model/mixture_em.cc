@@ -143,9 +143,9 @@ void sort_by_mean(Mixture& m) {
 
 Mixture fit_mixture(const GreyHistogram& histogram, int classes, bool shared_variance) {
   if (static_cast<int>(histogram.value.size()) < classes) {
-    throw Error(ErrorKind::kInput, "only " + std::to_string(histogram.value.size()) +
-                                       " grey levels occur, fewer than the " +
-                                       std::to_string(classes) + " classes asked for");
+    throw Error(ErrorKind::kInput,
+                "of the grey levels only " + std::to_string(histogram.value.size()) +
+                    " occur, fewer than the " + std::to_string(classes) + " classes asked for");
   }
   const GreyHistogram h = binned(histogram);
   const Moments all = total_moments(h);
@@ -174,7 +174,8 @@ Mixture fit_mixture(const GreyHistogram& histogram, int classes, bool shared_var
 int most_likely_class(const Mixture& mixture, double value) {
   int best = 0;
   for (std::size_t k = 1; k < mixture.proportion.size(); ++k) {
-    if (log_density(mixture, k, value) > log_density(mixture, static_cast<std::size_t>(best), value)) {
+    if (log_density(mixture, k, value) >
+        log_density(mixture, static_cast<std::size_t>(best), value)) {
       best = static_cast<int>(k);
     }
   }

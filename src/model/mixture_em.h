@@ -22,7 +22,7 @@ struct GreyHistogram {
 };
 
 struct Mixture {
-  GaussianClasses classes;         // by rising mean
+  GaussianClasses classes;  // by rising mean
   std::vector<double> proportion;
   double log_likelihood = 0.0;
 };

@@ -22,8 +22,7 @@ Neighbourhood make_neighbourhood(Connectivity connectivity, double spacing_z) {
   }
   const bool volume =
       connectivity == Connectivity::kSix || connectivity == Connectivity::kTwentySix;
-  const bool faces_only =
-      connectivity == Connectivity::kFour || connectivity == Connectivity::kSix;
+  const bool faces_only = connectivity == Connectivity::kFour || connectivity == Connectivity::kSix;
 
   struct Candidate {
     double distance;

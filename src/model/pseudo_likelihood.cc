@@ -13,7 +13,7 @@ constexpr double kPriorPrecision = 0.01;  // sd 10, for alpha_k around 0 and bet
 constexpr double kMaxStep = 0.5;
 
 struct Score {
-  Eigen::VectorXd gradient;     // alpha_2 .. alpha_K (alpha_1 = 0 fixes the scale), then beta
+  Eigen::VectorXd gradient;  // alpha_2 .. alpha_K (alpha_1 = 0 fixes the scale), then beta
   Eigen::MatrixXd information;
 };
 
@@ -62,7 +62,9 @@ Score score(const NeighbourCounts& counts, const LabelPrior& prior) {
   return {gradient, information};
 }
 
-double limited(double step) { return std::clamp(step, -kMaxStep, kMaxStep); }
+double limited(double step) {
+  return std::clamp(step, -kMaxStep, kMaxStep);
+}
 
 }  // namespace
 

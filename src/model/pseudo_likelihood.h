@@ -1,6 +1,7 @@
 // Class field and coupling from the labels of some pixels and their neighbours.
 //
-// Maths    PL(alpha, beta) = sum_s log [ e^{alpha_{z_s} + beta n_{z_s}} / sum_k e^{alpha_k + beta n_k} ]
+// Maths    PL(alpha, beta) = sum_s log [ e^{alpha_{z_s} + beta n_{z_s}} / sum_k e^{alpha_k + beta
+// n_k} ]
 //          (Besag 1975), n_k = weighted number of neighbours with label k. It is concave; one step
 //          adds gain * (H + R)^-1 (g - R (theta - theta_0)), H the sum of the covariances of
 //          (1[k], n_k) under the conditionals, R a weak Gaussian prior (sd 10).

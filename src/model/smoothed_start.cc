@@ -46,9 +46,9 @@ Volume<float> box_mean(const GreyLevels& grey, int radius) {
       for (int x = 0; x < e.width; ++x) {
         take_column(x + radius, 1);
         take_column(x - radius - 1, -1);
-        out[x] = w.count > 0 ? static_cast<float>(static_cast<double>(w.sum) /
-                                                  static_cast<double>(w.count))
-                             : -1.0f;
+        out[x] = w.count > 0
+                     ? static_cast<float>(static_cast<double>(w.sum) / static_cast<double>(w.count))
+                     : -1.0f;
       }
     }
   }
@@ -122,7 +122,12 @@ GaussianClasses measure_classes(const GreyLevels& grey, const Volume<std::uint8_
 
 LabelStart smoothed_start(const GreyLevels& grey, int classes, int radius, bool shared_variance) {
   const Volume<float> mean = box_mean(grey, radius);
-  const Mixture mixture = fit_mixture(histogram_of(grey, mean), classes, shared_variance);
+  const GreyHistogram histogram = histogram_of(grey, mean);
+  // In a tiny image averages may coincide where pixels differ.
+  if (radius > 0 && static_cast<int>(histogram.value.size()) < classes) {
+    return smoothed_start(grey, classes, 0, shared_variance);
+  }
+  const Mixture mixture = fit_mixture(histogram, classes, shared_variance);
   LabelStart start{Volume<std::uint8_t>(grey.level.extent()), {}};
   std::vector<std::uint8_t> class_of_level(static_cast<std::size_t>(grey.levels));
   for (int l = 0; l < grey.levels; ++l) {

@@ -35,7 +35,9 @@ Pool::Pool(int threads) {
 
 Pool::~Pool() = default;
 
-int Pool::threads() const { return impl_->threads; }
+int Pool::threads() const {
+  return impl_->threads;
+}
 
 void Pool::for_bands(int n, int grain, const std::function<void(int, int)>& body) const {
   if (impl_->threads == 1 || n <= grain) {

@@ -136,7 +136,8 @@ void LabelCounts::for_each_pixel(const Visit& visit) const {
             const std::size_t i =
                 static_cast<std::size_t>(k - 1) * c.plane_elements() + at + c.byte_of(j);
             int visits = 0;
-            for (const ChainCounts& counts : chains_) visits += counts.part[0][i] + counts.part[1][i];
+            for (const ChainCounts& counts : chains_)
+              visits += counts.part[0][i] + counts.part[1][i];
             n[static_cast<std::size_t>(k)] = visits;
             n[0] -= visits;
           }

@@ -24,8 +24,8 @@ namespace stillfield {
 inline constexpr int kMaxCountedSweeps = 65535;  // a part, from the 16-bit counts
 
 struct ProbabilityQuality {
-  double mcse = 0.0;           // root mean square over pixels, of the class where it is largest
-  double worst_share = 0.0;    // share of pixels with R-hat above kPixelRhat for some class
+  double mcse = 0.0;         // root mean square over pixels, of the class where it is largest
+  double worst_share = 0.0;  // share of pixels with R-hat above kPixelRhat for some class
 };
 inline constexpr double kPixelRhat = 1.05;
 

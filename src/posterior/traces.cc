@@ -2,10 +2,10 @@
 
 namespace stillfield {
 
-Traces::Traces(int classes, int chains, bool with_coupling)
-    : classes_(classes), with_coupling_(with_coupling) {
+Traces::Traces(int classes, int chains, bool with_coupling) : with_coupling_(with_coupling) {
   const auto add = [&](const char* name, int label) {
-    traces_.push_back({name, label, std::vector<std::vector<double>>(static_cast<std::size_t>(chains))});
+    traces_.push_back(
+        {name, label, std::vector<std::vector<double>>(static_cast<std::size_t>(chains))});
   };
   for (const char* name : {"area_fraction", "class_mean", "class_sd"}) {
     for (int k = 1; k <= classes; ++k) add(name, k);

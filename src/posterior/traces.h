@@ -10,9 +10,9 @@
 namespace stillfield {
 
 struct Trace {
-  std::string name;                          // area_fraction, class_mean, class_sd, ...
-  int label = 0;                             // class 1..K; 0: the whole image
-  std::vector<std::vector<double>> chains;   // [chain][draw]
+  std::string name;                         // area_fraction, class_mean, class_sd, ...
+  int label = 0;                            // class 1..K; 0: the whole image
+  std::vector<std::vector<double>> chains;  // [chain][draw]
 };
 
 class Traces {
@@ -29,7 +29,6 @@ class Traces {
   const std::vector<Trace>& all() const { return traces_; }
 
  private:
-  int classes_;
   bool with_coupling_;
   std::vector<Trace> traces_;
 };

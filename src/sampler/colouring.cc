@@ -82,10 +82,10 @@ Site Colouring::site(int x, int y, int z) const {
 
 std::size_t Colouring::label_row(int colour, int slice, int row) const {
   const std::size_t slices = static_cast<std::size_t>(max_slices_ + 2 * guard_slices_);
-  const std::size_t at =
-      (static_cast<std::size_t>(colour) * slices + static_cast<std::size_t>(slice + guard_slices_)) *
-          static_cast<std::size_t>(max_rows_ + 2) +
-      static_cast<std::size_t>(row + 1);
+  const std::size_t at = (static_cast<std::size_t>(colour) * slices +
+                          static_cast<std::size_t>(slice + guard_slices_)) *
+                             static_cast<std::size_t>(max_rows_ + 2) +
+                         static_cast<std::size_t>(row + 1);
   return at * static_cast<std::size_t>(label_stride_) + kRowMargin;
 }
 

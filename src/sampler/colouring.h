@@ -39,7 +39,7 @@ class Colouring {
   const Neighbourhood& neighbourhood() const { return neighbourhood_; }
   int colours() const { return colours_; }
   bool volume() const { return guard_slices_ > 0; }  // neighbours in other slices
-  int words() const { return words_; }        // Q
+  int words() const { return words_; }               // Q
   int slices(int colour) const;
   int rows(int colour) const;
   int sites(int colour, int slice, int row) const;

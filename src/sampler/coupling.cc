@@ -42,8 +42,9 @@ void CouplingAdaptation::adapt(std::vector<LabelChain>& chains, const Pool& pool
   ++steps_;
   LabelPrior prior = chains.front().model.prior;
   if (steps_ <= kFittingSteps) {
-    climb_pseudo_likelihood(counts, 1.0,
-                            max_coupling(colouring.neighbourhood(), static_cast<int>(prior.alpha.size())), prior);
+    climb_pseudo_likelihood(
+        counts, 1.0, max_coupling(colouring.neighbourhood(), static_cast<int>(prior.alpha.size())),
+        prior);
   } else {
     climb_class_field(counts, exact_exp(-kGainPower * exact_log(steps_ - kFittingSteps)), prior);
   }

@@ -213,7 +213,8 @@ CouplingChoice search_coupling(const ObservedField& field, const GaussianPrior& 
         SearchField& f = fields[static_cast<std::size_t>(c)];
         f.chain.model.prior = current;
         advance(f, prior, serial);
-        sample_neighbours(*f.colouring, f.chain, kSampledPixels, 0.5, samples[static_cast<std::size_t>(c)]);
+        sample_neighbours(*f.colouring, f.chain, kSampledPixels, 0.5,
+                          samples[static_cast<std::size_t>(c)]);
       });
       NeighbourCounts all = std::move(samples.front());
       for (std::size_t c = 1; c < samples.size(); ++c) {

@@ -7,8 +7,9 @@
 // Maths    score(beta) = sum over held-out pixels s of log sum_k P(z_s = k | y without the held-out
 //          pixels) f_k(y_s), the log predictive density of cross-validation (Geisser & Eddy 1979).
 //          P is the mean of P(z_s = k | neighbours) over sweeps; alpha is fitted by
-//          pseudo-likelihood at each beta. The choice averages beta and alpha over a ladder of couplings with weights
-//          exp(score / 12): pseudo-Bayesian model averaging, softened for the noise of the score.
+//          pseudo-likelihood at each beta. The choice averages beta and alpha over a ladder of
+//          couplings with weights exp(score / 12): pseudo-Bayesian model averaging, softened for
+//          the noise of the score.
 // Method   every chain searches with its own eighth of the pixels held out; on images above
 //          kWholeField pixels each chain searches in its own window of kWindow x kWindow.
 #ifndef STILLFIELD_SAMPLER_COUPLING_SEARCH_H_
@@ -24,8 +25,8 @@ namespace stillfield {
 
 struct CouplingScore {
   double beta = 0.0;
-  double score = 0.0;          // sum of log predictive densities
-  std::vector<double> alpha;   // fitted at this beta
+  double score = 0.0;         // sum of log predictive densities
+  std::vector<double> alpha;  // fitted at this beta
 };
 
 struct CouplingChoice {

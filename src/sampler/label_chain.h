@@ -44,8 +44,8 @@ struct LabelChain {
   PhiloxKey key{};
   std::uint32_t sweeps_done = 0;
   LabelModel model;
-  AlignedBuffer<std::uint8_t> labels;   // colour-split with guards
-  LabelTotals totals;                   // of the current labels
+  AlignedBuffer<std::uint8_t> labels;  // colour-split with guards
+  LabelTotals totals;                  // of the current labels
   // Visits to each class above the first since they were last emptied (< 256); empty while
   // warming up.
   AlignedBuffer<std::uint8_t> visits;

@@ -28,8 +28,8 @@ void sample_neighbours(const Colouring& c, const LabelChain& chain, int wanted, 
           counts.count.resize(first + static_cast<std::size_t>(classes), 0.0f);
           for (int r = 0; r < band.ring_count; ++r) {
             const Ring& ring = band.rings[static_cast<std::size_t>(r)];
-            const auto weight = static_cast<float>(
-                c.neighbourhood().rings[static_cast<std::size_t>(r)].weight);
+            const auto weight =
+                static_cast<float>(c.neighbourhood().rings[static_cast<std::size_t>(r)].weight);
             for (int t = 0; t < ring.neighbours; ++t) {
               const std::uint8_t k = at[ring.offset[parity][static_cast<std::size_t>(t)]];
               if (k < classes) counts.count[first + k] += weight;

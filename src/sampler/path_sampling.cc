@@ -122,6 +122,19 @@ LogPartition integrate_log_partition(Extent extent, const Neighbourhood& neighbo
   return result;
 }
 
+const LogPartition& LogPartitionMemo::get(Extent extent, const Neighbourhood& neighbourhood,
+                                          int classes, std::uint64_t seed, const Pool& pool) {
+  for (const Entry& e : entries_) {
+    if (e.extent == extent && e.connectivity == neighbourhood.connectivity &&
+        e.total_weight == neighbourhood.total_weight() && e.classes == classes && e.seed == seed) {
+      return e.value;
+    }
+  }
+  entries_.push_back({extent, neighbourhood.connectivity, neighbourhood.total_weight(), classes,
+                      seed, integrate_log_partition(extent, neighbourhood, classes, seed, pool)});
+  return entries_.back().value;
+}
+
 double LogPartition::log_z_at(double b) const {
   if (b <= 0.0) return 0.0;
   const auto above = std::lower_bound(beta.begin() + 1, beta.end() - 1, b);
@@ -155,15 +168,15 @@ double draw_coupling(const LogPartition& lp, double weighted_pairs, RandomStream
   const double top = log_density(mode);
   const auto reach = [&](double direction) {
     double step = 1e-6;
-    while (step < lp.max_beta() && log_density(std::clamp(mode + direction * step, 0.0,
-                                                          lp.max_beta())) > top - 40.0) {
+    while (step < lp.max_beta() &&
+           log_density(std::clamp(mode + direction * step, 0.0, lp.max_beta())) > top - 40.0) {
       step *= 1.5;
     }
     return std::clamp(mode + direction * step, 0.0, lp.max_beta());
   };
   low = reach(-1.0);
   high = reach(1.0);
-  constexpr int kPoints = 2000;
+  constexpr int kPoints = 400;  // some 20 for each standard deviation of beta
   std::vector<double> cumulative(kPoints + 1);
   double last = exact_exp(log_density(low) - top);
   for (int i = 1; i <= kPoints; ++i) {

@@ -12,6 +12,8 @@
 #ifndef STILLFIELD_SAMPLER_PATH_SAMPLING_H_
 #define STILLFIELD_SAMPLER_PATH_SAMPLING_H_
 
+#include <cstdint>
+#include <deque>
 #include <vector>
 
 #include "core/extent.h"
@@ -22,10 +24,10 @@
 namespace stillfield {
 
 struct LogPartition {
-  std::vector<double> beta;         // rising, from 0
-  std::vector<double> mean_pairs;   // E_beta[S]
-  std::vector<double> log_z;        // ln Z(beta) - ln Z(0)
-  double hysteresis = 0.0;          // largest |up - down| of E[S], per pair
+  std::vector<double> beta;        // rising, from 0
+  std::vector<double> mean_pairs;  // E_beta[S]
+  std::vector<double> log_z;       // ln Z(beta) - ln Z(0)
+  double hysteresis = 0.0;         // largest |up - down| of E[S], per pair
 
   double max_beta() const { return beta.back(); }
   // Linear between grid points for E[S], its exact integral for ln Z.
@@ -41,10 +43,32 @@ double max_coupling(const Neighbourhood& neighbourhood, int classes);
 double transition_coupling(const Neighbourhood& neighbourhood, int classes);
 
 LogPartition integrate_log_partition(Extent extent, const Neighbourhood& neighbourhood, int classes,
-                                     std::uint64_t seed, const Pool& pool, int sweeps_a_point = 200);
+                                     std::uint64_t seed, const Pool& pool,
+                                     int sweeps_a_point = 200);
+
+// Integrals already computed, by size, neighbourhood and classes: the images of a folder share
+// them.
+class LogPartitionMemo {
+ public:
+  // The reference holds as long as the memo.
+  const LogPartition& get(Extent extent, const Neighbourhood& neighbourhood, int classes,
+                          std::uint64_t seed, const Pool& pool);
+
+ private:
+  struct Entry {
+    Extent extent;
+    Connectivity connectivity;
+    double total_weight;  // tells spacings apart
+    int classes;
+    std::uint64_t seed;
+    LogPartition value;
+  };
+  std::deque<Entry> entries_;
+};
 
 // One draw of beta given S(z).
-double draw_coupling(const LogPartition& log_partition, double weighted_pairs, RandomStream& random);
+double draw_coupling(const LogPartition& log_partition, double weighted_pairs,
+                     RandomStream& random);
 
 }  // namespace stillfield
 

@@ -15,7 +15,9 @@ void Schedule::block_done() {
   if (stage_ == Stage::kSampling) sampling_ += settings_.sweeps_a_block;
 }
 
-void Schedule::coupling_settled() { stage_ = Stage::kWarming; }
+void Schedule::coupling_settled() {
+  stage_ = Stage::kWarming;
+}
 
 bool Schedule::look_at_warm_up() const {
   return stage_ == Stage::kWarming && warming_ >= window_;

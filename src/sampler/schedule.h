@@ -16,10 +16,10 @@ namespace stillfield {
 enum class Stage { kAdapting, kWarming, kSampling, kDone };
 
 struct ScheduleSettings {
-  int sweeps_a_block = 4;    // label sweeps between parameter draws
-  int first_part = 96;       // sweeps, a multiple of 2 * sweeps_a_block
-  int first_window = 96;     // warm-up sweeps before the first look
-  int max_sweeps = 8000;     // a chain, warm-up and sampling together; at least 600
+  int sweeps_a_block = 4;  // label sweeps between parameter draws
+  int first_part = 96;     // sweeps, a multiple of 2 * sweeps_a_block
+  int first_window = 96;   // warm-up sweeps before the first look
+  int max_sweeps = 8000;   // a chain, warm-up and sampling together; at least 600
 };
 
 class Schedule {
@@ -33,9 +33,9 @@ class Schedule {
   // Every chain has made one more block.
   void block_done();
 
-  void coupling_settled();        // adapting -> warming
-  bool look_at_warm_up() const;   // a window is full
-  void warm_up_judged(bool over); // warming -> sampling, or a longer window
+  void coupling_settled();         // adapting -> warming
+  bool look_at_warm_up() const;    // a window is full
+  void warm_up_judged(bool over);  // warming -> sampling, or a longer window
   bool look_at_sampling() const;
   void sampling_judged(bool enough);
 

@@ -62,9 +62,9 @@ std::vector<LabelChain> start_chains(const ObservedField& field, const ChainSett
       transition_coupling(colouring.neighbourhood(), settings.classes) * kStartOfTransition;
   for (std::size_t c = 0; c < chains.size(); ++c) {
     LabelChain& chain = chains[c];
-    LabelStart start = smoothed_start(*field.grey, settings.classes,
-                                      kRadius[std::min(c, kRadius.size() - 1)],
-                                      settings.shared_variance);
+    LabelStart start =
+        smoothed_start(*field.grey, settings.classes, kRadius[std::min(c, kRadius.size() - 1)],
+                       settings.shared_variance);
     chain.key = chain_key(settings.seed, static_cast<std::uint32_t>(c));
     if (c + 1 >= kRadius.size()) {
       RandomStream random(chain.key, Purpose::kStart);
@@ -72,9 +72,8 @@ std::vector<LabelChain> start_chains(const ObservedField& field, const ChainSett
     }
     chain.model.classes = start.classes;
     chain.model.prior.alpha.assign(static_cast<std::size_t>(settings.classes), 0.0);
-    chain.model.prior.beta = settings.coupling.mode == CouplingMode::kFixed
-                                 ? settings.coupling.value
-                                 : transition;
+    chain.model.prior.beta =
+        settings.coupling.mode == CouplingMode::kFixed ? settings.coupling.value : transition;
     chain.labels = guarded_labels(colouring);
     scatter_labels(colouring, start.labels.view(), chain.labels);
   }

@@ -140,8 +140,8 @@ void sweep_labels(const Colouring& c, const WeightPlanes& weights, int sweeps, P
         band.counts = counting ? chain.visits.data() + c.plane_row(colour, slice, 0) : nullptr;
         band.random.key = chain.key;
         band.random.sweep = chain.sweeps_done;
-        band.random.word3 = counter_word3(purpose, static_cast<std::uint32_t>(colour),
-                                          c.random_slice(slice));
+        band.random.word3 =
+            counter_word3(purpose, static_cast<std::uint32_t>(colour), c.random_slice(slice));
         if (two_labels) {
           two_label_rows(band);
         } else {

@@ -1,13 +1,13 @@
 // Intervals of `--coupling sampled` on images drawn from the model itself.
 //
-// Images   40 fields of 40 x 40 two-label Potts labels, beta = 0.85, Gaussian noise 0.6 of the
-// class
-//          contrast (tests/study/synthetic.h); restore_one as the program runs it
-// Bound    the number of 90 % intervals of the area fraction that hold the truth is binomial(40,
-// 0.9)
-//          if the intervals are right; too few at a false-alarm level of 1e-3. Since 40 of 40 has
-//          probability 1.5 %, too wide intervals are caught by the ranks instead: the mean of the
-//          truth's position in its posterior is 1/2 with variance 1/12, and so is its spread.
+// Images   40 two-label Potts fields of 40 x 40, beta = 0.85, Gaussian noise of 0.6 class contrasts
+//          (tests/study/synthetic.h); restore_one as the program runs it, with 3 000 sweeps at most
+// Bound    the number of 90 % intervals of the area fraction that hold the truth is
+//          binomial(40, 0.9) if the intervals are right; too few at a false-alarm level of 1e-3.
+//          Since 40 of 40 has probability 1.5 %, intervals that are too wide show in the ranks
+//          instead: the truth's place in its posterior has mean 1/2 and variance 1/12.
+//          The images are drawn at one beta, not from a prior, so this holds nearly, not exactly;
+//          calibration_test.cc has the exact test.
 #include <algorithm>
 #include <boost/math/distributions/binomial.hpp>
 #include <catch2/catch.hpp>

@@ -3,8 +3,7 @@
 // Free     E[S] of L x L fields with the program's own free boundaries, by sweep_labels, against
 //          transfer matrices (strip.h)
 // Torus    energy per site of L = 4, 16, 32 with the program's kernels and periodic guards
-// (torus.h)
-//          against Kaufman 1949, recomputed from the formula (kaufman.h)
+//          (torus.h) against Kaufman 1949, recomputed from the formula (kaufman.h)
 // Error    4 Monte Carlo standard errors, from at least 100 batches far longer than the
 //          autocorrelation time (at the critical point about L^2.17 sweeps); false alarms 6.3e-5 a
 //          comparison, seeds fixed

@@ -1,17 +1,14 @@
 // The transition of the q-label Potts field, from the fraction of equal neighbours on a torus.
 //
 // Source   At beta_c = ln(1 + sqrt q) (Potts 1952; Beffara & Duminil-Copin 2012) the infinite
-// square
-//          lattice has the fraction (1 + 1/sqrt q) / 2 of equal neighbour pairs, by duality, for
-//          q <= 4, where the transition is continuous.
-// Method   fraction at 0.985 and 1.005 beta_c on a torus of 64 x 64; the coupling where the
-// straight
-//          line between the two meets the known fraction is an estimate of beta_c.
+//          square lattice has the fraction (1 + 1/sqrt q) / 2 of equal neighbour pairs, by duality,
+//          for q <= 4, where the transition is continuous.
+// Method   fraction at 0.985 and 1.005 beta_c on a torus of 64 x 64; the coupling where the line
+//          through the two meets the known fraction is an estimate of beta_c.
 // Bound    0.5 % of beta_c. The finite torus shifts the crossing by about L^(-1/nu), nu = 1, 5/6,
-// 2/3
-//          for q = 2, 3, 4 (Wu 1982), times a constant: for q = 2 Kaufman's exact energies put the
-//          crossing of this very construction at 0.9983 beta_c, and the shifts of q = 3 and 4 fall
-//          off faster with L. The Monte Carlo error is asserted to stay below 0.1 %.
+//          2/3 for q = 2, 3, 4 (Wu 1982), times a constant: for q = 2 Kaufman's exact energies put
+//          the crossing of this very construction at 0.9983 beta_c, and the shifts of q = 3 and 4
+//          fall off faster with L. The Monte Carlo error is asserted to stay below 0.1 %.
 #include <catch2/catch.hpp>
 #include <cmath>
 

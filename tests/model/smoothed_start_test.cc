@@ -74,3 +74,15 @@ TEST_CASE("images smaller than the square are averaged as far as they go") {
   CHECK(start.labels.at(0, 0) == 0);
   CHECK(start.labels.at(1, 0) == 1);
 }
+
+TEST_CASE("two pixels of two grey levels start as two classes at any radius") {
+  Volume<float> pixels({2, 1});
+  pixels.at(0, 0) = 10.0F;
+  pixels.at(1, 0) = 20.0F;
+  const GreyLevels grey = make_grey_levels(pixels.view());
+  for (const int radius : {0, 1, 2}) {
+    const LabelStart start = smoothed_start(grey, 2, radius, false);
+    CHECK(start.labels.at(0, 0) == 0);
+    CHECK(start.labels.at(1, 0) == 1);
+  }
+}
