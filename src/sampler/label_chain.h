@@ -28,7 +28,7 @@ ObservedField observe(const Colouring& colouring, const GreyLevels& grey);
 // one after the other can share it.
 struct WeightPlanes {
   WeightTable table;
-  AlignedBuffer<float> value;  // colour-split, one plane or K planes
+  AlignedBuffer<float> value;  // colour-split; the rows of all classes side by side (sweep.cc)
 };
 
 // Exact integer sums over a label field.
