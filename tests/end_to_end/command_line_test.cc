@@ -83,7 +83,7 @@ TEST_CASE("options may stand in a file, and the command line wins") {
             .code == 2);
 }
 
-TEST_CASE("--strict turns results that did not converge into exit code 3") {
+TEST_CASE("with --strict results that did not converge give exit code 3") {
   const TempFolder folder;
   save_png(folder / "a.png", draw_scene({48, 40, 2, 9}));
   // The tightest targets and the fewest sweeps: this cannot converge.
@@ -100,7 +100,7 @@ TEST_CASE("--strict turns results that did not converge into exit code 3") {
   CHECK_THAT(verdict["sentences"].dump(), Contains("--max-sweeps"));
 }
 
-TEST_CASE("--quiet writes nothing, and nothing is drawn without a terminal") {
+TEST_CASE("with --quiet nothing is written, and nothing is drawn without a terminal") {
   const TempFolder folder;
   save_png(folder / "a.png", draw_scene({}));
   const Ended piped = segment(folder / "a.png", 2, folder / "out");
