@@ -34,7 +34,13 @@ enum class Purpose : std::uint32_t {
   kStart = 2,       // over-dispersed starts
   kLogZ = 3,        // label sweeps of the path-sampling integral
   kSimulation = 4,  // synthetic images of generators, tests and studies
-  kHeldOut = 5      // search for the coupling on held-out pixels
+  kHeldOut = 5,     // search for the coupling on held-out pixels
+  kIntensity = 6,   // one normal a pixel and sweep of an intensity field
+  kPairScale = 7,   // auxiliary scales of neighbour differences
+  kTiling = 8,      // patches of a random tiling: labels and draws
+  kGroup = 9,       // groups of similar patches: covariances and draws
+  kRedraw = 10,     // values redrawn between sweeps: missing pixels, impulses, unequal noise
+  kRecheck = 11     // noise of the recalibration runs
 };
 
 inline constexpr std::uint32_t kMaxSlices = 1u << 24;

@@ -15,7 +15,7 @@ namespace {
 
 // Couplings tried, as multiples of the lattice's transition; walked upwards, because a field
 // that was frozen by a strong coupling takes long to thaw.
-constexpr std::array<double, 8> kLadder{0.85, 1.0, 1.2, 1.4, 1.65, 1.95, 2.3, 2.7};
+constexpr std::array<double, 10> kLadder{0.85, 1.0, 1.2, 1.4, 1.65, 1.95, 2.3, 2.7, 3.2, 3.8};
 constexpr int kSettlingBlocks = 12;
 constexpr int kCountingBlocks = 20;
 constexpr int kSweepsABlock = 2;

@@ -86,7 +86,7 @@ int main(int argc, char** argv) {
       sweeps += run.adapting_sweeps + run.warming_sweeps + run.sampling_sweeps;
     }
     const double n = o.images;
-    std::printf("| %.1f | %d | %.3f | %+.5f | %.5f | %.4f | %d | %.0f | %.3f | %.3f |\n", sigma, o.images,
+    std::printf("| %.1f | %d | %.3f | %+.6f | %.5f | %.4f | %d | %.0f | %.3f | %.3f |\n", sigma, o.images,
                 covered / n, bias / n, width / n, overlap / n, converged, sweeps / n, alpha / n, beta / n);
     std::fflush(stdout);
     all_covered += covered;
