@@ -4,7 +4,10 @@
 #include <exception>
 #include <vector>
 
+#include "cli/camera.h"
+#include "cli/denoise.h"
 #include "cli/info.h"
+#include "cli/score.h"
 #include "cli/segment.h"
 #include "core/error.h"
 #include "image/libraries.h"
@@ -51,7 +54,8 @@ int run(int argc, char** argv) {
   app.allow_config_extras(CLI::config_extras_mode::error);
   app.require_subcommand(0, 1);
   app.footer(kEpilogue);
-  const std::vector<Command> commands = {add_segment(app), add_info(app)};
+  const std::vector<Command> commands = {add_segment(app), add_denoise(app), add_camera(app),
+                                         add_score(app), add_info(app)};
   try {
     app.parse(argc, argv);
   } catch (const CLI::Success& request) {  // --help, --version
@@ -64,7 +68,9 @@ int run(int argc, char** argv) {
   for (const Command& command : commands) {
     if (command.options->parsed()) return command.run();
   }
-  return complain("a command is needed: segment or info (stillfield --help)", kExitBadUsage);
+  return complain(
+      "a command is needed: segment, denoise, camera, score or info (stillfield --help)",
+      kExitBadUsage);
 }
 
 }  // namespace

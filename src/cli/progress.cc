@@ -63,10 +63,21 @@ void Progress::field_started(int number, int of, const std::string& name) {
 
 void Progress::swept(Stage stage, int sweeps) {
   if (stage == Stage::kAdapting) adapting_sweeps_ = sweeps;
-  const bool due = seconds_between(last_drawn_, Clock::now()) >= kRedrawSeconds;
-  if (!visible_ || (!due && stage != Stage::kDone)) return;
+  if (!visible_ || (!due() && stage != Stage::kDone)) return;
   draw(std::string(stage_text(stage)) + ", " + std::to_string(sweeps) + " sweeps" +
        time_left(sweeps));
+}
+
+void Progress::stepped(int step, int steps) {
+  if (!visible_ || !due()) return;
+  adapting_sweeps_ = 0;
+  max_sweeps_ = steps;
+  draw("restoring, step " + std::to_string(step) + " of " + std::to_string(steps) +
+       time_left(step));
+}
+
+bool Progress::due() const {
+  return seconds_between(last_drawn_, Clock::now()) >= kRedrawSeconds;
 }
 
 void Progress::field_finished(const std::string& /*name*/, bool /*converged*/) {

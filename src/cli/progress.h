@@ -21,6 +21,7 @@ class Progress : public JobObserver {
 
   void field_started(int number, int of, const std::string& name) override;
   void swept(Stage stage, int sweeps) override;
+  void stepped(int step, int steps) override;
   void field_finished(const std::string& name, bool converged) override;
   void field_failed(const std::string& name, const std::string& sentence) override;
   bool stop_requested() const override;
@@ -30,6 +31,7 @@ class Progress : public JobObserver {
 
   void draw(const std::string& state);
   void clear();
+  bool due() const;
   std::string time_left(int sweeps) const;
 
   bool visible_;

@@ -20,9 +20,13 @@ struct SampleFormat {
   bool operator==(const SampleFormat&) const = default;
 };
 
+// What becomes of red, green and blue: their luminance alone, or the planes as well.
+enum class ColourMode { kLuminance, kSeparate };
+
 // Pixels keep the numbers of the file: nothing is rescaled. Integers of up to 24 bits are exact.
 struct Field {
-  Volume<float> pixels;  // depth 1; NaN = missing
+  Volume<float> pixels;               // depth 1; NaN = missing
+  std::vector<Volume<float>> colour;  // red, green, blue if asked for and there; else empty
   SampleFormat format;
   int channels_in_file = 1;
   std::optional<double> pixel_size_um;  // side of a square pixel in micrometres

@@ -11,11 +11,12 @@ int count_pages(const std::filesystem::path& path) {
   return file_type(path) == FileType::kTiff ? count_tiff_pages(path) : 1;
 }
 
-Field read_page(const std::filesystem::path& path, int page, const ReadLimits& limits) {
+Field read_page(const std::filesystem::path& path, int page, const ReadLimits& limits,
+                ColourMode colour) {
   const FileType type = file_type(path);
-  if (type == FileType::kTiff) return read_tiff_page(path, page, limits);
+  if (type == FileType::kTiff) return read_tiff_page(path, page, limits, colour);
   check_page(path, page, 1);
-  return read_opencv(path, type, limits);
+  return read_opencv(path, type, limits, colour);
 }
 
 }  // namespace stillfield

@@ -2,7 +2,8 @@
 //
 // The kind of a file is decided by its first bytes, never by its name. Sizes are taken from the
 // header and checked before any pixel memory is asked for.
-// Colour   becomes luminance, with a note; an alpha channel is ignored, with a note
+// Colour   becomes luminance, with a note; the three planes are kept beside it when asked for; a
+//          palette always becomes luminance; an alpha channel is ignored, with a note
 // Pages    count from 0; reduced-resolution copies and masks inside a TIFF are not pages
 // Errors   Error(kInput), one sentence: file, what is wrong, what to do
 // Threads  safe on different or equal files
@@ -22,7 +23,8 @@ struct ReadLimits {
 
 int count_pages(const std::filesystem::path& path);
 
-Field read_page(const std::filesystem::path& path, int page = 0, const ReadLimits& limits = {});
+Field read_page(const std::filesystem::path& path, int page = 0, const ReadLimits& limits = {},
+                ColourMode colour = ColourMode::kLuminance);
 
 }  // namespace stillfield
 

@@ -50,9 +50,20 @@ void copy_row(const cv::Mat& mat, int y, int spread, float* out) {
   }
 }
 
+template <typename T>
+void copy_colours(const cv::Mat& mat, int y, std::vector<Volume<float>>& planes) {
+  const T* in = mat.ptr<T>(y);
+  for (int x = 0; x < mat.cols; ++x, in += mat.channels()) {
+    for (int c = 0; c < 3; ++c) {
+      planes[static_cast<std::size_t>(c)].at(x, y) = in[2 - c];  // stored blue first
+    }
+  }
+}
+
 }  // namespace
 
-Field read_opencv(const std::filesystem::path& file, FileType type, const ReadLimits& limits) {
+Field read_opencv(const std::filesystem::path& file, FileType type, const ReadLimits& limits,
+                  ColourMode colour) {
   std::vector<std::byte> bytes = read_whole(file);
   const ReadLimits tighter{std::min(limits.max_pixels, kMaxPixels)};
   const RasterHeader header = check(file, type, tighter, bytes);
@@ -69,13 +80,17 @@ Field read_opencv(const std::filesystem::path& file, FileType type, const ReadLi
   const bool colour_palette = header.palette && mat.channels() >= 3;
   field.channels_in_file = header.channels;
   if (colour_palette) field.notes.emplace_back(kPaletteNote);
-  if (!header.palette && header.channels >= 3) field.notes.emplace_back(kLuminanceNote);
+  const bool keep = colour == ColourMode::kSeparate && !header.palette && mat.channels() >= 3;
+  for (int c = 0; keep && c < 3; ++c) field.colour.emplace_back(field.pixels.extent());
+  if (!keep && !header.palette && header.channels >= 3) field.notes.emplace_back(kLuminanceNote);
   if (header.alpha) field.notes.emplace_back(kAlphaNote);
   for (int y = 0; y < mat.rows; ++y) {
     if (mat.depth() == CV_8U) {
       copy_row<std::uint8_t>(mat, y, header.spread, field.pixels.row(y));
+      if (keep) copy_colours<std::uint8_t>(mat, y, field.colour);
     } else {
       copy_row<std::uint16_t>(mat, y, header.spread, field.pixels.row(y));
+      if (keep) copy_colours<std::uint16_t>(mat, y, field.colour);
     }
   }
   return field;

@@ -7,7 +7,8 @@
 
 namespace stillfield {
 
-Field read_opencv(const std::filesystem::path& file, FileType type, const ReadLimits& limits);
+Field read_opencv(const std::filesystem::path& file, FileType type, const ReadLimits& limits,
+                  ColourMode colour);
 
 }  // namespace stillfield
 

@@ -69,6 +69,13 @@ class PixelWriter {
                      own_plane ? 0 : static_cast<std::size_t>(c), step,
                      static_cast<std::size_t>(count), samples_[c].data());
     }
+    for (std::size_t c = 0; c < field_.colour.size(); ++c) {
+      float* plane = field_.colour[c].row(y) + x0;
+      for (int x = 0; x < count; ++x) {
+        const auto value = static_cast<float>(samples_[c][static_cast<std::size_t>(x)]);
+        plane[x] = std::isinf(value) ? std::numeric_limits<float>::quiet_NaN() : value;
+      }
+    }
     float* out = field_.pixels.row(y) + x0;
     for (int x = 0; x < count; ++x) out[x] = pixel(static_cast<std::size_t>(x));
   }
@@ -143,7 +150,7 @@ void add_notes(const TiffHandle& tiff, const TiffLayout& layout, const PixelWrit
                Field& field) {
   std::uint16_t orientation = ORIENTATION_TOPLEFT;
   TIFFGetField(tiff.get(), TIFFTAG_ORIENTATION, &orientation);
-  if (layout.colour) field.notes.emplace_back(kLuminanceNote);
+  if (layout.colour && field.colour.empty()) field.notes.emplace_back(kLuminanceNote);
   if (layout.palette) field.notes.emplace_back(kPaletteNote);
   if (layout.alpha) field.notes.emplace_back(kAlphaNote);
   if (layout.inverted) field.notes.emplace_back("zero is white in the file: values inverted");
@@ -169,7 +176,8 @@ int count_tiff_pages(const std::filesystem::path& file) {
   return static_cast<int>(page_offsets(file, tiff).size());
 }
 
-Field read_tiff_page(const std::filesystem::path& file, int page, const ReadLimits& limits) {
+Field read_tiff_page(const std::filesystem::path& file, int page, const ReadLimits& limits,
+                     ColourMode colour) {
   TiffHandle tiff = TiffHandle::open(file);
   const auto offsets = page_offsets(file, tiff);
   check_page(file, page, static_cast<int>(offsets.size()));
@@ -182,6 +190,8 @@ Field read_tiff_page(const std::filesystem::path& file, int page, const ReadLimi
 
   Field field;
   field.pixels = Volume<float>({static_cast<int>(layout.width), static_cast<int>(layout.height)});
+  const bool keep = layout.colour && colour == ColourMode::kSeparate;
+  for (int c = 0; keep && c < 3; ++c) field.colour.emplace_back(field.pixels.extent());
   field.format = layout.format;
   field.channels_in_file = layout.channels;
   field.pixel_size_um = tiff_pixel_size_um(tiff.get());

@@ -8,7 +8,8 @@ namespace stillfield {
 
 int count_tiff_pages(const std::filesystem::path& file);
 
-Field read_tiff_page(const std::filesystem::path& file, int page, const ReadLimits& limits);
+Field read_tiff_page(const std::filesystem::path& file, int page, const ReadLimits& limits,
+                     ColourMode colour);
 
 }  // namespace stillfield
 

@@ -12,6 +12,7 @@
 #include <filesystem>
 #include <optional>
 #include <string>
+#include <utility>
 #include <vector>
 
 #include "core/volume.h"
@@ -25,8 +26,14 @@ struct TiffOptions {
 
 template <typename T>
 struct TiffPage {
+  TiffPage(View<const T> first, std::string page_name = {},
+           std::vector<View<const T>> others = std::vector<View<const T>>())
+      : pixels(first), name(std::move(page_name)), further(std::move(others)) {}
+
   View<const T> pixels;
   std::string name;  // tag PageName; empty = no tag
+  // Green and blue where `pixels` is red: planes of the same size, stored pixel by pixel.
+  std::vector<View<const T>> further;
 };
 
 void write_tiff(const std::filesystem::path& path, View<const std::uint8_t> image,

@@ -36,14 +36,16 @@ void set_resolution(TIFF* tiff, double pixel_size_um) {
 }
 
 template <typename T>
-void set_tags(TIFF* tiff, const View<const T>& plane, std::uint32_t rows_per_strip) {
+void set_tags(TIFF* tiff, const TiffPage<T>& page, std::uint32_t rows_per_strip) {
+  const View<const T>& plane = page.pixels;
   TIFFSetField(tiff, TIFFTAG_IMAGEWIDTH, static_cast<std::uint32_t>(plane.width()));
   TIFFSetField(tiff, TIFFTAG_IMAGELENGTH, static_cast<std::uint32_t>(plane.height()));
   TIFFSetField(tiff, TIFFTAG_BITSPERSAMPLE, static_cast<int>(8 * sizeof(T)));
-  TIFFSetField(tiff, TIFFTAG_SAMPLESPERPIXEL, 1);
+  TIFFSetField(tiff, TIFFTAG_SAMPLESPERPIXEL, static_cast<int>(1 + page.further.size()));
   TIFFSetField(tiff, TIFFTAG_SAMPLEFORMAT,
                std::is_floating_point_v<T> ? SAMPLEFORMAT_IEEEFP : SAMPLEFORMAT_UINT);
-  TIFFSetField(tiff, TIFFTAG_PHOTOMETRIC, PHOTOMETRIC_MINISBLACK);
+  TIFFSetField(tiff, TIFFTAG_PHOTOMETRIC,
+               page.further.empty() ? PHOTOMETRIC_MINISBLACK : PHOTOMETRIC_RGB);
   TIFFSetField(tiff, TIFFTAG_PLANARCONFIG, PLANARCONFIG_CONTIG);
   TIFFSetField(tiff, TIFFTAG_ROWSPERSTRIP, rows_per_strip);
   TIFFSetField(tiff, TIFFTAG_COMPRESSION, COMPRESSION_ADOBE_DEFLATE);
@@ -53,17 +55,39 @@ void set_tags(TIFF* tiff, const View<const T>& plane, std::uint32_t rows_per_str
   TIFFSetField(tiff, TIFFTAG_SOFTWARE, "stillfield");
 }
 
-// Plane z of `view` as the current directory, whose tags are set.
 template <typename T>
-bool write_strips(TIFF* tiff, const View<const T>& view, int z, int rows_per_strip) {
-  const auto width = static_cast<std::size_t>(view.width());
+std::int64_t bytes_a_pixel(const TiffPage<T>& page) {
+  return static_cast<std::int64_t>(sizeof(T) * (1 + page.further.size()));
+}
+
+// One row of all channels.
+template <typename T>
+void copy_row(const TiffPage<T>& page, int y, int z, T* out) {
+  const T* row = page.pixels.row(y, z);
+  const auto width = static_cast<std::size_t>(page.pixels.width());
+  if (page.further.empty()) {
+    std::memcpy(out, row, width * sizeof(T));
+    return;
+  }
+  const std::size_t channels = 1 + page.further.size();
+  for (std::size_t x = 0; x < width; ++x) out[x * channels] = row[x];
+  for (std::size_t c = 1; c < channels; ++c) {
+    const T* plane = page.further[c - 1].row(y, z);
+    for (std::size_t x = 0; x < width; ++x) out[x * channels + c] = plane[x];
+  }
+}
+
+// Plane z of the page as the current directory, whose tags are set.
+template <typename T>
+bool write_strips(TIFF* tiff, const TiffPage<T>& page, int z, int rows_per_strip) {
+  const View<const T>& view = page.pixels;
+  const auto width = static_cast<std::size_t>(view.width()) * (1 + page.further.size());
   std::vector<T> strip(width * static_cast<std::size_t>(rows_per_strip));
   std::uint32_t index = 0;
   for (int y0 = 0; y0 < view.height(); y0 += rows_per_strip, ++index) {
     const int rows = std::min(rows_per_strip, view.height() - y0);
     for (int y = 0; y < rows; ++y) {
-      std::memcpy(strip.data() + width * static_cast<std::size_t>(y), view.row(y0 + y, z),
-                  width * sizeof(T));
+      copy_row(page, y0 + y, z, strip.data() + width * static_cast<std::size_t>(y));
     }
     const auto size = static_cast<tmsize_t>(width * static_cast<std::size_t>(rows) * sizeof(T));
     if (TIFFWriteEncodedStrip(tiff, index, strip.data(), size) != size) return false;
@@ -77,7 +101,7 @@ void write_pages(const std::filesystem::path& path, const std::vector<TiffPage<T
   std::int64_t total_bytes = 0;
   int total_pages = 0;
   for (const auto& page : pages) {
-    total_bytes += page.pixels.extent().sites() * static_cast<std::int64_t>(sizeof(T));
+    total_bytes += page.pixels.extent().sites() * bytes_a_pixel(page);
     total_pages += page.pixels.depth();
     if (page.pixels.extent().sites() == 0) fail(path, "a page has no pixels");
   }
@@ -87,18 +111,18 @@ void write_pages(const std::filesystem::path& path, const std::vector<TiffPage<T
   TiffHandle tiff = TiffHandle::create(file.descriptor(), path, total_bytes > kBigTiffBytes);
   int number = 0;
   for (const auto& page : pages) {
-    const std::int64_t row_bytes = page.pixels.width() * static_cast<std::int64_t>(sizeof(T));
+    const std::int64_t row_bytes = page.pixels.width() * bytes_a_pixel(page);
     const auto rows = static_cast<int>(
         std::clamp<std::int64_t>(kStripBytes / row_bytes, 1, page.pixels.height()));
     for (int z = 0; z < page.pixels.depth(); ++z, ++number) {
-      set_tags(tiff.get(), page.pixels, static_cast<std::uint32_t>(rows));
+      set_tags(tiff.get(), page, static_cast<std::uint32_t>(rows));
       if (options.pixel_size_um) set_resolution(tiff.get(), *options.pixel_size_um);
       if (number == 0 && !options.description.empty()) {
         TIFFSetField(tiff.get(), TIFFTAG_IMAGEDESCRIPTION, options.description.c_str());
       }
       if (!page.name.empty()) TIFFSetField(tiff.get(), TIFFTAG_PAGENAME, page.name.c_str());
       if (total_pages > 1) TIFFSetField(tiff.get(), TIFFTAG_SUBFILETYPE, FILETYPE_PAGE);
-      if (!write_strips(tiff.get(), page.pixels, z, rows)) fail(path, tiff.first_error());
+      if (!write_strips(tiff.get(), page, z, rows)) fail(path, tiff.first_error());
     }
   }
   tiff.close();
@@ -110,17 +134,17 @@ void write_pages(const std::filesystem::path& path, const std::vector<TiffPage<T
 
 void write_tiff(const std::filesystem::path& path, View<const std::uint8_t> image,
                 const TiffOptions& options) {
-  write_pages<std::uint8_t>(path, {{image, ""}}, options);
+  write_pages<std::uint8_t>(path, {{image}}, options);
 }
 
 void write_tiff(const std::filesystem::path& path, View<const std::uint16_t> image,
                 const TiffOptions& options) {
-  write_pages<std::uint16_t>(path, {{image, ""}}, options);
+  write_pages<std::uint16_t>(path, {{image}}, options);
 }
 
 void write_tiff(const std::filesystem::path& path, View<const float> image,
                 const TiffOptions& options) {
-  write_pages<float>(path, {{image, ""}}, options);
+  write_pages<float>(path, {{image}}, options);
 }
 
 void write_tiff(const std::filesystem::path& path, const std::vector<TiffPage<std::uint8_t>>& pages,

@@ -7,19 +7,6 @@ namespace {
 
 static_assert(kPixelRhat == 1.05, "share_rhat_above_1_05 is named after it");
 
-std::string sample_name(const SampleFormat& format) {
-  const std::string bits = std::to_string(format.bits) + "-bit ";
-  switch (format.kind) {
-    case SampleKind::kUnsigned:
-      return bits + "unsigned integer";
-    case SampleKind::kSigned:
-      return bits + "signed integer";
-    case SampleKind::kFloat:
-      return bits + "float";
-  }
-  return {};
-}
-
 // A quantity that is measured on the image, with its unit; empty for the others.
 std::string unit_of(const std::string& trace) {
   if (trace == "area_fraction") return "1";
@@ -69,24 +56,11 @@ VerdictFacts describe_verdict(const LabelSampling& sampling, int max_sweeps) {
 
 }  // namespace
 
-InputFacts describe_input(const FieldTask& task, const Field& field, const GreyLevels& grey) {
-  InputFacts input;
-  input.path = task.relative.generic_string();
-  input.page = task.page + 1;
-  input.pages = task.pages;
-  input.width = field.pixels.width();
-  input.height = field.pixels.height();
-  input.samples = sample_name(field.format);
-  input.channels = field.channels_in_file;
-  input.pixel_size_um = field.pixel_size_um.value_or(kUnknown);
-  input.notes = field.notes;
-  input.notes.insert(input.notes.end(), grey.notes.begin(), grey.notes.end());
-  return input;
-}
-
-GreyFacts describe_grey(const GreyLevels& grey) {
-  return {grey.levels, grey.distinct(), grey.origin,
-          grey.step,   grey.observed,   grey.level.extent().sites() - grey.observed};
+void describe_grey(const GreyLevels& grey, ImageRecord& record) {
+  record.grey = {grey.levels, grey.distinct(), grey.origin,
+                 grey.step,   grey.observed,   grey.level.extent().sites() - grey.observed};
+  std::vector<std::string>& notes = record.input.notes;
+  notes.insert(notes.end(), grey.notes.begin(), grey.notes.end());
 }
 
 void describe_sampling(const LabelSampling& sampling, const SegmentSettings& settings,

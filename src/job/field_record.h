@@ -2,18 +2,14 @@
 #ifndef STILLFIELD_JOB_FIELD_RECORD_H_
 #define STILLFIELD_JOB_FIELD_RECORD_H_
 
-#include "image/field.h"
-#include "job/field_task.h"
 #include "job/label_sampling.h"
 #include "model/grey_levels.h"
 #include "report/record.h"
 
 namespace stillfield {
 
-// Without the file's digest and size.
-InputFacts describe_input(const FieldTask& task, const Field& field, const GreyLevels& grey);
-
-GreyFacts describe_grey(const GreyLevels& grey);
+// Its facts, and its notes beside those of the reader.
+void describe_grey(const GreyLevels& grey, ImageRecord& record);
 
 // Model, coupling, schedule, scalars, probability (without uncertain_share), verdict, measurements.
 void describe_sampling(const LabelSampling& sampling, const SegmentSettings& settings,

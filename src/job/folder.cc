@@ -3,6 +3,7 @@
 #include <algorithm>
 
 #include "core/error.h"
+#include "job/denoise_field.h"
 #include "job/output_folder.h"
 #include "job/plan.h"
 #include "job/segment_field.h"
@@ -18,10 +19,10 @@ namespace fs = std::filesystem;
 // What is known so far; the tables come from here.
 class RunLog {
  public:
-  RunLog(const SegmentSettings& settings, const RunSettings& run) : run_(run) {
+  RunLog(const FolderJob& job, const RunSettings& run) : run_(run) {
     summary_.version = program_version();
-    summary_.command = "segment";
-    summary_.settings = named_settings(settings);
+    summary_.command = job.command;
+    summary_.settings = job.settings;
   }
 
   void add(const FieldTask& task, const ImageRecord& record, bool before) {
@@ -74,21 +75,29 @@ class RunLog {
   std::vector<ImageRecord> records_;
 };
 
+// Records of two commands would bear the same names.
+void refuse_results_of_another_command(const fs::path& output, const std::string& command) {
+  const std::string before = command_of_run(output / "run.json");
+  if (before.empty() || before == command) return;
+  throw Error(ErrorKind::kUsage, output.string() + ": holds the results of `" + before +
+                                     "`; give --out another folder for those of `" + command + "`");
+}
+
 }  // namespace
 
-FolderCounts segment_folder(const std::vector<fs::path>& inputs, const SegmentSettings& settings,
-                            const RunSettings& run, JobObserver& observer) {
+FolderCounts run_folder(const std::vector<fs::path>& inputs, const FolderJob& job,
+                        const RunSettings& run, JobObserver& observer) {
   const std::vector<InputFile> files = find_inputs(inputs, run.output);
   prepare_output_folder(run.output);
-  const std::vector<PlannedField> plan = plan_fields(files, settings, run, observer);
+  refuse_results_of_another_command(run.output, job.command);
+  const std::vector<PlannedField> plan = plan_fields(files, job.settings, run, observer);
   const auto finished = static_cast<int>(std::count_if(
       plan.begin(), plan.end(), [](const PlannedField& f) { return f.finished.has_value(); }));
   const int to_do = static_cast<int>(plan.size()) - finished;
   observer.planned(to_do, finished);
 
   const Pool pool(run.threads);
-  RunLog log(settings, run);
-  LogPartitionMemo memo;
+  RunLog log(job, run);
   int number = 0;
   bool stopped = false;
   for (const PlannedField& field : plan) {
@@ -105,7 +114,7 @@ FolderCounts segment_folder(const std::vector<fs::path>& inputs, const SegmentSe
     observer.field_started(number++, to_do, task.name());
     try {
       if (!field.failure.empty()) throw Error(ErrorKind::kInput, field.failure);
-      const ImageRecord record = segment_field(task, settings, run, pool, observer, memo);
+      const ImageRecord record = job.run_field(task, pool);
       log.add(task, record, false);
       observer.field_finished(task.name(), record.verdict.converged);
     } catch (const Error& error) {
@@ -120,6 +129,23 @@ FolderCounts segment_folder(const std::vector<fs::path>& inputs, const SegmentSe
   }
   log.write_tables();
   return log.counts();
+}
+
+FolderCounts segment_folder(const std::vector<fs::path>& inputs, const SegmentSettings& settings,
+                            const RunSettings& run, JobObserver& observer) {
+  LogPartitionMemo memo;
+  const auto run_field = [&](const FieldTask& task, const Pool& pool) {
+    return segment_field(task, settings, run, pool, observer, memo);
+  };
+  return run_folder(inputs, {kSegment, named_settings(settings), run_field}, run, observer);
+}
+
+FolderCounts denoise_folder(const std::vector<fs::path>& inputs, const DenoiseSettings& settings,
+                            const RunSettings& run, JobObserver& observer) {
+  const auto run_field = [&](const FieldTask& task, const Pool& pool) {
+    return denoise_field(task, settings, run, pool, observer);
+  };
+  return run_folder(inputs, {kDenoise, named_settings(settings), run_field}, run, observer);
 }
 
 }  // namespace stillfield

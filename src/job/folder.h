@@ -1,17 +1,23 @@
-// Folders and files through the whole job, with the tables of the run.
+// Folders and files through a whole job, with the tables of the run.
 //
-// Writes   per field what segment_field.h says; measurements.csv, summary.csv and run.json, also
-//          after an interrupt. Fields that are finished already are left alone.
+// Writes   per field what segment_field.h or denoise_field.h says; measurements.csv, summary.csv
+//          and run.json, also after an interrupt. Fields that are finished already are left alone.
 // Errors   of single fields are collected; thrown are those of find_inputs() (image/walk.h) and
 //          prepare_output_folder(), before any work, and Error(kOutput) for the tables
 #ifndef STILLFIELD_JOB_FOLDER_H_
 #define STILLFIELD_JOB_FOLDER_H_
 
 #include <filesystem>
+#include <functional>
+#include <string>
 #include <vector>
 
+#include "job/denoise_settings.h"
+#include "job/field_task.h"
 #include "job/observer.h"
 #include "job/settings.h"
+#include "parallel/pool.h"
+#include "report/record.h"
 
 namespace stillfield {
 
@@ -24,8 +30,22 @@ struct FolderCounts {
   bool interrupted = false;
 };
 
+// A command as the folder loop sees it.
+struct FolderJob {
+  std::string command;
+  std::vector<NamedValue> settings;  // all that change results
+  std::function<ImageRecord(const FieldTask&, const Pool&)> run_field;
+};
+
+FolderCounts run_folder(const std::vector<std::filesystem::path>& inputs, const FolderJob& job,
+                        const RunSettings& run, JobObserver& observer);
+
 FolderCounts segment_folder(const std::vector<std::filesystem::path>& inputs,
                             const SegmentSettings& settings, const RunSettings& run,
+                            JobObserver& observer);
+
+FolderCounts denoise_folder(const std::vector<std::filesystem::path>& inputs,
+                            const DenoiseSettings& settings, const RunSettings& run,
                             JobObserver& observer);
 
 }  // namespace stillfield

@@ -18,6 +18,8 @@ class JobObserver {
   virtual void field_started(int /*number*/, int /*of*/, const std::string& /*name*/) {}
   // Every chain has made `sweeps` sweeps in all.
   virtual void swept(Stage /*stage*/, int /*sweeps*/) {}
+  // Step `step` of `steps` of a restoration is done; it may end before the last.
+  virtual void stepped(int /*step*/, int /*steps*/) {}
   virtual void field_finished(const std::string& /*name*/, bool /*converged*/) {}
   virtual void field_failed(const std::string& /*name*/, const std::string& /*sentence*/) {}
 

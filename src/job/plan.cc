@@ -26,15 +26,14 @@ void plan_file(const InputFile& file, const std::vector<NamedValue>& settings,
 }  // namespace
 
 std::vector<PlannedField> plan_fields(const std::vector<InputFile>& files,
-                                      const SegmentSettings& settings, const RunSettings& run,
-                                      const JobObserver& observer) {
-  const std::vector<NamedValue> named = named_settings(settings);
+                                      const std::vector<NamedValue>& settings,
+                                      const RunSettings& run, const JobObserver& observer) {
   std::vector<PlannedField> plan;
   for (const InputFile& file : files) {
     if (observer.stop_requested()) throw Error(ErrorKind::kInterrupt, "stopped on request");
     const std::size_t before = plan.size();
     try {
-      plan_file(file, named, run, plan);
+      plan_file(file, settings, run, plan);
     } catch (const Error& error) {
       plan.resize(before);
       PlannedField field;

@@ -23,8 +23,8 @@ struct PlannedField {
 // In the order of the files. Throws Error(kInterrupt) when the observer asks to stop. Files are
 // digested where they have several pages or a record stands already.
 std::vector<PlannedField> plan_fields(const std::vector<InputFile>& files,
-                                      const SegmentSettings& settings, const RunSettings& run,
-                                      const JobObserver& observer);
+                                      const std::vector<NamedValue>& settings,
+                                      const RunSettings& run, const JobObserver& observer);
 
 }  // namespace stillfield
 

@@ -4,7 +4,7 @@
 #include <string>
 
 #include "core/error.h"
-#include "diagnose/summary.h"
+#include "job/trace_summaries.h"
 #include "sampler/path_sampling.h"
 #include "sampler/starts.h"
 #include "sampler/sweep.h"
@@ -14,32 +14,7 @@ namespace {
 
 // Below this size one image cannot keep two threads busy: whole chains run side by side instead.
 constexpr std::int64_t kRowParallelPixels = 320 * 320;
-constexpr double kWarmRhat = 1.1;  // chains agree well enough to start counting
 constexpr int kVisitsLimit = 255;  // visits are counted in bytes
-
-std::string scalar_name(const Trace& trace) {
-  return trace.label == 0 ? trace.name : trace.name + " of class " + std::to_string(trace.label);
-}
-
-std::vector<NamedSummary> summarise_all(const Traces& traces) {
-  std::vector<NamedSummary> result;
-  for (const Trace& t : traces.all())
-    result.push_back({scalar_name(t), summarise(Draws(t.chains))});
-  return result;
-}
-
-// Warm-up is over when the chains agree about every scalar in the second half of the window.
-bool chains_agree(const Traces& traces) {
-  for (const Trace& t : traces.all()) {
-    std::vector<std::vector<double>> half;
-    for (const auto& chain : t.chains) {
-      half.emplace_back(chain.begin() + static_cast<std::ptrdiff_t>(chain.size() / 2), chain.end());
-    }
-    const double rhat = summarise(Draws(half)).rhat;
-    if (rhat > kWarmRhat) return false;  // NaN (all draws equal) is agreement
-  }
-  return true;
-}
 
 void check_grey_levels(const GreyLevels& grey, int classes) {
   const int distinct = grey.distinct();
@@ -128,7 +103,7 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
       adaptation.adapt(chains, pool);
       if (adaptation.settled()) schedule.coupling_settled();
     } else if (schedule.look_at_warm_up()) {
-      schedule.warm_up_judged(chains_agree(*run.traces));
+      schedule.warm_up_judged(chains_agree(run.traces->all()));
       if (schedule.stage() == Stage::kSampling) {
         run.traces->clear();
         for (LabelChain& chain : chains) {
@@ -141,7 +116,7 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
         run.counts->take(c, chains[static_cast<std::size_t>(c)]);
       }
       run.probability = run.counts->quality(pool);
-      run.scalars = summarise_all(*run.traces);
+      run.scalars = summarise_traces(run.traces->all());
       run.verdict = judge_convergence(run.scalars, run.probability.mcse, settings.target);
       run.counts->merge_parts();
       schedule.sampling_judged(run.verdict.converged);

@@ -37,8 +37,8 @@ enum class Purpose : std::uint32_t {
   kHeldOut = 5,     // search for the coupling on held-out pixels
   kIntensity = 6,   // one normal a pixel and sweep of an intensity field
   kPairScale = 7,   // auxiliary scales of neighbour differences
-  kTiling = 8,      // patches of a random tiling: labels and draws
-  kGroup = 9,       // groups of similar patches: covariances and draws
+  kTiling = 8,      // patches of a random tiling: c0, c1 = first pixel (sampler/patch_tiling.h)
+  kGroup = 9,       // groups of similar patches: c1 = tile of groups (sampler/patch_groups.h)
   kRedraw = 10,     // values redrawn between sweeps: missing pixels, impulses, unequal noise
   kRecheck = 11     // noise of the recalibration runs
 };

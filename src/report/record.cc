@@ -12,7 +12,7 @@
 namespace stillfield {
 namespace {
 
-constexpr char kFormat[] = "stillfield record 1";
+constexpr char kFormat[] = "stillfield record 2";
 
 Json cautions() {
   return {"Not a medical device, and not for diagnosis or treatment.",
@@ -132,6 +132,45 @@ void describe(Archive& archive, Measurement& m) {
 }
 
 template <class Archive>
+void describe(Archive& archive, NoiseFacts& noise) {
+  archive("kind", noise.kind);
+  archive("sd", noise.sd);
+  archive("gain", noise.gain);
+  archive("variance", noise.variance);
+  archive("offset", noise.offset);
+  archive("middle_grey", noise.middle_grey);
+  archive("middle_sd", noise.middle_sd);
+  archive("middle_sd_lower90", noise.middle_sd_lower90);
+  archive("middle_sd_upper90", noise.middle_sd_upper90);
+  archive("origin", noise.origin);
+  archive("impulse_share", noise.impulse_share);
+  archive("neighbour_correlation", noise.neighbour_correlation);
+  archive("correlation_p_value", noise.correlation_p_value);
+}
+
+template <class Archive>
+void describe(Archive& archive, ChannelFacts& channel) {
+  archive("channel", channel.channel);
+  archive("noise", channel.noise);
+  archive("observed_pixels", channel.observed);
+  archive("missing_pixels", channel.missing);
+  archive("saturated_pixels", channel.saturated);
+  archive("mean_sd", channel.mean_sd);
+  archive("sd_factor", channel.sd_factor);
+  archive("scalars", channel.scalars);
+}
+
+template <class Archive>
+void describe(Archive& archive, RestorationFacts& restoration) {
+  archive("prior", restoration.prior);
+  archive("patch", restoration.patch);
+  archive("components", restoration.components);
+  archive("warming_sweeps", restoration.warming_sweeps);
+  archive("sampling_sweeps", restoration.sampling_sweeps);
+  archive("channels", restoration.channels);
+}
+
+template <class Archive>
 void describe(Archive& archive, OutputFile& output) {
   archive("suffix", output.suffix);
   archive("bytes", output.bytes);
@@ -151,18 +190,23 @@ template <class Archive>
 void describe(Archive& archive, ImageRecord& record) {
   archive.constant("format", kFormat);
   archive.constant("program", kProgramName);
+  archive("command", record.command);
   archive("version", record.version);
   archive("libraries", record.libraries);
   archive("settings_digest", record.settings_digest);
   archive("input", record.input);
-  archive("grey_levels", record.grey);
   archive("settings", record.settings);
   archive("image_seed", record.image_seed);
-  archive("model", record.model);
-  archive("coupling_tried", record.coupling_tried);
-  archive("schedule", record.schedule);
-  archive("scalars", record.scalars);
-  archive("probability", record.probability);
+  if (record.command == kDenoise) {
+    archive("restoration", record.restoration);
+  } else {
+    archive("grey_levels", record.grey);
+    archive("model", record.model);
+    archive("coupling_tried", record.coupling_tried);
+    archive("schedule", record.schedule);
+    archive("scalars", record.scalars);
+    archive("probability", record.probability);
+  }
   archive("verdict", record.verdict);
   archive("measurements", record.measurements);
   archive("outputs", record.outputs);

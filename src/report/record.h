@@ -8,17 +8,16 @@
 
 #include <cstdint>
 #include <filesystem>
-#include <limits>
 #include <string>
 #include <vector>
 
 #include "diagnose/verdict.h"
 #include "measure/measurement.h"
 #include "report/named_value.h"
+#include "report/restoration_facts.h"
 
 namespace stillfield {
 
-inline constexpr double kUnknown = std::numeric_limits<double>::quiet_NaN();
 inline constexpr char kRecordSuffix[] = ".record.json";
 
 struct InputFacts {
@@ -99,7 +98,12 @@ struct RunFacts {
   double write_seconds = 0;
 };
 
+inline constexpr char kSegment[] = "segment";
+inline constexpr char kDenoise[] = "denoise";
+
+// The parts from `grey` to `probability` belong to segment, `restoration` to denoise.
 struct ImageRecord {
+  std::string command;
   std::string version;  // of the program
   std::vector<NamedValue> libraries;
   std::string settings_digest;
@@ -112,6 +116,7 @@ struct ImageRecord {
   ScheduleFacts schedule;
   std::vector<NamedSummary> scalars;
   ProbabilityFacts probability;
+  RestorationFacts restoration;
   VerdictFacts verdict;
   std::vector<Measurement> measurements;
   std::vector<OutputFile> outputs;

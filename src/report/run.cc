@@ -1,5 +1,7 @@
 #include "report/run.h"
 
+#include <fstream>
+
 #include "report/json_archive.h"
 #include "report/versions.h"
 
@@ -28,6 +30,16 @@ void describe(Archive& archive, RunSummary& run) {
 
 std::string run_text(const RunSummary& run) {
   return json_text(to_json(run));
+}
+
+std::string command_of_run(const std::filesystem::path& file) {
+  std::ifstream stream(file, std::ios::binary);
+  const Json json = Json::parse(stream, nullptr, false);
+  const auto text = [&json](const char* key) {
+    const bool there = json.is_object() && json.contains(key) && json[key].is_string();
+    return there ? json[key].get<std::string>() : std::string();
+  };
+  return text("program") == kProgramName ? text("command") : std::string();
 }
 
 }  // namespace stillfield

@@ -2,6 +2,7 @@
 #ifndef STILLFIELD_REPORT_RUN_H_
 #define STILLFIELD_REPORT_RUN_H_
 
+#include <filesystem>
 #include <string>
 #include <vector>
 
@@ -27,6 +28,9 @@ struct RunSummary {
 };
 
 std::string run_text(const RunSummary& run);
+
+// The command that wrote the file; empty if there is no such file or it is no run.json of ours.
+std::string command_of_run(const std::filesystem::path& file);
 
 }  // namespace stillfield
 

@@ -1,18 +1,15 @@
 #include "sampler/sweep.h"
 
-#include <algorithm>
 #include <cmath>
 #include <mutex>
 
 #include "core/elementary.h"
+#include "sampler/row_pairs.h"
 #include "simd/label_statistics.h"
 #include "simd/level_lookup.h"
 
 namespace stillfield {
 namespace {
-
-// A band worth a task: some 20 000 pixels.
-constexpr int kSitesPerTask = 20000;
 
 // Weights of a row: its K planes one after the other, so that a row pair is one piece of memory.
 // Long planes get a tail that keeps them from competing for the same cache lines, as pieces at
@@ -29,23 +26,6 @@ std::ptrdiff_t weight_row(const Colouring& c, int planes, int colour, int slice,
 std::size_t weight_elements(const Colouring& c, int planes) {
   const auto rows = static_cast<std::ptrdiff_t>(c.plane_elements()) / c.plane_stride();
   return static_cast<std::size_t>(rows * planes * weight_plane(c));
-}
-
-// Calls body(slice, first_row, rows) over all rows of one colour, in parallel, in pairs of rows.
-template <class Body>
-void for_row_pairs(const Colouring& c, int colour, const Pool& pool, const Body& body) {
-  const int pairs = (c.rows(colour) + 1) / 2;
-  if (pairs == 0) return;
-  const int grain = std::max(1, kSitesPerTask / (8 * c.words()));
-  pool.for_bands(c.slices(colour) * pairs, grain, [&](int first, int last) {
-    while (first < last) {
-      const int slice = first / pairs;
-      const int begin = first % pairs;
-      const int end = std::min(pairs, begin + (last - first));
-      body(slice, 2 * begin, std::min(2 * end, c.rows(colour)) - 2 * begin);
-      first += end - begin;
-    }
-  });
 }
 
 // Label 0 has fewer neighbours at the border than the two-label kernel's table assumes: the ratio

@@ -1,10 +1,13 @@
 // The same bytes for every number of threads, CPU target and compiler.
 #include <catch2/catch.hpp>
+#include <functional>
+#include <limits>
 
 #include "end_to_end/program.h"
 #include "end_to_end/results.h"
 #include "end_to_end/scene.h"
 
+using namespace stillfield;
 using namespace stillfield::test;
 
 namespace {
@@ -20,20 +23,31 @@ void save_images(const fs::path& folder, int classes) {
   }
 }
 
-void check_same_bytes(int classes, const Arguments& model) {
+Volume<float> scene_with_holes() {
+  Volume<float> picture = draw_scene({53, 41, 2, 4, 300, 200, 40});
+  for (int x = 5; x < 25; ++x) picture.at(x, 7) = std::numeric_limits<float>::quiet_NaN();
+  return picture;
+}
+
+// `command` and its options without INPUT and --out. `heavy`: of other builds, their best target
+// only.
+void check_same_bytes(const Arguments& command, const std::function<void(const fs::path&)>& save,
+                      std::size_t files, bool heavy = false) {
   const TempFolder folder;
-  save_images(folder / "in", classes);
+  save(folder / "in");
   int number = 0;
-  const auto run = [&](Arguments more, const fs::path& program) {
+  const auto run = [&](const Arguments& more, const fs::path& program) {
     const fs::path out = folder / ("out-" + std::to_string(number++));
-    more.insert(more.end(), model.begin(), model.end());
-    const Ended ended = segment(folder / "in", classes, out, more, program);
+    Arguments arguments = command;
+    arguments.insert(arguments.end(), {(folder / "in").string(), "--out", out.string()});
+    arguments.insert(arguments.end(), more.begin(), more.end());
+    const Ended ended = run_program(arguments, program);
     INFO(ended.err);
     REQUIRE(ended.code == 0);
     return results_in(out);
   };
   const Tree expected = run({"--threads", "1"}, STILLFIELD_PROGRAM);
-  REQUIRE(expected.size() == 5 * (classes == 3 ? 3 : 2) + 2);
+  REQUIRE(expected.size() == files);
   for (const char* threads : {"2", "4"}) {
     CAPTURE(threads);
     CHECK(differences(expected, run({"--threads", threads}, STILLFIELD_PROGRAM)) == "");
@@ -44,8 +58,7 @@ void check_same_bytes(int classes, const Arguments& model) {
   for (const fs::path& program : programs) {
     std::vector<std::string> targets = listed_cpu_targets(program);
     REQUIRE_FALSE(targets.empty());
-    // The large image takes long: of the other builds, their best target only.
-    if (classes == 3 && program != STILLFIELD_PROGRAM) targets.resize(1);
+    if (heavy && program != STILLFIELD_PROGRAM) targets.resize(1);
     for (const std::string& target : targets) {
       CAPTURE(program, target);
       CHECK(differences(expected, run({"--cpu-target", target, "--threads", "2"}, program)) == "");
@@ -53,22 +66,47 @@ void check_same_bytes(int classes, const Arguments& model) {
   }
 }
 
+void check_labels(int classes, const Arguments& model) {
+  Arguments command = {"segment", "--classes", std::to_string(classes), "--quick"};
+  command.insert(command.end(), model.begin(), model.end());
+  const auto save = [classes](const fs::path& in) { save_images(in, classes); };
+  check_same_bytes(command, save, 5 * (classes == 3 ? 3 : 2) + 2, classes == 3);
+}
+
 }  // namespace
 
 TEST_CASE("two classes: same bytes everywhere") {
-  check_same_bytes(2, {});
+  check_labels(2, {});
 }
 
 TEST_CASE("three classes, rows and chains in parallel: same bytes everywhere") {
-  check_same_bytes(3, {});
+  check_labels(3, {});
 }
 
 TEST_CASE("five classes, eight neighbours, shared variance: same bytes everywhere") {
-  check_same_bytes(5, {"--neighbours", "8", "--variance", "shared"});
+  check_labels(5, {"--neighbours", "8", "--variance", "shared"});
 }
 
 TEST_CASE("the coupling drawn by path sampling: same bytes everywhere") {
-  check_same_bytes(2, {"--coupling", "sampled", "--max-sweeps", "600"});
+  check_labels(2, {"--coupling", "sampled", "--max-sweeps", "600"});
+}
+
+TEST_CASE("restored intensities, every prior and kind of noise: same bytes everywhere") {
+  const auto save = [](const fs::path& in) {
+    save_png(in / "grey8.png", draw_scene({64, 48, 3, 1, 40, 60, 15}));
+    save_tiff_float(in / "deep/holes.tif", scene_with_holes());
+  };
+  const Arguments commands[] = {
+      {"denoise", "--samples", "2"},
+      {"denoise", "--noise", "photon:0.5,60", "--recheck", "--quick"},
+      {"denoise", "--noise", "rician:12", "--quick"},
+      {"denoise", "--prior", "edges", "--max-sweeps", "600"},
+      {"denoise", "--prior", "smooth", "--max-sweeps", "600", "--neighbours", "8"}};
+  for (const Arguments& command : commands) {
+    CAPTURE(command);
+    const bool draws = command[1] == "--samples";
+    check_same_bytes(command, save, 2 * (draws ? 7 : 6) + 2);
+  }
 }
 
 TEST_CASE("another seed gives other bytes") {

@@ -158,3 +158,41 @@ TEST_CASE("an image without pixels is refused") {
   CHECK_THROWS_AS(write_tiff(folder / "a.tif", std::vector<TiffPage<float>>{}), Error);
   CHECK(entries_in(folder.path()) == 0);
 }
+
+TEST_CASE(
+    "three planes become an RGB page that reads back channel by channel, here and by OpenCV") {
+  const TempFolder folder;
+  std::vector<Volume<std::uint16_t>> planes;
+  for (int c = 0; c < 3; ++c) {
+    Volume<std::uint16_t> plane({21, 13});
+    for (int y = 0; y < 13; ++y) {
+      for (int x = 0; x < 21; ++x) {
+        plane.at(x, y) = static_cast<std::uint16_t>(10000 * c + 100 * y + x);
+      }
+    }
+    planes.push_back(std::move(plane));
+  }
+  TiffPage<std::uint16_t> page(planes[0].view());
+  page.further = {planes[1].view(), planes[2].view()};
+  write_tiff(folder / "a.tif", std::vector<TiffPage<std::uint16_t>>{page});
+  const Field field = read_page(folder / "a.tif", 0, {}, ColourMode::kSeparate);
+  CHECK(field.notes.empty());
+  REQUIRE(field.colour.size() == 3);
+  const cv::Mat mat = cv::imread((folder / "a.tif").string(), cv::IMREAD_UNCHANGED);
+  REQUIRE(mat.type() == CV_16UC3);
+  cv::imwrite((folder / "b.png").string(), mat);
+  const Field from_png = read_page(folder / "b.png", 0, {}, ColourMode::kSeparate);
+  REQUIRE(from_png.colour.size() == 3);
+  int wrong = 0;
+  for (int y = 0; y < 13; ++y) {
+    for (int x = 0; x < 21; ++x) {
+      for (std::size_t c = 0; c < 3; ++c) {
+        const float want = planes[c].at(x, y);
+        wrong += field.colour[c].at(x, y) != want;
+        wrong += from_png.colour[c].at(x, y) != want;
+        wrong += mat.at<cv::Vec3w>(y, x)[2 - static_cast<int>(c)] != planes[c].at(x, y);
+      }
+    }
+  }
+  CHECK(wrong == 0);
+}

@@ -27,6 +27,7 @@ inline Measurement area_fraction(int label, double estimate, double sd) {
 
 inline ImageRecord record_sample(const std::string& path = "heat/a, \"b\".tif") {
   ImageRecord record;
+  record.command = kSegment;
   record.version = "0.1.0";
   record.libraries = {{"libtiff", std::string("4.5.0")}};
   record.settings_digest = std::string(64, 'a');
@@ -52,6 +53,24 @@ inline ImageRecord record_sample(const std::string& path = "heat/a, \"b\".tif") 
   record.measurements = {area_fraction(1, 0.25, 0.01), area_fraction(2, 0.75, 0.01)};
   record.outputs = {{".labels.tif", 999, std::string(64, 'c')}};
   record.run = {"avx2", 2, 0.1, 2.5, 0.2};
+  return record;
+}
+
+inline ImageRecord restoration_sample() {
+  ImageRecord record = record_sample("yeast/a.tif");
+  record.command = kDenoise;
+  record.restoration = {"patches", 6, 20, 25, 2, {}};
+  ChannelFacts channel;
+  channel.channel = "grey";
+  channel.noise.kind = "photon";
+  channel.noise.gain = 0.5;
+  channel.noise.middle_sd = 7.5;
+  channel.noise.origin = "estimated";
+  channel.observed = 1199;
+  channel.missing = 1;
+  channel.mean_sd = 2.25;
+  channel.scalars = {{"prior_strength", {}}};
+  record.restoration.channels = {channel, channel};
   return record;
 }
 

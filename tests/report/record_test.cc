@@ -30,17 +30,29 @@ TEST_CASE("keys have a fixed order, and what differs between equal runs is in on
   const ordered_json json = ordered_json::parse(record_text(record_sample()));
   std::vector<std::string> keys;
   for (const auto& item : json.items()) keys.push_back(item.key());
-  CHECK(keys == std::vector<std::string>{"format", "program", "version", "libraries",
-                                         "settings_digest", "input", "grey_levels", "settings",
-                                         "image_seed", "model", "coupling_tried", "schedule",
-                                         "scalars", "probability", "verdict", "measurements",
-                                         "outputs", "cautions", "run"});
+  CHECK(keys == std::vector<std::string>{
+                    "format",          "program",        "command",  "version",    "libraries",
+                    "settings_digest", "input",          "settings", "image_seed", "grey_levels",
+                    "model",           "coupling_tried", "schedule", "scalars",    "probability",
+                    "verdict",         "measurements",   "outputs",  "cautions",   "run"});
   ImageRecord other = record_sample();
   other.run = {"scalar", 4, 9, 9, 9};
   ordered_json other_json = ordered_json::parse(record_text(other));
   CHECK(other_json != json);
   other_json["run"] = json["run"];
   CHECK(other_json == json);
+}
+
+TEST_CASE("the record of a restored image holds its noise and none of the label field") {
+  const std::string text = record_text(restoration_sample());
+  const ordered_json json = ordered_json::parse(text);
+  CHECK_FALSE(json.contains("model"));
+  CHECK(json["restoration"]["channels"].size() == 2);
+  CHECK(json["restoration"]["channels"][0]["noise"]["gain"] == 0.5);
+  CHECK(json["restoration"]["channels"][0]["noise"]["sd"].is_null());
+  const ImageRecord again = parse_record(text);
+  CHECK(record_text(again) == text);
+  CHECK(again.restoration.channels.at(1).missing == 1);
 }
 
 TEST_CASE("NaN and infinity are null in the file and NaN when read") {

@@ -1,0 +1,87 @@
+#include "cli/common_options.h"
+
+#include <algorithm>
+#include <cstdio>
+#include <thread>
+
+#include "cli/signals.h"
+#include "core/error.h"
+#include "simd/target.h"
+
+namespace stillfield {
+namespace {
+
+void print_summary(const FolderCounts& counts, const std::string& output, const char* advice) {
+  const int all = counts.done + counts.skipped + counts.failed + counts.not_reached;
+  std::printf("%d %s: %d done", all, all == 1 ? "image" : "images", counts.done);
+  if (counts.skipped > 0) std::printf(", %d finished before", counts.skipped);
+  if (counts.failed > 0) std::printf(", %d failed", counts.failed);
+  if (counts.not_reached > 0) std::printf(", %d not reached", counts.not_reached);
+  std::printf(".\n");
+  if (counts.not_converged > 0) {
+    std::printf(
+        "%d did not converge: the \"verdict\" in NAME.record.json says what is missing; %s\n",
+        counts.not_converged, advice);
+  }
+  std::printf("Results are in %s: measurements.csv, summary.csv, run.json and the maps.\n",
+              output.c_str());
+  if (counts.interrupted) {
+    std::printf("Stopped on request; the same command again continues where this one ended.\n");
+  }
+}
+
+}  // namespace
+
+CLI::Option* add_choice(CLI::App& app, const char* name, std::string& value,
+                        const std::vector<std::string>& choices, const char* help) {
+  std::string list;
+  for (const std::string& choice : choices) list += (list.empty() ? "" : "|") + choice;
+  const auto check = [choices, list](const std::string& text) -> std::string {
+    const bool known = std::find(choices.begin(), choices.end(), text) != choices.end();
+    return known ? "" : "must be one of " + list + ", not '" + text + "'";
+  };
+  return app.add_option(name, value, help)
+      ->check(CLI::Validator(check, "", ""))
+      ->type_name(list)
+      ->capture_default_str();
+}
+
+void add_inputs_and_output(CLI::App& app, CommonOptions& options) {
+  app.add_option("INPUT", options.inputs, "Image files and folders of images")
+      ->required()
+      ->type_name("");
+  app.add_option("--out", options.output, "Folder for the results, made if need be")
+      ->required()
+      ->type_name("DIR");
+}
+
+void add_run_options(CLI::App& app, CommonOptions& options) {
+  options.run.threads = static_cast<int>(std::max(1u, std::thread::hardware_concurrency()));
+  add_whole(app, "--threads", options.run.threads, 1, 1024, "Threads; results do not depend on it")
+      ->default_str("all cores");
+  app.add_option("--cpu-target", options.cpu_target,
+                 "Instruction set, auto or one that `stillfield info` lists; results do not depend "
+                 "on it")
+      ->type_name("NAME")
+      ->capture_default_str();
+  add_whole(app, "--max-pixels", options.run.limits.max_pixels, 1, std::uint64_t{1} << 34,
+            "Refuse pages with more pixels");
+  app.add_flag("--redo", options.run.redo, "Do again what is finished");
+  app.add_flag("--strict", options.strict, "Exit code 3 if a result did not converge");
+  app.add_flag("--quiet", options.quiet, "Write nothing but errors to the terminal");
+}
+
+void begin_run(CommonOptions& options) {
+  options.run.output = options.output;
+  force_cpu_target(options.cpu_target);
+  catch_stop_signals();
+}
+
+int end_run(const FolderCounts& counts, const CommonOptions& options, const char* advice) {
+  if (!options.quiet) print_summary(counts, options.output, advice);
+  if (counts.interrupted) return kExitInterrupted;
+  if (counts.failed > 0) return kExitSomeFailed;
+  return options.strict && counts.not_converged > 0 ? kExitNotConverged : kExitAllDone;
+}
+
+}  // namespace stillfield

@@ -1,0 +1,48 @@
+// Options that the commands on folders share, and the summary they print.
+#ifndef STILLFIELD_CLI_COMMON_OPTIONS_H_
+#define STILLFIELD_CLI_COMMON_OPTIONS_H_
+
+#include <CLI/CLI.hpp>
+#include <cstdint>
+#include <string>
+#include <vector>
+
+#include "cli/number_option.h"
+#include "job/folder.h"
+
+namespace stillfield {
+
+struct CommonOptions {
+  std::vector<std::string> inputs;
+  std::string output;
+  std::string cpu_target = "auto";
+  bool strict = false;
+  bool quiet = false;
+  RunSettings run;
+};
+
+// An option that takes a whole number; range and default are shown in the help.
+template <class T>
+CLI::Option* add_whole(CLI::App& app, const char* name, T& value, std::uint64_t lowest,
+                       std::uint64_t highest, const char* help) {
+  return app.add_option(name, value, help)
+      ->check(CLI::Validator(whole_number(lowest, highest), "", ""))
+      ->type_name(highest < 1000000 ? std::to_string(lowest) + ".." + std::to_string(highest) : "N")
+      ->capture_default_str();
+}
+
+CLI::Option* add_choice(CLI::App& app, const char* name, std::string& value,
+                        const std::vector<std::string>& choices, const char* help);
+
+void add_inputs_and_output(CLI::App& app, CommonOptions& options);
+void add_run_options(CLI::App& app, CommonOptions& options);
+
+// Sets the folder for results and the CPU target, and catches the signals that stop a run.
+void begin_run(CommonOptions& options);
+
+// What came out, and the exit code.
+int end_run(const FolderCounts& counts, const CommonOptions& options, const char* advice);
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_CLI_COMMON_OPTIONS_H_

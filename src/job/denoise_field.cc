@@ -1,0 +1,177 @@
+#include "job/denoise_field.h"
+
+#include <algorithm>
+#include <cmath>
+
+#include "core/error.h"
+#include "image/read.h"
+#include "image/write.h"
+#include "job/field_frame.h"
+#include "job/mask.h"
+#include "job/output_folder.h"
+#include "job/preview.h"
+#include "job/restore_plane.h"
+#include "simd/target.h"
+
+namespace stillfield {
+namespace {
+
+namespace fs = std::filesystem;
+
+constexpr const char* kColours[3] = {"red", "green", "blue"};
+constexpr int kMostIntegerBits = 16;
+
+bool keeps_integers(const SampleFormat& format, const DenoiseSettings& settings) {
+  return !settings.float_output && format.kind == SampleKind::kUnsigned &&
+         format.bits <= kMostIntegerBits;
+}
+
+// Rounded and limited to what the sample type holds.
+template <class T>
+Volume<T> rounded(const Volume<float>& plane, int bits) {
+  const float largest = static_cast<float>((1 << bits) - 1);
+  Volume<T> out(plane.extent());
+  for (int y = 0; y < plane.height(); ++y) {
+    for (int x = 0; x < plane.width(); ++x) {
+      out.at(x, y) = static_cast<T>(std::clamp(std::floor(plane.at(x, y) + 0.5F), 0.0F, largest));
+    }
+  }
+  return out;
+}
+
+// The planes of one or three channels as one page.
+template <class T>
+TiffPage<T> page_of(const std::vector<Volume<T>>& planes, const std::string& name = {}) {
+  TiffPage<T> page(planes.front().view(), name);
+  for (std::size_t c = 1; c < planes.size(); ++c) page.further.push_back(planes[c].view());
+  return page;
+}
+
+template <class T>
+TiffPage<T> page_of(const std::vector<const Volume<T>*>& planes, const std::string& name = {}) {
+  TiffPage<T> page(planes.front()->view(), name);
+  for (std::size_t c = 1; c < planes.size(); ++c) page.further.push_back(planes[c]->view());
+  return page;
+}
+
+template <class T>
+void write_rounded(const fs::path& file, const std::vector<PlaneRestoration>& planes, int bits,
+                   const TiffOptions& options) {
+  std::vector<Volume<T>> out;
+  for (const PlaneRestoration& plane : planes) out.push_back(rounded<T>(plane.restored, bits));
+  write_tiff(file, std::vector<TiffPage<T>>{page_of(out)}, options);
+}
+
+void write_maps(const FieldTask& task, const std::vector<PlaneRestoration>& planes,
+                const SampleFormat& format, const DenoiseSettings& settings,
+                const TiffOptions& options, ImageRecord& record) {
+  const auto write = [&](const std::string& suffix, Volume<float> PlaneRestoration::*map) {
+    std::vector<const Volume<float>*> channels;
+    for (const PlaneRestoration& plane : planes) channels.push_back(&(plane.*map));
+    write_tiff(with_suffix(task.stem, suffix), std::vector<TiffPage<float>>{page_of(channels)},
+               options);
+    list_output(task, suffix, record);
+  };
+  if (!keeps_integers(format, settings)) {
+    write(".restored.tif", &PlaneRestoration::restored);
+  } else {
+    const fs::path file = with_suffix(task.stem, ".restored.tif");
+    if (format.bits <= 8) {
+      write_rounded<std::uint8_t>(file, planes, format.bits, options);
+    } else {
+      write_rounded<std::uint16_t>(file, planes, format.bits, options);
+    }
+    list_output(task, ".restored.tif", record);
+  }
+  write(".sd.tif", &PlaneRestoration::sd);
+  write(".lower90.tif", &PlaneRestoration::lower90);
+  write(".upper90.tif", &PlaneRestoration::upper90);
+  const bool impulses = std::all_of(planes.begin(), planes.end(),
+                                    [](const PlaneRestoration& p) { return !p.impulse.empty(); });
+  if (impulses) write(".impulses.tif", &PlaneRestoration::impulse);
+  if (!planes.front().draws.empty()) {
+    std::vector<TiffPage<float>> pages;
+    for (std::size_t i = 0; i < planes.front().draws.size(); ++i) {
+      std::vector<const Volume<float>*> channels;
+      for (const PlaneRestoration& plane : planes) channels.push_back(&plane.draws[i]);
+      pages.push_back(page_of(channels, "draw " + std::to_string(i + 1)));
+    }
+    write_tiff(with_suffix(task.stem, ".draws.tif"), pages, options);
+    list_output(task, ".draws.tif", record);
+  }
+  std::vector<const Volume<float>*> restored;
+  for (const PlaneRestoration& plane : planes) restored.push_back(&plane.restored);
+  write_preview(with_suffix(task.stem, ".restored.png"), restored);
+  list_output(task, ".restored.png", record);
+}
+
+// The noise level as a measurement of the image.
+Measurement noise_measurement(const ChannelFacts& channel) {
+  Measurement m;
+  m.name = channel.channel == "grey" ? "noise_sd" : "noise_sd_" + channel.channel;
+  m.unit = "grey value";
+  m.estimate = channel.noise.middle_sd;
+  m.plain_estimate = m.estimate;
+  m.lower90 = channel.noise.middle_sd_lower90;
+  m.upper90 = channel.noise.middle_sd_upper90;
+  m.sd = (m.upper90 - m.lower90) / (2 * 1.645);
+  return m;
+}
+
+void append_new(const std::vector<std::string>& from, std::vector<std::string>& to) {
+  for (const std::string& text : from) {
+    if (std::find(to.begin(), to.end(), text) == to.end()) to.push_back(text);
+  }
+}
+
+void describe_planes(const std::vector<PlaneRestoration>& planes, ImageRecord& record) {
+  record.restoration = planes.front().field;
+  record.verdict.converged = true;
+  for (const PlaneRestoration& plane : planes) {
+    record.restoration.channels.push_back(plane.facts);
+    record.measurements.push_back(noise_measurement(plane.facts));
+    record.verdict.converged = record.verdict.converged && plane.converged;
+    append_new(plane.sentences, record.verdict.sentences);
+    append_new(plane.notes, record.input.notes);
+  }
+}
+
+ImageRecord denoise(const FieldTask& task, const DenoiseSettings& settings, const RunSettings& run,
+                    const Pool& pool, JobObserver& observer) {
+  ImageRecord record;
+  Stopwatch watch;
+  const Field field = read_page(task.file, task.page, run.limits, ColourMode::kSeparate);
+  const std::uint64_t seed =
+      begin_record(task, field, kDenoise, named_settings(settings), settings.seed, record);
+  const Volume<std::uint8_t> usable =
+      read_mask(settings.mask, task, field.pixels.extent(), run.limits);
+  record.run = {active_cpu_target(), pool.threads(), watch.lap(), 0, 0};
+
+  std::vector<PlaneRestoration> planes;
+  const std::size_t channels = field.colour.empty() ? 1 : field.colour.size();
+  for (std::size_t c = 0; c < channels; ++c) {
+    const Volume<float>& plane = field.colour.empty() ? field.pixels : field.colour[c];
+    planes.push_back(restore_plane(plane, usable, settings, seed + c, nullptr, pool, observer));
+    planes.back().facts.channel = field.colour.empty() ? "grey" : kColours[c];
+  }
+  describe_planes(planes, record);
+  record.run.sample_seconds = watch.lap();
+
+  const fs::path record_file = with_suffix(task.stem, kRecordSuffix);
+  fs::remove(record_file);  // from here to the end there is no finished result
+  TiffOptions options;
+  options.pixel_size_um = field.pixel_size_um;
+  write_maps(task, planes, field.format, settings, options, record);
+  record.run.write_seconds = watch.lap();
+  write_record(record_file, record);
+  return record;
+}
+
+}  // namespace
+
+ImageRecord denoise_field(const FieldTask& task, const DenoiseSettings& settings,
+                          const RunSettings& run, const Pool& pool, JobObserver& observer) {
+  return with_file_named(task, [&] { return denoise(task, settings, run, pool, observer); });
+}
+
+}  // namespace stillfield

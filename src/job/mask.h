@@ -1,0 +1,23 @@
+// Masks: which pixels of an image may be used.
+#ifndef STILLFIELD_JOB_MASK_H_
+#define STILLFIELD_JOB_MASK_H_
+
+#include <cstdint>
+#include <filesystem>
+
+#include "core/volume.h"
+#include "image/read.h"
+#include "job/field_task.h"
+
+namespace stillfield {
+
+// 1 for pixels to use, 0 for pixels whose mask is 0 or not a number. `mask`: empty (all are used),
+// an image file for all fields, or a folder with a file under the relative name of each input, in
+// the extension of the input or in .png, .tif. A mask of one page serves all pages. Throws
+// Error(kInput) if there is no mask for the field, or its size differs.
+Volume<std::uint8_t> read_mask(const std::filesystem::path& mask, const FieldTask& task,
+                               const Extent& extent, const ReadLimits& limits);
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_JOB_MASK_H_

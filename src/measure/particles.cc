@@ -1,0 +1,103 @@
+#include "measure/particles.h"
+
+#include <algorithm>
+#include <cmath>
+#include <limits>
+#include <numbers>
+#include <opencv2/imgproc.hpp>
+
+namespace stillfield {
+namespace {
+
+cv::Mat class_mask(View<const std::uint8_t> labels, int label, View<const std::uint8_t> usable) {
+  cv::Mat mask(labels.height(), labels.width(), CV_8UC1);
+  const bool all = usable.extent().sites() == 0;
+  for (int y = 0; y < labels.height(); ++y) {
+    std::uint8_t* out = mask.ptr<std::uint8_t>(y);
+    for (int x = 0; x < labels.width(); ++x) {
+      out[x] = labels.at(x, y) == label && (all || usable.at(x, y) != 0) ? 1 : 0;
+    }
+  }
+  return mask;
+}
+
+double frame_weight(const Particle& p, int width, int height) {
+  const double free_places =
+      (static_cast<double>(width) - p.width) * (static_cast<double>(height) - p.height);
+  return free_places > 0 ? static_cast<double>(width) * height / free_places : 0.0;
+}
+
+}  // namespace
+
+Particles find_particles(View<const std::uint8_t> labels, int label,
+                         View<const std::uint8_t> usable, const ParticleSettings& settings) {
+  Particles found;
+  found.component = Volume<std::int32_t>({labels.width(), labels.height()});
+  cv::Mat component, stats, centroids;
+  const int count =
+      cv::connectedComponentsWithStats(class_mask(labels, label, usable), component, stats,
+                                       centroids, settings.connectivity, CV_32S);
+  std::vector<std::int32_t> number(static_cast<std::size_t>(count));
+  for (int c = 1; c < count; ++c) {
+    Particle p;
+    p.area = stats.at<int>(c, cv::CC_STAT_AREA);
+    if (p.area < settings.min_area) continue;
+    p.left = stats.at<int>(c, cv::CC_STAT_LEFT);
+    p.top = stats.at<int>(c, cv::CC_STAT_TOP);
+    p.width = stats.at<int>(c, cv::CC_STAT_WIDTH);
+    p.height = stats.at<int>(c, cv::CC_STAT_HEIGHT);
+    p.x = centroids.at<double>(c, 0);
+    p.y = centroids.at<double>(c, 1);
+    p.on_border = p.left == 0 || p.top == 0 || p.left + p.width == labels.width() ||
+                  p.top + p.height == labels.height();
+    if (!p.on_border) p.weight = frame_weight(p, labels.width(), labels.height());
+    p.component = static_cast<int>(found.list.size()) + 1;
+    number[static_cast<std::size_t>(c)] = p.component;
+    found.list.push_back(p);
+  }
+  for (int y = 0; y < labels.height(); ++y) {
+    const std::int32_t* in = component.ptr<std::int32_t>(y);
+    std::int32_t* out = found.component.row(y);
+    for (int x = 0; x < labels.width(); ++x) out[x] = number[static_cast<std::size_t>(in[x])];
+  }
+  return found;
+}
+
+double equivalent_diameter(double area) {
+  return std::sqrt(4.0 * area / std::numbers::pi);
+}
+
+ParticleSizes particle_sizes(const std::vector<Particle>& particles) {
+  ParticleSizes sizes;
+  std::vector<std::pair<std::int64_t, double>> areas;
+  double area_sum = 0;
+  for (const Particle& p : particles) {
+    if (p.weight <= 0) continue;
+    areas.emplace_back(p.area, p.weight);
+    sizes.count += p.weight;
+    area_sum += p.weight * static_cast<double>(p.area);
+  }
+  if (areas.empty()) {
+    sizes.mean_area = sizes.d10 = sizes.d50 = sizes.d90 = std::numeric_limits<double>::quiet_NaN();
+    return sizes;
+  }
+  sizes.mean_area = area_sum / sizes.count;
+  std::sort(areas.begin(), areas.end());
+  // The smallest diameter that at least this share of the weight does not exceed.
+  const auto percentile = [&](double share) {
+    double below = 0;
+    for (const auto& [area, weight] : areas) {
+      below += weight;
+      if (below >= share * sizes.count * (1 - 1e-12)) {
+        return equivalent_diameter(static_cast<double>(area));
+      }
+    }
+    return equivalent_diameter(static_cast<double>(areas.back().first));
+  };
+  sizes.d10 = percentile(0.1);
+  sizes.d50 = percentile(0.5);
+  sizes.d90 = percentile(0.9);
+  return sizes;
+}
+
+}  // namespace stillfield

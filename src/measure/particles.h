@@ -1,0 +1,57 @@
+// Particles of one class in a label image: connected components, measured.
+//
+// Components  4- or 8-connected (OpenCV connectedComponentsWithStats)
+// Border      a particle cut by the frame has no size. Those that touch it are left out, and the
+//             others weigh 1 / the chance that a particle of their bounding box w x h lies wholly
+//             inside a frame of W x H: weight = W H / ((W - w)(H - h)) (Miles 1974, Lantuejoul
+//             1980; ISO 13322-1). The sum of weights is the number of particles the frame would
+//             hold if none were cut
+// Units       pixels
+#ifndef STILLFIELD_MEASURE_PARTICLES_H_
+#define STILLFIELD_MEASURE_PARTICLES_H_
+
+#include <cstdint>
+#include <vector>
+
+#include "core/volume.h"
+
+namespace stillfield {
+
+struct ParticleSettings {
+  int connectivity = 8;       // 4 or 8
+  std::int64_t min_area = 1;  // pixels; smaller components are no particles
+};
+
+struct Particle {
+  int component = 0;  // its number in the component map, from 1
+  std::int64_t area = 0;
+  int left = 0, top = 0, width = 0, height = 0;
+  double x = 0, y = 0;     // centroid, pixel centres at whole numbers
+  bool on_border = false;  // touches the frame
+  double weight = 0;       // 0 on the border
+};
+
+struct Particles {
+  std::vector<Particle> list;      // in row order of their first pixels
+  Volume<std::int32_t> component;  // of each pixel; 0 = other classes and components too small
+};
+
+// Labels are 1..K; pixels with `usable` 0 belong to no particle (an empty view: all are usable).
+Particles find_particles(View<const std::uint8_t> labels, int label,
+                         View<const std::uint8_t> usable, const ParticleSettings& settings);
+
+// Equivalent circular diameter sqrt(4 A / pi).
+double equivalent_diameter(double area);
+
+struct ParticleSizes {
+  double count = 0;  // sum of weights
+  double mean_area = 0;
+  double d10 = 0, d50 = 0, d90 = 0;  // weighted number percentiles of the equivalent diameter
+};
+
+// NaN for what needs a particle when there is none inside the frame.
+ParticleSizes particle_sizes(const std::vector<Particle>& particles);
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_MEASURE_PARTICLES_H_

@@ -1,0 +1,50 @@
+// An image restored by a field of overlapping patches learned from the noisy image itself.
+//
+// Model    every patch of the clean image follows a Gaussian mixture (model/patch_mixture.h);
+//          noise is white, Gaussian and of known deviation
+// Method   1. random tilings: exact conditional moments of every tile's patch given its data
+//             (sampler/patch_tiling.h)
+//          2. local groups: similar patches found on the estimate share a mean and a covariance
+//             drawn by a short Gibbs run (sampler/patch_groups.h). The search looks at the data
+//             and the run is short: empirical Bayes
+//          3. all overlapping patch means are pooled by precision (sampler/patch_sums.h)
+// Units    those of the image throughout
+// Bytes    the same for any number of threads and any CPU target
+#ifndef STILLFIELD_SAMPLER_PATCH_FIELD_H_
+#define STILLFIELD_SAMPLER_PATCH_FIELD_H_
+
+#include <cstdint>
+#include <functional>
+#include <vector>
+
+#include "core/volume.h"
+#include "model/patch_mixture.h"
+#include "model/patch_settings.h"
+#include "parallel/pool.h"
+#include "random/philox.h"
+#include "sampler/pixel_redraw.h"
+
+namespace stillfield {
+
+// Called between sweeps with the steps done; true asks to stop.
+using PatchProgress = std::function<bool(int step, int steps)>;
+
+struct PatchResult {
+  IntensityMoments moments;
+  std::vector<Volume<float>> draws;  // images drawn from the posterior, `samples` of them
+  int patch = 0;                     // side used
+  int components = 0;                // of the mixture used
+};
+
+// value: one plane, finite everywhere (missing pixels hold a guess); noise_sd > 0.
+// redraw may be null. learned: a mixture learned elsewhere, or null to learn from `value`; its
+// side overrides the setting.
+// Throws Error(kInterrupt) when `progress` asks to stop, otherwise as resolved_settings does.
+PatchResult restore_patches(const Volume<float>& value, double noise_sd,
+                            const PatchSettings& settings, PhiloxKey key, const Pool& pool,
+                            PixelRedraw* redraw, const PatchMixture* learned,
+                            const PatchProgress& progress);
+
+}  // namespace stillfield
+
+#endif  // STILLFIELD_SAMPLER_PATCH_FIELD_H_
