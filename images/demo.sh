@@ -1,5 +1,5 @@
 #!/usr/bin/env bash
-# Segments the demo images: installs what is missing, builds the program, runs it.
+# Segments and restores the demo images: installs what is missing, builds the program, runs it.
 #
 # Usage: bash images/demo.sh [OUTPUT_FOLDER]    default: build/demo-results
 # Safe to run again: what is installed, built or finished is not done twice.
@@ -23,10 +23,15 @@ segment cast-iron 3      # graphite, pearlite, ferrite
 segment yeast 2          # background, cells
 segment delivery-notes 2 # ink, paper
 
+printf '\nyeast: restored, photon and read noise estimated\n'
+build/release/src/cli/stillfield denoise images/yeast --noise photon --out "$results/yeast-restored" \
+  </dev/null
+
 printf '\nResults are in %s\n' "$results"
 for folder in cast-iron yeast delivery-notes; do
   printf '  %s/measurements.csv   area fractions with intervals, one row a measurement\n' "$folder"
   printf '  %s/summary.csv        the same over all fields of the folder\n' "$folder"
 done
+printf '  %s/yeast-restored   restored images (*.restored.tif), deviations (*.sd.tif), bounds\n' "$results"
 printf 'Beside them: label maps (*.labels.tif), class probabilities (*.probability.tif) and\n'
 printf 'where to doubt them (*.entropy.tif). True area fractions: images/truth/area-fractions.csv\n'

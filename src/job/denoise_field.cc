@@ -137,7 +137,7 @@ void describe_planes(const std::vector<PlaneRestoration>& planes, ImageRecord& r
 }
 
 ImageRecord denoise(const FieldTask& task, const DenoiseSettings& settings, const RunSettings& run,
-                    const Pool& pool, JobObserver& observer) {
+                    const Pool& pool, JobObserver& observer, const PatchMixture* mixture) {
   ImageRecord record;
   Stopwatch watch;
   const Field field = read_page(task.file, task.page, run.limits, ColourMode::kSeparate);
@@ -151,7 +151,7 @@ ImageRecord denoise(const FieldTask& task, const DenoiseSettings& settings, cons
   const std::size_t channels = field.colour.empty() ? 1 : field.colour.size();
   for (std::size_t c = 0; c < channels; ++c) {
     const Volume<float>& plane = field.colour.empty() ? field.pixels : field.colour[c];
-    planes.push_back(restore_plane(plane, usable, settings, seed + c, nullptr, pool, observer));
+    planes.push_back(restore_plane(plane, usable, settings, seed + c, mixture, pool, observer));
     planes.back().facts.channel = field.colour.empty() ? "grey" : kColours[c];
   }
   describe_planes(planes, record);
@@ -170,8 +170,10 @@ ImageRecord denoise(const FieldTask& task, const DenoiseSettings& settings, cons
 }  // namespace
 
 ImageRecord denoise_field(const FieldTask& task, const DenoiseSettings& settings,
-                          const RunSettings& run, const Pool& pool, JobObserver& observer) {
-  return with_file_named(task, [&] { return denoise(task, settings, run, pool, observer); });
+                          const RunSettings& run, const Pool& pool, JobObserver& observer,
+                          const PatchMixture* mixture) {
+  return with_file_named(task,
+                         [&] { return denoise(task, settings, run, pool, observer, mixture); });
 }
 
 }  // namespace stillfield

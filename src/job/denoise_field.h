@@ -14,13 +14,16 @@
 #include "job/field_task.h"
 #include "job/observer.h"
 #include "job/settings.h"
+#include "model/patch_mixture.h"
 #include "parallel/pool.h"
 #include "report/record.h"
 
 namespace stillfield {
 
+// `mixture`: learned from like images, or null to learn from each image itself.
 ImageRecord denoise_field(const FieldTask& task, const DenoiseSettings& settings,
-                          const RunSettings& run, const Pool& pool, JobObserver& observer);
+                          const RunSettings& run, const Pool& pool, JobObserver& observer,
+                          const PatchMixture* mixture);
 
 }  // namespace stillfield
 

@@ -1,9 +1,11 @@
 #include "job/folder.h"
 
 #include <algorithm>
+#include <optional>
 
 #include "core/error.h"
 #include "job/denoise_field.h"
+#include "job/learn_patches.h"
 #include "job/output_folder.h"
 #include "job/plan.h"
 #include "job/segment_field.h"
@@ -142,8 +144,12 @@ FolderCounts segment_folder(const std::vector<fs::path>& inputs, const SegmentSe
 
 FolderCounts denoise_folder(const std::vector<fs::path>& inputs, const DenoiseSettings& settings,
                             const RunSettings& run, JobObserver& observer) {
+  std::optional<PatchMixture> mixture;
+  if (settings.prior == PriorChoice::kPatches && !settings.learn_from.empty()) {
+    mixture = learn_patches(settings, run.limits, Pool(run.threads), observer);
+  }
   const auto run_field = [&](const FieldTask& task, const Pool& pool) {
-    return denoise_field(task, settings, run, pool, observer);
+    return denoise_field(task, settings, run, pool, observer, mixture ? &*mixture : nullptr);
   };
   return run_folder(inputs, {kDenoise, named_settings(settings), run_field}, run, observer);
 }

@@ -7,6 +7,7 @@
 
 #include "job/plane_facts.h"
 #include "job/prepared_plane.h"
+#include "job/recheck.h"
 #include "job/restore_intensity.h"
 #include "model/variogram.h"
 #include "random/counters.h"
@@ -60,22 +61,40 @@ RedrawProblem redraw_problem(const PreparedPlane& plane, const std::optional<dou
   return problem;
 }
 
-FieldPosterior sample_patches(const PreparedPlane& plane, const DenoiseSettings& settings,
-                              PhiloxKey key, const PatchMixture* mixture, const Pool& pool,
-                              JobObserver& observer, PlaneRestoration& out) {
+PatchSettings patch_settings(const DenoiseSettings& settings) {
   PatchSettings patches;
   patches.patch = settings.patch;
   patches.quick = settings.quick;
-  patches.samples = settings.samples;
+  patches.samples = std::max(settings.samples, settings.recheck ? 1 : 0);
+  return patches;
+}
+
+FieldPosterior sample_patches(const PreparedPlane& plane, const DenoiseSettings& settings,
+                              std::uint64_t seed, const PatchMixture* mixture, const Pool& pool,
+                              JobObserver& observer, PlaneRestoration& out) {
   const bool gaps = plane.impulses.share > 0 || plane.missing + plane.cut_off > 0;
-  NoiseRedraw redraw(redraw_problem(plane, settings.saturation), key);
+  const double sd = plane.transform->sd();
+  NoiseRedraw redraw(redraw_problem(plane, settings.saturation), chain_key(seed, 0));
+  PatchSettings patches = patch_settings(settings);
   int steps_made = 0;
-  PatchResult result = restore_patches(plane.start, plane.transform->sd(), patches, key, pool,
-                                       gaps ? &redraw : nullptr, mixture, [&](int step, int steps) {
-                                         steps_made = steps;
-                                         observer.stepped(step, steps);
-                                         return observer.stop_requested();
-                                       });
+  const auto progress = [&](int step, int steps) {
+    steps_made = steps;
+    observer.stepped(step, steps);
+    return observer.stop_requested();
+  };
+  PatchResult result = restore_patches(plane.start, sd, patches, chain_key(seed, 0), pool,
+                                       gaps ? &redraw : nullptr, mixture, progress);
+  if (settings.recheck) {
+    patches.samples = 0;
+    const auto again = [&](const Volume<float>& value, std::uint32_t run) {
+      return restore_patches(value, sd, patches, chain_key(seed, run), pool, nullptr, mixture,
+                             progress)
+          .moments;
+    };
+    out.facts.sd_factor = recheck_factor(result.moments.mean, result.draws.front(), sd,
+                                         chain_key(seed, 0), pool, again);
+    result.draws.resize(static_cast<std::size_t>(settings.samples));
+  }
   if (gaps) {
     add_gap_variance(result.moments.mean.view(), plane.clean.view(),
                      result.moments.variance.view());
@@ -164,7 +183,7 @@ PlaneRestoration restore_plane(const Volume<float>& value, const Volume<std::uin
   const PriorChoice prior = fitting_prior(value, settings, out.notes);
   FieldPosterior posterior;
   if (prior == PriorChoice::kPatches) {
-    posterior = sample_patches(plane, settings, chain_key(seed, 0), mixture, pool, observer, out);
+    posterior = sample_patches(plane, settings, seed, mixture, pool, observer, out);
   } else {
     posterior = sample_differences(plane, prior, settings, seed, pool, observer, out);
   }

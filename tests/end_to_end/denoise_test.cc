@@ -1,4 +1,5 @@
 // The denoise command on small images: what it writes, in which types, and what it refuses.
+#include <algorithm>
 #include <catch2/catch.hpp>
 #include <cmath>
 #include <limits>
@@ -204,6 +205,24 @@ TEST_CASE("an image too small for patches is restored by another field, with a n
   const auto record = read_json(folder / "out/tiny.record.json");
   CHECK(record["restoration"]["prior"] == "edges");
   CHECK_THAT(record["input"]["notes"].dump(), Contains("too small for patches"));
+}
+
+TEST_CASE("a recheck scales the deviations, samples and a mixture from like images are used") {
+  const TempFolder folder;
+  save_tiff_float(folder / "in/a.tif", draw_scene({64, 48, 2, 3, 60, 100, 20}));
+  save_tiff_float(folder / "like/b.tif", draw_scene({96, 80, 2, 9, 60, 100, 20}));
+  const Ended ended = denoise(folder / "in", folder / "out",
+                              {"--recheck", "--samples", "3", "--learn-from",
+                               (folder / "like").string(), "--noise", "gaussian:20"});
+  INFO(ended.err);
+  REQUIRE(ended.code == 0);
+  const auto channel = read_json(folder / "out/a.record.json")["restoration"]["channels"][0];
+  CHECK(channel["sd_factor"].get<double>() > 0.5);
+  CHECK(channel["sd_factor"].get<double>() < 2.0);
+  CHECK(channel["sd_factor"] != 1.0);
+  CHECK(count_pages(folder / "out/a.draws.tif") == 3);
+  REQUIRE(denoise(folder / "in", folder / "alone", {"--noise", "gaussian:20"}).code == 0);
+  CHECK(get(folder / "alone/a.restored.tif") != get(folder / "out/a.restored.tif"));
 }
 
 TEST_CASE("results of another command are not mixed into a folder") {
