@@ -22,6 +22,18 @@ bool scattered(View<const float> image, View<const std::uint8_t> usable, double 
   return equal <= kMostEqualPairs * pairs;
 }
 
+// Median difference of successive distinct values; 0 if there is one value.
+double usual_step(const std::vector<double>& sorted) {
+  std::vector<double> steps;
+  for (std::size_t i = 1; i < sorted.size(); ++i) {
+    if (sorted[i] > sorted[i - 1]) steps.push_back(sorted[i] - sorted[i - 1]);
+  }
+  if (steps.empty()) return 0.0;
+  const auto middle = steps.begin() + static_cast<std::ptrdiff_t>(steps.size() / 2);
+  std::nth_element(steps.begin(), middle, steps.end());
+  return *middle;
+}
+
 }  // namespace
 
 ImpulseAtoms find_atoms(View<const float> image, View<const std::uint8_t> usable) {
@@ -38,7 +50,8 @@ ImpulseAtoms find_atoms(View<const float> image, View<const std::uint8_t> usable
   std::sort(grey.begin(), grey.end());
   atoms.low = grey.front();
   atoms.high = grey.back();
-  const double around = 2.0 * atoms.least_noise();
+  // Of whole counts every value holds many pixels: look at least two usual steps around.
+  const double around = 2.0 * std::max(atoms.least_noise(), usual_step(grey));
   const auto least =
       static_cast<std::ptrdiff_t>(kLeastImpulseShare * static_cast<double>(grey.size()));
   for (auto first = grey.begin(); first != grey.end();) {

@@ -1,8 +1,9 @@
 // Grey values that salt, pepper or stuck pixels have exactly.
 //
 // Rule     a value is an atom when at least kLeastImpulseShare of the pixels hold it, more than all
-//          values within two steps of the noise floor around, and they are scattered: not the
-//          clipped areas of a picture
+//          values within two steps around (of the noise floor, or of the usual difference between
+//          successive values if that is larger), and they are scattered: not the clipped areas of a
+//          picture
 // Floor    the noise is taken to be at least kLeastShareOfRange of the grey range, about the step
 // of
 //          8 bits
