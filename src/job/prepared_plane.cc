@@ -15,6 +15,8 @@ namespace {
 // Beyond this share what is found is no impulses but the noise itself.
 constexpr double kMostImpulseShare = 0.25;
 
+constexpr int kCorrelationReach = 2;  // pixels
+
 // Calls body(x, y) for every pixel.
 template <class Body>
 void for_each_pixel(const Extent& e, const Body& body) {
@@ -178,6 +180,8 @@ PreparedPlane prepare_plane(const Volume<float>& value, const Usable& allowed,
   for_each_pixel(value.extent(), [&](int x, int y) {
     if (plane.clean.at(x, y) != 0) plane.start.at(x, y) = plane.transformed.at(x, y);
   });
+  plane.correlation =
+      noise_correlation(plane.transformed.view(), plane.clean.view(), kCorrelationReach);
   fill_missing(plane.clean.view(), plane.start.view());
   return plane;
 }

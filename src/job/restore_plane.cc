@@ -60,6 +60,23 @@ RedrawProblem redraw_problem(const PreparedPlane& plane, const std::optional<dou
   return problem;
 }
 
+// The correlation of the noise to model, or white noise and a note that says why.
+NoiseCorrelationModel correlation_to_model(const PreparedPlane& plane, bool gaps,
+                                           PlaneRestoration& out) {
+  if (!plane.correlation.correlated) {
+    out.notes.push_back("no correlation of the noise was found: it is taken as white");
+    return {};
+  }
+  if (gaps) {
+    out.notes.push_back(
+        "the correlation of the noise is not modelled where pixels are missing, saturated or "
+        "impulses: it is taken as white");
+    return {};
+  }
+  out.correlation_modelled = true;
+  return {plane.correlation.reach, plane.correlation.rho};
+}
+
 FieldPosterior sample_patches(const PreparedPlane& plane, const DenoiseSettings& settings,
                               PhiloxKey key, const PatchMixture* mixture, const Pool& pool,
                               JobObserver& observer, PlaneRestoration& out) {
@@ -68,6 +85,9 @@ FieldPosterior sample_patches(const PreparedPlane& plane, const DenoiseSettings&
   patches.quick = settings.quick;
   patches.samples = settings.samples;
   const bool gaps = plane.impulses.share > 0 || plane.missing + plane.cut_off > 0;
+  if (settings.correlated_noise) {
+    patches.noise_correlation = correlation_to_model(plane, gaps, out);
+  }
   NoiseRedraw redraw(redraw_problem(plane, settings.saturation), key);
   int steps_made = 0;
   PatchResult result = restore_patches(plane.start, plane.transform->sd(), patches, key, pool,
@@ -162,6 +182,10 @@ PlaneRestoration restore_plane(const Volume<float>& value, const Volume<std::uin
   PlaneRestoration out;
   const PreparedPlane plane = prepare_plane(value, allowed, settings, pool);
   const PriorChoice prior = fitting_prior(value, settings, out.notes);
+  if (settings.correlated_noise && prior != PriorChoice::kPatches) {
+    out.notes.push_back(
+        "the correlation of the noise is modelled by --prior patches only: it is taken as white");
+  }
   FieldPosterior posterior;
   if (prior == PriorChoice::kPatches) {
     posterior = sample_patches(plane, settings, chain_key(seed, 0), mixture, pool, observer, out);
