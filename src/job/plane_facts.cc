@@ -1,11 +1,7 @@
 #include "job/plane_facts.h"
 
-#include "diagnose/residual_correlation.h"
-
 namespace stillfield {
 namespace {
-
-constexpr int kCorrelationReach = 2;  // pixels
 
 NoiseFacts describe_noise(const NoiseModel& noise, const NoiseRequest& request) {
   NoiseFacts facts;
@@ -35,11 +31,21 @@ void describe_plane(const PreparedPlane& plane, const NoiseRequest& request,
   out.facts.missing = plane.missing;
   out.facts.saturated = plane.cut_off;
   if (!plane.noise.warning.empty()) out.notes.push_back(plane.noise.warning);
-  const NoiseCorrelation noise =
-      noise_correlation(plane.transformed.view(), plane.clean.view(), kCorrelationReach);
+  const NoiseCorrelation& noise = plane.correlation;
   out.facts.noise.neighbour_correlation = noise.at(1, 0);
   out.facts.noise.correlation_p_value = noise.p_value;
-  if (noise.correlated) out.sentences.push_back(noise.sentence);
+  if (!noise.correlated) return;
+  if (!out.correlation_modelled) {
+    out.sentences.push_back(noise.sentence);
+    return;
+  }
+  out.notes.push_back("noise is correlated between neighbours, which is modelled");
+  // The level is estimated from high frequencies, where correlated noise is weak.
+  if (plane.noise.estimated) {
+    out.sentences.push_back(
+        "noise is correlated between neighbours, so its level is estimated too low and intervals "
+        "are too narrow: give --noise");
+  }
 }
 
 }  // namespace stillfield

@@ -15,6 +15,8 @@ namespace {
 // Beyond this share what is found is no impulses but the noise itself.
 constexpr double kMostImpulseShare = 0.25;
 
+constexpr int kCorrelationReach = 2;  // pixels
+
 // Calls body(x, y) for every pixel.
 template <class Body>
 void for_each_pixel(const Extent& e, const Body& body) {
@@ -143,6 +145,23 @@ void find_impulses(const Volume<float>& value, const DenoiseSettings& settings, 
   plane.noise.impulse_share = map.share;
 }
 
+// Estimated without what looks like impulses; with all pixels when that is more than impulses can
+// be.
+NoiseModel noise_without_impulses(const NoiseRequest& request, const Volume<float>& value,
+                                  const Usable& usable, const Pool& pool) {
+  try {
+    const NoiseModel noise =
+        estimate_noise_and_impulses(request.kind, value.view(), usable.view(), pool).noise;
+    if (noise.impulse_share <= kMostImpulseShare) {
+      check_noise(noise);
+      return noise;
+    }
+  } catch (const Error&) {
+    // Too few pixels were left, or no noise in them: they were no impulses.
+  }
+  return find_noise(request, value, usable, pool);
+}
+
 // The noise, and the impulses that hide it.
 void look_at_noise(const Volume<float>& value, const DenoiseSettings& settings, const Pool& pool,
                    PreparedPlane& plane) {
@@ -150,10 +169,7 @@ void look_at_noise(const Volume<float>& value, const DenoiseSettings& settings, 
   if (given || settings.impulses == ImpulseMode::kOff) {
     plane.noise = find_noise(settings.noise, value, plane.usable, pool);
   } else {
-    plane.noise =
-        estimate_noise_and_impulses(settings.noise.kind, value.view(), plane.usable.view(), pool)
-            .noise;
-    check_noise(plane.noise);
+    plane.noise = noise_without_impulses(settings.noise, value, plane.usable, pool);
   }
   transform_values(value, plane);
   if (settings.impulses == ImpulseMode::kOff) return;
@@ -178,6 +194,8 @@ PreparedPlane prepare_plane(const Volume<float>& value, const Usable& allowed,
   for_each_pixel(value.extent(), [&](int x, int y) {
     if (plane.clean.at(x, y) != 0) plane.start.at(x, y) = plane.transformed.at(x, y);
   });
+  plane.correlation =
+      noise_correlation(plane.transformed.view(), plane.clean.view(), kCorrelationReach);
   fill_missing(plane.clean.view(), plane.start.view());
   return plane;
 }

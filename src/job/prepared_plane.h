@@ -10,6 +10,7 @@
 #include <memory>
 
 #include "core/volume.h"
+#include "diagnose/residual_correlation.h"
 #include "job/denoise_settings.h"
 #include "model/impulse_detection.h"
 #include "model/noise_model.h"
@@ -27,8 +28,9 @@ struct PreparedPlane {
   ImpulseMap impulses;  // share 0 and no map when there are none
   NoiseModel noise;
   std::unique_ptr<VarianceTransform> transform;
-  Volume<float> transformed;  // every pixel with a number, as it came
-  Volume<float> start;        // the same with all but clean pixels filled in from around
+  Volume<float> transformed;     // every pixel with a number, as it came
+  Volume<float> start;           // the same with all but clean pixels filled in from around
+  NoiseCorrelation correlation;  // of neighbouring clean pixels, after the transform
   std::int64_t observed = 0, missing = 0, cut_off = 0;
 };
 

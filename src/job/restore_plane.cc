@@ -61,6 +61,23 @@ RedrawProblem redraw_problem(const PreparedPlane& plane, const std::optional<dou
   return problem;
 }
 
+// The correlation of the noise to model, or white noise and a note that says why.
+NoiseCorrelationModel correlation_to_model(const PreparedPlane& plane, bool gaps,
+                                           PlaneRestoration& out) {
+  if (!plane.correlation.correlated) {
+    out.notes.push_back("no correlation of the noise was found: it is taken as white");
+    return {};
+  }
+  if (gaps) {
+    out.notes.push_back(
+        "the correlation of the noise is not modelled where pixels are missing, saturated or "
+        "impulses: it is taken as white");
+    return {};
+  }
+  out.correlation_modelled = true;
+  return {plane.correlation.reach, plane.correlation.rho};
+}
+
 PatchSettings patch_settings(const DenoiseSettings& settings) {
   PatchSettings patches;
   patches.patch = settings.patch;
@@ -76,6 +93,9 @@ FieldPosterior sample_patches(const PreparedPlane& plane, const DenoiseSettings&
   const double sd = plane.transform->sd();
   NoiseRedraw redraw(redraw_problem(plane, settings.saturation), chain_key(seed, 0));
   PatchSettings patches = patch_settings(settings);
+  if (settings.correlated_noise) {
+    patches.noise_correlation = correlation_to_model(plane, gaps, out);
+  }
   int steps_made = 0;
   const auto progress = [&](int step, int steps) {
     steps_made = steps;
@@ -84,7 +104,10 @@ FieldPosterior sample_patches(const PreparedPlane& plane, const DenoiseSettings&
   };
   PatchResult result = restore_patches(plane.start, sd, patches, chain_key(seed, 0), pool,
                                        gaps ? &redraw : nullptr, mixture, progress);
-  if (settings.recheck) {
+  if (settings.recheck && out.correlation_modelled) {
+    out.notes.push_back("not rechecked: a recheck adds white noise, and this one is correlated");
+    result.draws.resize(static_cast<std::size_t>(settings.samples));
+  } else if (settings.recheck) {
     patches.samples = 0;
     const auto again = [&](const Volume<float>& value, std::uint32_t run) {
       return restore_patches(value, sd, patches, chain_key(seed, run), pool, nullptr, mixture,
@@ -181,6 +204,10 @@ PlaneRestoration restore_plane(const Volume<float>& value, const Volume<std::uin
   PlaneRestoration out;
   const PreparedPlane plane = prepare_plane(value, allowed, settings, pool);
   const PriorChoice prior = fitting_prior(value, settings, out.notes);
+  if (settings.correlated_noise && prior != PriorChoice::kPatches) {
+    out.notes.push_back(
+        "the correlation of the noise is modelled by --prior patches only: it is taken as white");
+  }
   FieldPosterior posterior;
   if (prior == PriorChoice::kPatches) {
     posterior = sample_patches(plane, settings, seed, mixture, pool, observer, out);

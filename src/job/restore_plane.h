@@ -36,6 +36,7 @@ struct PlaneRestoration {
   std::vector<std::string> notes;      // what a reader should know
   std::vector<std::string> sentences;  // why the result is in doubt
   bool converged = true;
+  bool correlation_modelled = false;  // of the noise, by the patch field
 };
 
 // value: NaN = missing. usable: 0 = masked. `mixture`: learned elsewhere, or null.

@@ -128,13 +128,41 @@ std::vector<Shares> share_patches(const PatchSample& sample, const PatchMixture&
   return shares;
 }
 
+void whiten(PatchSample& sample, const PatchNoise& noise) {
+  const std::vector<float> columns = patch_columns(noise.whiten);
+  const auto stride = static_cast<std::size_t>(patch_stride(sample.elements));
+  const std::vector<float> zero(stride, 0.0f);
+  for (std::size_t i = 0; i < sample.size; ++i) {
+    float* row = sample.rows.data() + i * stride;
+    multiply_patch(sample.elements, columns.data(), row, nullptr, zero.data(), row);
+  }
+}
+
+// The component of the patches themselves from that of whitened ones.
+void colour(PatchComponent& c, const PatchNoise& noise) {
+  SquareMatrix covariance(noise.colour.d);
+  covariance.value = c.covariance;
+  c.covariance = congruent(noise.colour, covariance).value;
+  const std::vector<double> mean = c.mean;
+  for (int r = 0; r < covariance.d; ++r) {
+    double sum = 0.0;
+    for (int k = 0; k <= r; ++k) sum += noise.colour(r, k) * mean[static_cast<std::size_t>(k)];
+    c.mean[static_cast<std::size_t>(r)] = sum;
+  }
+}
+
 }  // namespace
 
 PatchMixture learn_patch_mixture(std::span<const PatchPlane> planes, const PatchSettings& settings,
                                  PhiloxKey key, const Pool& pool) {
   const PatchSettings s = resolved_settings(settings, planes);
-  const PatchSample sample =
+  PatchSample sample =
       draw_patch_sample(planes, s.patch, s.quick ? kMostPatchesQuick : kMostPatches, key);
+  PatchNoise noise;
+  if (!s.noise_correlation.white()) {
+    noise = patch_noise(s.noise_correlation, s.patch);
+    whiten(sample, noise);
+  }
   // A component needs about as many patches as elements to mean anything.
   const auto most = static_cast<int>(sample.size / static_cast<std::size_t>(2 * sample.elements));
   const int components = std::clamp(most, 1, s.components);
@@ -150,6 +178,7 @@ PatchMixture learn_patch_mixture(std::span<const PatchPlane> planes, const Patch
     mixture = fit_components(sample, s.patch, share_patches(sample, mixture, pool), pool);
   }
   for (PatchComponent& c : mixture.components) {
+    if (!s.noise_correlation.white()) colour(c, noise);
     for (double& m : c.mean) m = m * sample.unit + sample.centre;
     for (double& v : c.covariance) v *= sample.unit * sample.unit;
   }

@@ -1,10 +1,11 @@
 // A Gaussian mixture over clean patches, learned from noisy ones.
 //
 // Model    clean patch x ~ sum_k weight_k N(mean_k, covariance_k), noisy patch y = x + n,
-//          n ~ N(0, sigma^2 I); the patch mean is kept
+//          n ~ N(0, sigma^2 C); the patch mean is kept
 //          (Teodoro, Almeida & Figueiredo 2015; Houdard, Bouveyron & Delon 2018)
 // Fit      EM on at most 20 000 patches; the covariance of the clean patches comes from the sample
-//          covariance of the noisy ones by patch_shrinkage.h
+//          covariance of the noisy ones by patch_shrinkage.h. Correlated noise: the patches are
+//          whitened first (patch_noise.h), the mixture of whitened patches is mapped back
 // Units    those of the image; d = side^2 elements, row by row
 // Bytes    the same for any number of threads and any CPU target
 #ifndef STILLFIELD_MODEL_PATCH_MIXTURE_H_

@@ -72,6 +72,7 @@ double relative_noise(const PatchPlane& plane) {
 
 PatchSettings resolved_settings(const PatchSettings& settings, std::span<const PatchPlane> planes) {
   check_settings(settings);
+  check_noise_correlation(settings.noise_correlation);
   PatchSettings s = settings;
   std::int64_t pixels = 0;
   double noise = 0.0;

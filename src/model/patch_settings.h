@@ -6,6 +6,7 @@
 #include <span>
 
 #include "core/volume.h"
+#include "model/patch_noise.h"
 
 namespace stillfield {
 
@@ -17,6 +18,8 @@ struct PatchSettings {
   int group_size = 40;     // similar patches a group
   bool quick = false;      // fewer iterations, one thin pass of groups
   int samples = 0;         // images to draw from the posterior
+
+  NoiseCorrelationModel noise_correlation;  // of every plane
 };
 
 // One plane to learn from or to restore: finite values, depth 1, and its noise.

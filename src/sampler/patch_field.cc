@@ -142,6 +142,12 @@ PatchResult restore_patches(const Volume<float>& value, double noise_sd,
   PatchSettings s = settings;
   if (learned) s.patch = learned->side;
   s = resolved_settings(s, {&plane, 1});
+  const bool white = s.noise_correlation.white();
+  if (redraw && !white) {
+    throw Error(ErrorKind::kUsage,
+                "values cannot be redrawn under correlated noise: fill them in, or take the noise "
+                "as white");
+  }
   const int tilings = s.quick ? std::min(s.tiling_sweeps, kQuickTilings) : s.tiling_sweeps;
   const int passes = s.quick ? std::min(s.group_passes, 1) : s.group_passes;
   const GroupPass group_pass{s.quick ? s.patch : s.patch / 2, s.group_size,
@@ -158,9 +164,11 @@ PatchResult restore_patches(const Volume<float>& value, double noise_sd,
   PatchMixture own;
   if (!learned) own = learn_patch_mixture({&plane, 1}, s, key, pool);
   const PatchMixture& mixture = learned ? *learned : own;
+  const PatchNoise noise = white ? PatchNoise{} : patch_noise(s.noise_correlation, s.patch);
   PatchRun run(value, noise_sd,
-               make_patch_tables(mixture, noise_sd, plane_mean(value), TableParts::kAll, pool), key,
-               pool, redraw);
+               make_patch_tables(mixture, noise_sd, plane_mean(value), TableParts::kAll, pool,
+                                 white ? nullptr : &noise),
+               key, pool, redraw);
   std::uint32_t sweep = 0;
   for (int t = 0; t < tilings; ++t, ++sweep) {
     pause();

@@ -1,7 +1,8 @@
 // An image restored by a field of overlapping patches learned from the noisy image itself.
 //
 // Model    every patch of the clean image follows a Gaussian mixture (model/patch_mixture.h);
-//          noise is white, Gaussian and of known deviation
+//          noise is Gaussian and of known deviation, white or with the correlation of the settings
+//          (model/patch_noise.h)
 // Method   1. random tilings: exact conditional moments of every tile's patch given its data
 //             (sampler/patch_tiling.h)
 //          2. local groups: similar patches found on the estimate share a mean and a covariance
@@ -37,9 +38,10 @@ struct PatchResult {
 };
 
 // value: one plane, finite everywhere (missing pixels hold a guess); noise_sd > 0.
-// redraw may be null. learned: a mixture learned elsewhere, or null to learn from `value`; its
-// side overrides the setting.
-// Throws Error(kInterrupt) when `progress` asks to stop, otherwise as resolved_settings does.
+// redraw may be null, and must be when the noise is correlated: values are redrawn with white
+// noise. learned: a mixture learned elsewhere, or null to learn from `value`; its side overrides
+// the setting. Throws Error(kInterrupt) when `progress` asks to stop, Error(kUsage) for a redraw
+// with correlated noise, otherwise as resolved_settings does.
 PatchResult restore_patches(const Volume<float>& value, double noise_sd,
                             const PatchSettings& settings, PhiloxKey key, const Pool& pool,
                             PixelRedraw* redraw, const PatchMixture* learned,

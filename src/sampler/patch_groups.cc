@@ -48,7 +48,8 @@ class GroupBatch {
         variance_sum_(static_cast<std::size_t>(d_) * kPatchLanes),
         centre_(static_cast<std::size_t>(d_) * kPatchLanes),
         scale_(static_cast<std::size_t>(triangle_elements(d_)) * kPatchLanes),
-        factor_(static_cast<std::size_t>(triangle_elements(d_)) * kPatchLanes) {}
+        factor_(static_cast<std::size_t>(triangle_elements(d_)) * kPatchLanes),
+        coloured_(variance_sum_.size()) {}
 
   // `label[i]` is the component of reference i; at most kPatchLanes references.
   void run(std::span<const PatchPosition> references, std::span<const int> label,
@@ -66,6 +67,7 @@ class GroupBatch {
     g.variance_sum = variance_sum_.data();
     std::fill_n(mean_sum_.data(), mean_sum_.size(), 0.0f);
     std::fill_n(variance_sum_.data(), variance_sum_.size(), 0.0f);
+    std::fill_n(coloured_.data(), coloured_.size(), 0.0f);
     for (int update = 1; update <= updates_; ++update) {
       const bool last = update == updates_;
       ++stream.sweep;
@@ -74,6 +76,7 @@ class GroupBatch {
       fill_normals(stream, kCentreColour, centre_);
       draw_group_parameters(g);
       if (!last) fill_normals(stream, kMemberColour, clean_);
+      if (!tables_.whiten.empty() && update > kDropped) add_coloured_variance();
       update_group_patches(g, update > kDropped, !last);
     }
     add_to_sums(references.size());
@@ -114,6 +117,7 @@ class GroupBatch {
           std::copy_n(value_.row(where[m].y + y) + where[m].x, side, patch + y * side);
           std::copy_n(estimate_.row(where[m].y + y) + where[m].x, side, start + y * side);
         }
+        whiten(patch);
         scatter(patch, m, lane, noisy_.data());
         const auto block =
             static_cast<std::uint32_t>(static_cast<int>(lane) * members_ + m) * (kMaxElements / 4);
@@ -122,7 +126,40 @@ class GroupBatch {
                           counter_word3(Purpose::kGroup, kMemberColour, 0)},
                          static_cast<std::size_t>(d_), normals);
         multiply_patch(d_, t.draw.data(), normals, nullptr, start, start);
+        whiten(start);
         scatter(start, m, lane, clean_.data());
+      }
+    }
+  }
+
+  void whiten(float* patch) const {
+    if (tables_.whiten.empty()) return;
+    alignas(64) const float zero[kMaxElements] = {};
+    multiply_patch(d_, tables_.whiten.data(), patch, nullptr, zero, patch);
+  }
+
+  // In place: whitened means to means of pixels.
+  void colour(float* mean) const {
+    if (tables_.whiten.empty()) return;
+    for (int r = d_ - 1; r >= 0; --r) {
+      double sum = 0.0;
+      for (int k = 0; k <= r; ++k) sum += tables_.colour(r, k) * double{mean[k]};
+      mean[r] = static_cast<float>(sum);
+    }
+  }
+
+  // Variance of pixel e: the squared length of V times row e of L; factor_ holds V.
+  void add_coloured_variance() {
+    for (int e = 0; e < d_; ++e) {
+      float* variance = coloured_.data() + e * kPatchLanes;
+      for (int r = 0; r < d_; ++r) {
+        float sum[kPatchLanes] = {};
+        for (int c = 0; c <= std::min(r, e); ++c) {
+          const auto l = static_cast<float>(tables_.colour(e, c));
+          const float* v = factor_.data() + triangle_at(r, c) * kPatchLanes;
+          for (int lane = 0; lane < kPatchLanes; ++lane) sum[lane] += l * v[lane];
+        }
+        for (int lane = 0; lane < kPatchLanes; ++lane) variance[lane] += sum[lane] * sum[lane];
       }
     }
   }
@@ -144,15 +181,17 @@ class GroupBatch {
     alignas(64) float precision[kMaxElements];
     alignas(64) float mean[kMaxElements];
     const int side = tables_.side;
+    const AlignedBuffer<float>& variance = tables_.whiten.empty() ? variance_sum_ : coloured_;
     for (std::size_t lane = 0; lane < groups; ++lane) {
       for (int e = 0; e < d_; ++e) {
         precision[e] =
-            1.0f / (variance_sum_[static_cast<std::size_t>(e) * kPatchLanes + lane] * average);
+            1.0f / (variance[static_cast<std::size_t>(e) * kPatchLanes + lane] * average);
       }
       const PatchPosition* where = where_.data() + lane * static_cast<std::size_t>(members_);
       for (int m = 0; m < members_; ++m) {
         const float* sum = mean_sum_.data() + static_cast<std::size_t>(m * d_) * kPatchLanes + lane;
         for (int e = 0; e < d_; ++e) mean[e] = sum[e * kPatchLanes] * average;
+        colour(mean);
         for (int y = 0; y < side; ++y) {
           sums_.add(where[m].x, where[m].y + y, side, mean + y * side, precision + y * side);
         }
@@ -170,6 +209,7 @@ class GroupBatch {
   PatchSearch search_;
   std::vector<PatchPosition> where_;
   AlignedBuffer<float> noisy_, clean_, mean_sum_, variance_sum_, centre_, scale_, factor_;
+  AlignedBuffer<float> coloured_;  // sums of pixel variances; used when the noise is correlated
 };
 
 // Labels of a tile's references.

@@ -6,6 +6,8 @@
 // Sampler  `updates` Gibbs updates (simd/patch_group.h) with the inverse Wishart prior of
 //          component k's covariance; the first is dropped, the conditional means and variances of
 //          the others are averaged
+// Noise    correlated noise: members are whitened (model/patch_noise.h), means m' come back as
+//          L m', variances as diag L G L', G = V'V the conditional covariance of whitened patches
 // Random   c1 = tile of 12 or 16 reference patches squared, c2 = pass << 16 | batch << 8 | update,
 //          c0 counts blocks; colours: sampler/patch_wishart.h and below
 // Threads  tiles of one of four colours reach disjoint pixels; each is worked in order

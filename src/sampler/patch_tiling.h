@@ -1,10 +1,10 @@
 // One random tiling of the image into patches: exact conditional moments, and exact draws.
 //
 // Maths    a tiling with a random offset splits the image into independent patches y = x + n,
-//          x ~ mixture, in noise units. Given k, x ~ N(m_k, G_k) with m_k = mean_k + G_k (y -
+//          x ~ mixture, in noise units. Given k, x ~ N(m_k, V_k) with m_k = mean_k + G_k (y -
 //          mean_k); labels are summed out with p_k = P(k | y):
-//          mean m = sum p_k m_k, variance sum p_k (diag G_k + m_k^2) - m^2.
-//          Draws take a label with p_k and add the Cholesky factor of G_k times normals
+//          mean m = sum p_k m_k, variance sum p_k (diag V_k + m_k^2) - m^2.
+//          Draws take a label with p_k and add the Cholesky factor of V_k times normals
 // Borders  patches at either end of a row or column overlap their neighbours, so that every pixel
 //          is covered; they count as patches of their own
 // Random   c0, c1 = first pixel of the patch, c2 = sweep; colour 0: label; colour 1: normals,

@@ -9,6 +9,8 @@
 #include "end_to_end/scene.h"
 #include "image/read.h"
 #include "image/write.h"
+#include "model/correlated_noise.h"
+#include "random/stream.h"
 
 using namespace stillfield;
 using namespace stillfield::test;
@@ -164,6 +166,56 @@ TEST_CASE("impulses are found and written as a map; without impulses there is no
     for (int x = 3; x < 96; x += 6, ++all) found += map.at(x, y) > 0.5F;
   }
   CHECK(found > 0.9 * all);
+}
+
+TEST_CASE("correlated noise is warned of, and modelled when asked for") {
+  const TempFolder folder;
+  const Scene scene{160, 144, 2, 3, 60, 120, 0};
+  const Volume<float> truth = draw_scene(scene);
+  RandomStream random({20261201, 9}, Purpose::kSimulation);
+  const Volume<float> noise =
+      stillfield::testing::moving_average_noise(truth.extent(), 0.9, random);
+  Volume<float> picture(truth.extent());
+  for (int y = 0; y < picture.height(); ++y) {
+    for (int x = 0; x < picture.width(); ++x) {
+      picture.at(x, y) = truth.at(x, y) + 20 * noise.at(x, y);
+    }
+  }
+  save_tiff_float(folder / "in/a.tif", picture);
+  const auto restore = [&](const std::string& name, const Arguments& arguments) {
+    const Ended ended = denoise(folder / "in", folder / name, arguments);
+    INFO(ended.err);
+    REQUIRE(ended.code == 0);
+    return read_json(folder / name / "a.record.json");
+  };
+  const auto white = restore("white", {"--noise", "gaussian:20"});
+  const auto modelled =
+      restore("modelled", {"--noise", "gaussian:20", "--noise-correlation", "estimate"});
+  const auto unknown = restore("unknown", {"--noise-correlation", "estimate"});
+  // rho(1, 0) = a / (1 + a^2), .497 for a = .9
+  const auto& facts = modelled["restoration"]["channels"][0]["noise"];
+  CHECK(facts["neighbour_correlation"].get<double>() == Approx(0.497).margin(0.15));
+  CHECK(facts["correlation_p_value"].get<double>() < 0.001);
+  CHECK_THAT(white["verdict"]["sentences"].dump(), Contains("noise is correlated"));
+  CHECK_THAT(white["input"]["notes"].dump(), !Contains("correlated"));
+  CHECK_THAT(modelled["verdict"]["sentences"].dump(), !Contains("noise is correlated"));
+  CHECK_THAT(modelled["input"]["notes"].dump(), Contains("modelled"));
+  CHECK_THAT(unknown["input"]["notes"].dump(), Contains("modelled"));
+  CHECK_THAT(unknown["verdict"]["sentences"].dump(), Contains("level is estimated too low"));
+  CHECK(root_mean_square(pixels(folder / "modelled/a.restored.tif"), truth) <
+        0.85 * root_mean_square(pixels(folder / "white/a.restored.tif"), truth));
+}
+
+TEST_CASE("white noise is restored as such, with a note") {
+  const TempFolder folder;
+  const Arguments more = {"--noise", "gaussian:15", "--noise-correlation", "estimate"};
+  save_tiff_float(folder / "in/a.tif", draw_scene({96, 80, 2, 4}));
+  REQUIRE(denoise(folder / "in", folder / "out", more).code == 0);
+  const auto record = read_json(folder / "out/a.record.json");
+  CHECK_THAT(record["input"]["notes"].dump(), Contains("no correlation of the noise was found"));
+  REQUIRE(denoise(folder / "in", folder / "plain", {"--noise", "gaussian:15"}).code == 0);
+  CHECK(root_mean_square(pixels(folder / "out/a.restored.tif"),
+                         pixels(folder / "plain/a.restored.tif")) == 0);
 }
 
 TEST_CASE("what cannot be restored is said in one sentence") {

@@ -5,9 +5,11 @@
 #include <vector>
 
 #include "core/error.h"
+#include "model/correlated_noise.h"
 #include "random/stream.h"
 
 using namespace stillfield;
+using namespace stillfield::testing;
 
 namespace {
 
@@ -67,6 +69,41 @@ TEST_CASE("one component learns the covariance of a Gaussian field under its noi
       REQUIRE(std::abs(got - expected) < 0.12 * 400.0);
     }
   }
+}
+
+TEST_CASE("a field under correlated noise of its own size is learned without the noise") {
+  // As above, noise of deviation 20 like the field: the total variance is 800, so errors are twice
+  // as large; asserted: 24 %. Taken as white, the noise leaves most of its 20^2 rho(1, 0) =
+  // 195 (closed form) in the neighbours' covariance; the 12 neighbours' mean is asserted to 12 %.
+  constexpr double kSd = 20.0, kAverage = 0.8;
+  Volume<float> value = smooth_field(192, 4, 20.0, 100.0, 0.0, 6);
+  RandomStream random({7, 1}, Purpose::kSimulation);
+  const Volume<float> noise = moving_average_noise(value.extent(), kAverage, random);
+  for (int y = 0; y < 192; ++y) {
+    for (int x = 0; x < 192; ++x) value.at(x, y) += static_cast<float>(kSd * noise.at(x, y));
+  }
+  const PatchPlane plane{&value, kSd};
+  PatchSettings s = settings(4, 1);
+  const PatchMixture white = learn_patch_mixture({&plane, 1}, s, kKey, Pool(1));
+  s.noise_correlation = moving_average_model(kAverage, 2);
+  const PatchMixture m = learn_patch_mixture({&plane, 1}, s, kKey, Pool(1));
+  CHECK(m.components[0].mean[5] == Approx(100.0).margin(4.0 * 20.0 * 5.0 / 192.0));
+  double neighbours = 0.0, neighbours_white = 0.0;
+  for (int i = 0; i < 16; ++i) {
+    for (int j = 0; j < 16; ++j) {
+      const auto at = static_cast<std::size_t>(i * 16 + j);
+      const double got = m.components[0].covariance[at];
+      REQUIRE(std::abs(got - smooth_covariance(4, 20.0, i % 4 - j % 4, i / 4 - j / 4)) <
+              0.24 * 400.0);
+      if (i / 4 != j / 4 || j % 4 != i % 4 + 1) continue;
+      neighbours += got / 12.0;
+      neighbours_white += white.components[0].covariance[at] / 12.0;
+    }
+  }
+  const double left = kSd * kSd * moving_average_rho(kAverage, 1, 0);
+  const double expected = smooth_covariance(4, 20.0, 1, 0);
+  CHECK(neighbours == Approx(expected).margin(0.12 * 400.0));
+  CHECK(neighbours_white > expected + 0.5 * left);
 }
 
 TEST_CASE("planes of different noise agree on one clean covariance") {

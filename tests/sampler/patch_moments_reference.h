@@ -1,4 +1,5 @@
-// The mixture posterior of one patch in double precision, label by label, with Eigen.
+// The mixture posterior of one patch in double precision, label by label, with Eigen, given the
+// covariance of its noise.
 #ifndef STILLFIELD_TESTS_SAMPLER_PATCH_MOMENTS_REFERENCE_H_
 #define STILLFIELD_TESTS_SAMPLER_PATCH_MOMENTS_REFERENCE_H_
 
@@ -6,6 +7,7 @@
 #include <cmath>
 #include <vector>
 
+#include "model/correlated_noise.h"
 #include "model/patch_mixture.h"
 
 namespace stillfield::testing {
@@ -15,17 +17,16 @@ struct PatchPosterior {
   Eigen::VectorXd mean, variance;
 };
 
-inline PatchPosterior patch_posterior(const PatchMixture& mixture, double noise_sd,
+inline PatchPosterior patch_posterior(const PatchMixture& mixture, const Eigen::MatrixXd& noise,
                                       const Eigen::VectorXd& y) {
   const int d = mixture.elements();
-  const Eigen::MatrixXd identity = Eigen::MatrixXd::Identity(d, d);
   std::vector<double> log_share;
   std::vector<Eigen::VectorXd> mean, variance;
   double most = -1e300;
   for (const PatchComponent& c : mixture.components) {
     const Eigen::Map<const Eigen::MatrixXd> covariance(c.covariance.data(), d, d);
     const Eigen::Map<const Eigen::VectorXd> centre(c.mean.data(), d);
-    const Eigen::MatrixXd total = covariance + noise_sd * noise_sd * identity;
+    const Eigen::MatrixXd total = covariance + noise;
     const Eigen::MatrixXd inverse = total.inverse();
     const Eigen::VectorXd off = y - centre;
     log_share.push_back(std::log(c.weight) - 0.5 * std::log(total.determinant()) -
@@ -50,6 +51,17 @@ inline PatchPosterior patch_posterior(const PatchMixture& mixture, double noise_
     out.variance += out.share[k] * (variance[k] + off.cwiseProduct(off));
   }
   return out;
+}
+
+// Covariance of the noise of a patch: white, or a moving average with a reach of 1.
+inline Eigen::MatrixXd noise_covariance(int side, double sd, double average) {
+  Eigen::MatrixXd c(side * side, side * side);
+  for (int i = 0; i < side * side; ++i) {
+    for (int j = 0; j < side * side; ++j) {
+      c(i, j) = sd * sd * moving_average_rho(average, i % side - j % side, i / side - j / side);
+    }
+  }
+  return c;
 }
 
 // A mixture of three smooth components around `level`.

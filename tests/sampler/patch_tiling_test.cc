@@ -2,6 +2,7 @@
 
 #include <catch2/catch.hpp>
 #include <cmath>
+#include <utility>
 #include <vector>
 
 #include "random/stream.h"
@@ -37,6 +38,15 @@ Eigen::VectorXd patch_at(const Volume<float>& v, int side, int x, int y) {
   return out;
 }
 
+// Tables for noise of a moving average; 0: white.
+PatchTables tables_of(const PatchMixture& mixture, double noise_sd, double centre, double average) {
+  if (average == 0.0) {
+    return make_patch_tables(mixture, noise_sd, centre, TableParts::kAll, Pool(1));
+  }
+  const PatchNoise noise = patch_noise(moving_average_model(average, 2), mixture.side);
+  return make_patch_tables(mixture, noise_sd, centre, TableParts::kAll, Pool(1), &noise);
+}
+
 }  // namespace
 
 TEST_CASE("grids cover every pixel once or more and stay inside") {
@@ -61,10 +71,10 @@ TEST_CASE("grids cover every pixel once or more and stay inside") {
 
 TEST_CASE("label probabilities of a patch agree with enumeration") {
   constexpr double kNoise = 6.0;
-  for (const int side : {4, 6}) {
+  for (const auto& [side, average] : {std::pair(4, 0.0), {6, 0.0}, {4, 0.8}, {6, 0.8}}) {
     const PatchMixture mixture = smooth_mixture(side, 100.0);
-    const PatchTables tables =
-        make_patch_tables(mixture, kNoise, 100.0, TableParts::kDensityOnly, Pool(1));
+    const PatchTables tables = tables_of(mixture, kNoise, 100.0, average);
+    const Eigen::MatrixXd noise = noise_covariance(side, kNoise, average);
     const Volume<float> value = noisy_field(24, 24, 1);
     std::vector<PatchPosition> where;
     for (int i = 0; i < 40; ++i) where.push_back({i % 17, (i * 5) % 17});
@@ -73,10 +83,10 @@ TEST_CASE("label probabilities of a patch agree with enumeration") {
     for (int i = 0; i < 40; ++i) {
       const PatchPosition at = where[static_cast<std::size_t>(i)];
       const Eigen::VectorXd y = (kNoise * patch_at(value, side, at.x, at.y)).array() + 100.0;
-      const PatchPosterior expected = patch_posterior(mixture, kNoise, y);
+      const PatchPosterior expected = patch_posterior(mixture, noise, y);
       double sum = 0.0;
       for (int k = 0; k < 3; ++k) {
-        CAPTURE(side, i, k);
+        CAPTURE(mixture.side, i, k);
         const double share = expected.share[static_cast<std::size_t>(k)];
         CHECK(double{labeller.probability(k, i)} == Approx(share).margin(2e-4));
         if (share > 0.01) CHECK(labeller.label(i, sum + 0.5 * share) == k);
@@ -88,9 +98,10 @@ TEST_CASE("label probabilities of a patch agree with enumeration") {
 
 TEST_CASE("a tiling's pooled moments agree with the closed form of each of its patches") {
   constexpr double kNoise = 6.0;
-  for (const int side : {4, 6}) {
+  for (const auto& [side, average] : {std::pair(4, 0.0), {6, 0.0}, {4, 0.8}, {6, 0.8}}) {
     const PatchMixture mixture = smooth_mixture(side, 100.0);
-    const PatchTables tables = make_patch_tables(mixture, kNoise, 100.0, TableParts::kAll, Pool(1));
+    const PatchTables tables = tables_of(mixture, kNoise, 100.0, average);
+    const Eigen::MatrixXd noise = noise_covariance(side, kNoise, average);
     const Volume<float> value = noisy_field(29, 22, 2);
     for (std::uint32_t sweep = 0; sweep < 3; ++sweep) {
       PatchSums sums(value);
@@ -103,7 +114,7 @@ TEST_CASE("a tiling's pooled moments agree with the closed form of each of its p
       for (const int y0 : covering_positions(22, side, side, dy)) {
         for (const int x0 : covering_positions(29, side, side, dx)) {
           const Eigen::VectorXd y = (kNoise * patch_at(value, side, x0, y0)).array() + 100.0;
-          const PatchPosterior p = patch_posterior(mixture, kNoise, y);
+          const PatchPosterior p = patch_posterior(mixture, noise, y);
           for (int i = 0; i < side * side; ++i) {
             const int x = x0 + i % side, row = y0 + i / side;
             weight(x, row) += 1.0 / p.variance[i];
@@ -129,19 +140,20 @@ TEST_CASE("a tiling's pooled moments agree with the closed form of each of its p
 }
 
 TEST_CASE("deviations drawn on tilings have the conditional covariance") {
-  // One component: the deviations of a patch have correlation matrix corr(G), so a product of two
-  // has a variance of at most 2; asserted 5 standard errors (16 x 17 / 2 entries: false alarm
-  // below 1e-4).
+  // One component: the deviations of a patch have the correlation matrix of the posterior, so a
+  // product of two has a variance of at most 2; asserted 5 standard errors (16 x 17 / 2 entries:
+  // false alarm below 1e-4).
   constexpr int kSide = 4;
   PatchMixture mixture = smooth_mixture(kSide, 0.0);
   mixture.components.resize(1);
   mixture.components[0].weight = 1.0;
-  const PatchTables tables = make_patch_tables(mixture, 3.0, 0.0, TableParts::kAll, Pool(1));
+  const double average = GENERATE(0.0, 0.8);
+  const PatchTables tables = tables_of(mixture, 3.0, 0.0, average);
   const Volume<float> value = noisy_field(16, 16, 3);
   const Eigen::Map<const Eigen::MatrixXd> covariance(mixture.components[0].covariance.data(), 16,
                                                      16);
-  const Eigen::MatrixXd gain =
-      covariance * (covariance + 9.0 * Eigen::MatrixXd::Identity(16, 16)).inverse();
+  const Eigen::MatrixXd total = covariance + noise_covariance(kSide, 3.0, average);
+  const Eigen::MatrixXd posterior = covariance - covariance * total.inverse() * covariance;
   Eigen::MatrixXd sum = Eigen::MatrixXd::Zero(16, 16);
   int patches = 0;
   const Pool pool(1);
@@ -165,7 +177,7 @@ TEST_CASE("deviations drawn on tilings have the conditional covariance") {
   const double tolerance = 5.0 * std::sqrt(2.0 / patches);
   for (int i = 0; i < 16; ++i) {
     for (int j = 0; j <= i; ++j) {
-      const double correlation = gain(i, j) / std::sqrt(gain(i, i) * gain(j, j));
+      const double correlation = posterior(i, j) / std::sqrt(posterior(i, i) * posterior(j, j));
       REQUIRE(std::abs(sum(i, j) / patches - correlation) < tolerance);
     }
   }

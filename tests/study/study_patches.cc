@@ -1,8 +1,10 @@
-// Restoration of clean images with added white noise of known level by the patch field.
+// Restoration of clean images with added noise of known level by the patch field.
 //
 // usage: study_patches [OPTIONS] SIGMA CLEAN.tif ...
 //   --seed N (1)  --patch P  --components K  --tilings N  --passes N  --group M  --quick
 //   --threads N (2)  --repeat R: image repeated R x R by mirroring, for timing
+//   --blur S: white noise convolved with a Gaussian of deviation S and scaled to SIGMA
+//   --correlation none|true|estimate (none): the field's model of the noise
 //   --write DIR: noisy and restored images as float TIFF
 // Prints one Markdown table row an image and one of means: PSNR (range 255), coverage of mean +-
 // 1.645 sd for the clean value, over all pixels and over the tenth with the largest gradient of
@@ -18,6 +20,7 @@
 #include <string>
 #include <vector>
 
+#include "diagnose/residual_correlation.h"
 #include "image/read.h"
 #include "image/write.h"
 #include "random/stream.h"
@@ -32,6 +35,8 @@ struct Options {
   std::uint64_t seed = 1;
   int threads = 2;
   int repeat = 1;
+  double blur = 0.0;
+  std::string correlation = "none";
   std::string folder;
   PatchSettings settings;
   std::vector<std::string> files;
@@ -61,6 +66,10 @@ Options parse(int argc, char** argv) {
       o.threads = number();
     } else if (a == "--repeat") {
       o.repeat = number();
+    } else if (a == "--blur") {
+      o.blur = std::atof(argv[++i]);
+    } else if (a == "--correlation") {
+      o.correlation = argv[++i];
     } else if (a == "--write") {
       o.folder = argv[++i];
     } else if (!have_sigma) {
@@ -82,6 +91,82 @@ Volume<float> mirrored(const Volume<float>& v, int repeat) {
     }
   }
   return out;
+}
+
+// Weights of the blur along one axis, from -kBlurReach; their squares sum to 1, so that blurred
+// white noise keeps its deviation.
+constexpr int kBlurReach = 5;
+std::vector<double> blur_weights(double blur) {
+  std::vector<double> w;
+  double squares = 0.0;
+  for (int i = -kBlurReach; i <= kBlurReach; ++i) {
+    const double at = blur > 0.0 ? std::exp(-0.5 * i * i / (blur * blur)) : i == 0;
+    w.push_back(at);
+    squares += at * at;
+  }
+  for (double& at : w) at /= std::sqrt(squares);
+  return w;
+}
+
+Volume<float> unit_noise(Extent e, double blur, RandomStream& random) {
+  const std::vector<double> w = blur_weights(blur);
+  const int wide = e.width + 2 * kBlurReach, high = e.height + 2 * kBlurReach;
+  std::vector<double> white(static_cast<std::size_t>(wide) * static_cast<std::size_t>(high));
+  const auto at = [&](int x, int y) -> double& {
+    return white[static_cast<std::size_t>(y * wide + x)];
+  };
+  if (blur > 0.0) {
+    for (double& v : white) v = random.normal();
+  } else {
+    for (int y = 0; y < e.height; ++y) {
+      for (int x = 0; x < e.width; ++x) at(x + kBlurReach, y + kBlurReach) = random.normal();
+    }
+  }
+  Volume<float> out(e);
+  for (int y = 0; y < e.height; ++y) {
+    for (int x = 0; x < e.width; ++x) {
+      double sum = 0.0;
+      for (int v = 0; v <= 2 * kBlurReach; ++v) {
+        const double row = w[static_cast<std::size_t>(v)];
+        if (row == 0.0) continue;
+        for (int u = 0; u <= 2 * kBlurReach; ++u) {
+          sum += row * w[static_cast<std::size_t>(u)] * at(x + u, y + v);
+        }
+      }
+      out.at(x, y) = static_cast<float>(sum);
+    }
+  }
+  return out;
+}
+
+NoiseCorrelationModel noise_model(const Options& o, const Volume<float>& noisy) {
+  constexpr int kReach = 2;
+  NoiseCorrelationModel model;
+  if (o.correlation == "none") return model;
+  model.reach = kReach;
+  if (o.correlation == "estimate") {
+    Volume<std::uint8_t> usable(noisy.extent());
+    for (int y = 0; y < noisy.height(); ++y) std::fill_n(usable.row(y), noisy.width(), 1);
+    const NoiseCorrelation found = noise_correlation(noisy.view(), usable.view(), kReach);
+    if (!found.correlated) return {};
+    model.rho = found.rho;
+    return model;
+  }
+  const std::vector<double> w = blur_weights(o.blur);
+  const auto lag = [&](int by) {
+    double sum = 0.0;
+    for (std::size_t i = 0; i + static_cast<std::size_t>(by) < w.size(); ++i) {
+      sum += w[i] * w[i + static_cast<std::size_t>(by)];
+    }
+    return sum;
+  };
+  for (int dy = -kReach; dy <= kReach; ++dy) {
+    for (int dx = -kReach; dx <= kReach; ++dx) {
+      const bool centre = dx == 0 && dy == 0;
+      model.rho.push_back(centre ? 1.0 : lag(std::abs(dx)) * lag(std::abs(dy)));
+    }
+  }
+  return model;
 }
 
 struct Score {
@@ -150,16 +235,19 @@ int main(int argc, char** argv) {
   for (const std::string& file : o.files) {
     const Volume<float> clean = mirrored(read_page(file).pixels, o.repeat);
     Volume<float> noisy(clean.extent());
-    RandomStream noise({static_cast<std::uint32_t>(o.seed), 0}, Purpose::kSimulation);
+    RandomStream random({static_cast<std::uint32_t>(o.seed), 0}, Purpose::kSimulation);
+    const Volume<float> noise = unit_noise(clean.extent(), o.blur, random);
     for (int y = 0; y < clean.height(); ++y) {
       for (int x = 0; x < clean.width(); ++x) {
-        noisy.at(x, y) = static_cast<float>(clean.at(x, y) + o.sigma * noise.normal());
+        noisy.at(x, y) = static_cast<float>(clean.at(x, y) + o.sigma * double{noise.at(x, y)});
       }
     }
     const auto start = std::chrono::steady_clock::now();
     const std::clock_t cpu_start = std::clock();
-    const PatchResult result = restore_patches(noisy, o.sigma, o.settings, chain_key(o.seed, 0),
-                                               pool, nullptr, nullptr, nullptr);
+    PatchSettings settings = o.settings;
+    settings.noise_correlation = noise_model(o, noisy);
+    const PatchResult result = restore_patches(noisy, o.sigma, settings, chain_key(o.seed, 0), pool,
+                                               nullptr, nullptr, nullptr);
     Score s;
     s.seconds = std::chrono::duration<double>(std::chrono::steady_clock::now() - start).count();
     s.cpu_seconds = static_cast<double>(std::clock() - cpu_start) / CLOCKS_PER_SEC;
