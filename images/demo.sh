@@ -23,8 +23,8 @@ segment cast-iron 3      # graphite, pearlite, ferrite
 segment yeast 2          # background, cells
 segment delivery-notes 2 # ink, paper
 
-printf '\nyeast: restored, photon and read noise estimated\n'
-build/release/src/cli/stillfield denoise images/yeast --noise photon --out "$results/yeast-restored" \
+printf '\nyeast: restored, with the gain, read noise and offset of its camera\n'
+build/release/src/cli/stillfield denoise images/yeast --noise photon:4,64,100 --out "$results/yeast-restored" \
   </dev/null
 
 printf '\nResults are in %s\n' "$results"
