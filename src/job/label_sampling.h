@@ -2,6 +2,7 @@
 #ifndef STILLFIELD_JOB_LABEL_SAMPLING_H_
 #define STILLFIELD_JOB_LABEL_SAMPLING_H_
 
+#include <limits>
 #include <memory>
 #include <string>
 #include <vector>
@@ -11,16 +12,28 @@
 #include "model/grey_levels.h"
 #include "posterior/label_counts.h"
 #include "posterior/traces.h"
+#include "sampler/blurred_field.h"
 #include "sampler/coupling_search.h"
 #include "sampler/sweep.h"
 
 namespace stillfield {
+
+// The optics' blur in pixels; NaN when it was not asked for.
+struct BlurFacts {
+  double value = std::numeric_limits<double>::quiet_NaN();
+  double lower90 = std::numeric_limits<double>::quiet_NaN();
+  double upper90 = std::numeric_limits<double>::quiet_NaN();
+  bool estimated = false;
+  bool modelled = false;  // the labels were sampled with it
+};
 
 struct LabelSampling {
   std::unique_ptr<Colouring> colouring;        // the others refer to it
   std::unique_ptr<LogPartitionMemo> own_memo;  // unless the run has one
   LabelProblem problem;
   std::vector<LabelChain> chains;  // where they stopped (label_draws.h goes on)
+  std::vector<BlurredField> blurred;  // one a chain when blur is modelled, else empty
+  BlurFacts blur;
   std::unique_ptr<LabelCounts> counts;
   std::unique_ptr<Traces> traces;
   LabelPrior prior;  // of the last block; fixed while sampling unless sampled

@@ -15,12 +15,20 @@
 
 namespace stillfield {
 
+// The optics' blur: estimated, left out, or given in pixels (standard deviation).
+enum class BlurMode { kAuto, kNone, kGiven };
+struct BlurSettings {
+  BlurMode mode = BlurMode::kNone;
+  double value = 0.0;  // for kGiven
+};
+
 // Settings that change results; all of them stand in the record.
 struct SegmentSettings {
   int classes = 2;  // 2..64
   Connectivity connectivity = Connectivity::kFour;
   CouplingSettings coupling;
   bool shared_variance = false;
+  BlurSettings blur;
   int chains = 4;  // 2..16
   std::uint64_t seed = 1;
   ScheduleSettings schedule;

@@ -42,7 +42,8 @@ enum class Purpose : std::uint32_t {
   kRedraw = 10,     // values redrawn between sweeps: missing pixels, impulses, unequal noise
   kRecheck = 11,    // noise of the recalibration runs
   // Labels seen through blur, one word a pixel: c0 = x >> 2, c1 = y (sampler/blurred_sweep.h).
-  kBlurredLabels = 12
+  kBlurredLabels = 12,
+  kBlur = 13  // proposals of the blur
 };
 
 inline constexpr std::uint32_t kMaxSlices = 1u << 24;

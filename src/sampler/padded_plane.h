@@ -20,6 +20,10 @@ class PaddedPlane {
 
   const Extent& extent() const { return extent_; }
   T* row(int y) { return whole_.row(y + kMargin) + kMargin; }
+  // The image without its margin.
+  View<const T> view() const {
+    return {row(0), extent_, extent_.height > 1 ? row(1) - row(0) : 0};
+  }
   const T* row(int y) const { return whole_.row(y + kMargin) + kMargin; }
 
  private:
