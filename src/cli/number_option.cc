@@ -2,6 +2,8 @@
 
 #include <charconv>
 
+#include "model/blur.h"
+
 namespace stillfield {
 namespace {
 
@@ -38,6 +40,13 @@ std::string check_coupling(const std::string& text) {
   const auto value = parse_number(text);
   if (value && *value >= 0 && *value <= kLargestCoupling) return {};
   return "must be auto, sampled or a number from 0 to 5, not '" + text + "'";
+}
+
+std::string check_blur(const std::string& text) {
+  if (text == "auto" || text == "none") return {};
+  const auto value = parse_number(text);
+  if (value && *value >= kSmallestBlur && *value <= kLargestBlur) return {};
+  return "must be auto, none or a number of pixels from 0.2 to 3, not '" + text + "'";
 }
 
 }  // namespace stillfield

@@ -23,6 +23,9 @@ std::function<std::string(const std::string&)> whole_number(std::uint64_t lowest
 inline constexpr double kLargestCoupling = 5;
 std::string check_coupling(const std::string& text);
 
+// auto, none or a number of pixels from 0.2 to 3.
+std::string check_blur(const std::string& text);
+
 }  // namespace stillfield
 
 #endif  // STILLFIELD_CLI_NUMBER_OPTION_H_

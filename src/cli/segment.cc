@@ -33,6 +33,7 @@ struct SegmentOptions : CommonOptions {
   std::string neighbours = "4";
   std::string coupling = "auto";
   std::string variance = "own";
+  std::string blur = "none";
   bool quick = false;
   SegmentSettings settings;
 };
@@ -43,10 +44,17 @@ CouplingSettings coupling_settings(const std::string& text) {
   return {CouplingMode::kFixed, parse_number(text).value()};
 }
 
+BlurSettings blur_settings(const std::string& text) {
+  if (text == "auto") return {BlurMode::kAuto, 0};
+  if (text == "none") return {BlurMode::kNone, 0};
+  return {BlurMode::kGiven, parse_number(text).value()};
+}
+
 int run_segment(SegmentOptions& options) {
   SegmentSettings& settings = options.settings;
   settings.connectivity = options.neighbours == "8" ? Connectivity::kEight : Connectivity::kFour;
   settings.coupling = coupling_settings(options.coupling);
+  settings.blur = blur_settings(options.blur);
   settings.shared_variance = options.variance == "shared";
   if (options.quick) settings.target = kQuickTarget;
   begin_run(options);
@@ -71,6 +79,12 @@ void add_model_options(CLI::App& app, SegmentOptions& options) {
       ->type_name("auto|sampled|VALUE")
       ->capture_default_str();
   add_choice(app, "--variance", options.variance, {"own", "shared"}, "Noise variance of classes");
+  app.add_option("--blur", options.blur,
+                 "The optics' blur, so that no class lines the border of two others: estimated, "
+                 "left out, or its standard deviation")
+      ->check(CLI::Validator(check_blur, "", ""))
+      ->type_name("auto|none|PIXELS")
+      ->capture_default_str();
 }
 
 void add_sampling_options(CLI::App& app, SegmentOptions& options) {

@@ -2,7 +2,6 @@
 #ifndef STILLFIELD_JOB_LABEL_SAMPLING_H_
 #define STILLFIELD_JOB_LABEL_SAMPLING_H_
 
-#include <limits>
 #include <memory>
 #include <string>
 #include <vector>
@@ -12,20 +11,12 @@
 #include "model/grey_levels.h"
 #include "posterior/label_counts.h"
 #include "posterior/traces.h"
+#include "report/blur_facts.h"
 #include "sampler/blurred_field.h"
 #include "sampler/coupling_search.h"
 #include "sampler/sweep.h"
 
 namespace stillfield {
-
-// The optics' blur in pixels; NaN when it was not asked for.
-struct BlurFacts {
-  double value = std::numeric_limits<double>::quiet_NaN();
-  double lower90 = std::numeric_limits<double>::quiet_NaN();
-  double upper90 = std::numeric_limits<double>::quiet_NaN();
-  bool estimated = false;
-  bool modelled = false;  // the labels were sampled with it
-};
 
 struct LabelSampling {
   std::unique_ptr<Colouring> colouring;        // the others refer to it

@@ -16,9 +16,9 @@ namespace {
 constexpr double kNoBlur = 0.4;
 constexpr double kSmallestStart = 0.5;  // of the drawn blur
 constexpr int kSettlingBlocks = 80;
-constexpr int kSettlingSweeps = 2;      // a block
-constexpr int kSampledPixels = 16384;   // for the class field, a block over all chains
-constexpr double kGainPower = 0.7;      // as sampler/coupling.cc
+constexpr int kSettlingSweeps = 2;     // a block
+constexpr int kSampledPixels = 16384;  // for the class field, a block over all chains
+constexpr double kGainPower = 0.7;     // as sampler/coupling.cc
 // A blurred sweep costs tens of plain ones: the limit of sweeps is lower.
 constexpr int kMaxSweeps = 1500;
 
@@ -76,9 +76,9 @@ void restore_blurred(const SegmentSettings& settings, const Pool& pool, JobObser
   }
 
   const auto chains = static_cast<int>(run.chains.size());
-  const BlurKernel start = make_blur_kernel(std::max(run.blur.value, estimated ? kSmallestStart : kSmallestBlur));
+  const BlurKernel start =
+      make_blur_kernel(std::max(run.blur.value, estimated ? kSmallestStart : kSmallestBlur));
   std::vector<BlurredField> fields;
-  std::vector<LabelChain> plain_chains;
   for (int c = 0; c < chains; ++c) {
     LabelChain& chain = run.chains[static_cast<std::size_t>(c)];
     if (c % 2 == 0) absorb_thin(grey, *run.colouring, chain);

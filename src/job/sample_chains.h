@@ -23,8 +23,7 @@ void advance_block(const AdvanceChains& advance, Schedule& schedule, JobObserver
 // From the schedule's present stage, which is past adapting, to its end. `run` comes with chains
 // and empty traces and counts, and gets scalars, qualities, verdict and sweeps.
 void sample_chains(const SegmentSettings& settings, const AdvanceChains& advance,
-                   Schedule& schedule, const Pool& pool, JobObserver& observer,
-                   LabelSampling& run);
+                   Schedule& schedule, const Pool& pool, JobObserver& observer, LabelSampling& run);
 
 }  // namespace stillfield
 

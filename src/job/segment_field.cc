@@ -7,6 +7,7 @@
 #include "job/field_frame.h"
 #include "job/field_record.h"
 #include "job/output_folder.h"
+#include "job/restore_blurred.h"
 #include "job/restore_one.h"
 #include "report/class_colours.h"
 #include "simd/target.h"
@@ -89,7 +90,8 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& settings, cons
   describe_grey(grey, record);
   record.run = {active_cpu_target(), pool.threads(), watch.lap(), 0, 0};
 
-  const LabelSampling sampling = restore_one(grey, settings, seed, pool, observer, &memo);
+  LabelSampling sampling = restore_one(grey, settings, seed, pool, observer, &memo);
+  restore_blurred(settings, pool, observer, sampling);
   describe_sampling(sampling, settings, record);
   record.run.sample_seconds = watch.lap();
 

@@ -15,6 +15,18 @@ std::string coupling_name(CouplingMode mode) {
   return {};
 }
 
+std::string blur_name(BlurMode mode) {
+  switch (mode) {
+    case BlurMode::kAuto:
+      return "auto";
+    case BlurMode::kNone:
+      return "none";
+    case BlurMode::kGiven:
+      return "given";
+  }
+  return {};
+}
+
 std::uint64_t whole(int value) {
   return static_cast<std::uint64_t>(value);
 }
@@ -28,6 +40,8 @@ std::vector<NamedValue> named_settings(const SegmentSettings& settings) {
   if (settings.coupling.mode == CouplingMode::kFixed) {
     list.push_back({"coupling_value", settings.coupling.value});
   }
+  list.push_back({"blur", blur_name(settings.blur.mode)});
+  if (settings.blur.mode == BlurMode::kGiven) list.push_back({"blur_value", settings.blur.value});
   const std::vector<NamedValue> rest = {
       {"variance", std::string(settings.shared_variance ? "shared" : "own")},
       {"chains", whole(settings.chains)},

@@ -87,6 +87,15 @@ void describe(Archive& archive, ModelFacts& model) {
 }
 
 template <class Archive>
+void describe(Archive& archive, BlurFacts& blur) {
+  archive("sd_px", blur.value);
+  archive("lower90", blur.lower90);
+  archive("upper90", blur.upper90);
+  archive("estimated", blur.estimated);
+  archive("modelled", blur.modelled);
+}
+
+template <class Archive>
 void describe(Archive& archive, CouplingTried& tried) {
   archive("beta", tried.beta);
   archive("score", tried.score);
@@ -202,6 +211,7 @@ void describe(Archive& archive, ImageRecord& record) {
   } else {
     archive("grey_levels", record.grey);
     archive("model", record.model);
+    archive("blur", record.blur);
     archive("coupling_tried", record.coupling_tried);
     archive("schedule", record.schedule);
     archive("scalars", record.scalars);

@@ -13,6 +13,7 @@
 
 #include "diagnose/verdict.h"
 #include "measure/measurement.h"
+#include "report/blur_facts.h"
 #include "report/named_value.h"
 #include "report/restoration_facts.h"
 
@@ -112,6 +113,7 @@ struct ImageRecord {
   std::vector<NamedValue> settings;
   std::string image_seed;  // hexadecimal: JSON readers may round 64-bit integers
   ModelFacts model;
+  BlurFacts blur;
   std::vector<CouplingTried> coupling_tried;
   ScheduleFacts schedule;
   std::vector<NamedSummary> scalars;

@@ -53,9 +53,8 @@ void advance_blurred_chain(const LabelProblem& problem, int sweeps, const Pool& 
   RandomStream random(chain.key, Purpose::kParameters, chain.sweeps_done);
   draw_blurred_classes(problem.prior, random, field, chain.model.classes);
   if (problem.log_partition) {
-    chain.model.prior.beta =
-        draw_coupling(*problem.log_partition,
-                      chain.totals.weighted_pairs(colouring.neighbourhood()), random);
+    chain.model.prior.beta = draw_coupling(
+        *problem.log_partition, chain.totals.weighted_pairs(colouring.neighbourhood()), random);
   }
   refresh_blurred_field(level_classes(*field.grey, chain.model.classes), field);
 }

@@ -19,6 +19,14 @@ TEST_CASE("seeds use all 64 bits") {
   CHECK_FALSE(parse_whole("18446744073709551616"));
 }
 
+TEST_CASE("a blur is auto, none or a number in range") {
+  for (const char* good : {"auto", "none", "0.2", "0.85", "3"}) CHECK(check_blur(good).empty());
+  for (const char* bad : {"", "None", "0", "-1", "3.01", "nan", "inf", "1px"}) {
+    CAPTURE(bad);
+    CHECK_FALSE(check_blur(bad).empty());
+  }
+}
+
 TEST_CASE("a coupling is auto, sampled or a number in range") {
   for (const char* good : {"auto", "sampled", "0", "0.85", "5", "1e-3"}) {
     CHECK(check_coupling(good).empty());
