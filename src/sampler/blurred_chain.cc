@@ -1,5 +1,7 @@
 #include "sampler/blurred_chain.h"
 
+#include <iterator>
+
 #include "core/elementary.h"
 #include "sampler/blurred_classes.h"
 #include "sampler/blurred_sweep.h"
@@ -61,23 +63,14 @@ void advance_blurred_chain(const LabelProblem& problem, int sweeps, const Pool& 
 
 void draw_blur(const LabelProblem& problem, BlurredField& field, const LabelChain& chain) {
   RandomStream random(chain.key, Purpose::kBlur, chain.sweeps_done);
+  const double scale = kProposals[chain.sweeps_done % std::size(kProposals)];
+  const double proposed = field.kernel.sd + scale * random.normal();
+  if (proposed < kSmallestBlur || proposed > kLargestBlur) return;
+  const BlurKernel kernel = make_blur_kernel(proposed);
   const LevelClasses classes = level_classes(*problem.field.grey, chain.model.classes);
-  double current = log_likelihood(classes, field);
-  for (const double scale : kProposals) {
-    const BlurKernel old = field.kernel;
-    const double proposed = old.sd + scale * random.normal();
-    const double u = random.uniform();
-    if (proposed < kSmallestBlur || proposed > kLargestBlur) continue;
-    set_blur(make_blur_kernel(proposed), {}, field);
-    refresh_residual(classes, field);
-    const double there = log_likelihood(classes, field);
-    if (exact_log(u) < there - current) {
-      current = there;
-    } else {
-      set_blur(old, {}, field);
-      refresh_residual(classes, field);
-    }
-  }
+  const double gain = log_likelihood_under(kernel, classes, field) - log_likelihood(classes, field);
+  if (exact_log(random.uniform()) >= gain) return;
+  set_blur(kernel, {}, field);
   refresh_blurred_field(classes, field);
 }
 

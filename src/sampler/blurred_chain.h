@@ -20,9 +20,9 @@ BlurredField open_blurred_chain(const LabelProblem& problem, const BlurKernel& k
 void advance_blurred_chain(const LabelProblem& problem, int sweeps, const Pool& pool,
                            BlurredField& field, LabelChain& chain);
 
-// One Metropolis draw of the blur given labels and classes, under a flat prior over
-// [kSmallestBlur, kLargestBlur]: normal proposals of three scales. The field gets the new kernel
-// and is refreshed.
+// One Metropolis step of the blur given labels and classes, under a flat prior over
+// [kSmallestBlur, kLargestBlur]; normal proposals of three scales in turn, by the chain's sweep.
+// The field must be fresh; on acceptance it gets the new kernel and is refreshed.
 void draw_blur(const LabelProblem& problem, BlurredField& field, const LabelChain& chain);
 
 }  // namespace stillfield

@@ -52,6 +52,28 @@ std::vector<float> as_floats(const std::vector<double>& v) {
   return {v.begin(), v.end()};
 }
 
+// ln p(y | z) of one row, up to a constant.
+class LogDensity {
+ public:
+  explicit LogDensity(const LevelClasses& classes) : precision_(classes.precision) {
+    for (const double p : precision_) log_scale_.push_back(0.5 * exact_log(p));
+  }
+  double row(const BlurredField& field, int y, const float* relative, const float* residual) const {
+    const std::uint8_t* label = field.labels.row(y);
+    double sum = 0.0;
+    for (int x = 0; x < field.labels.extent().width; ++x) {
+      if (relative[x] == 0.0F) continue;
+      const double r = static_cast<double>(residual[x]);
+      sum += log_scale_[label[x]] -
+             0.5 * static_cast<double>(relative[x]) * precision_[label[x]] * r * r;
+    }
+    return sum;
+  }
+
+ private:
+  std::vector<double> precision_, log_scale_;
+};
+
 std::vector<float> squares(const std::vector<double>& v) {
   std::vector<float> out;
   for (const double h : v) out.push_back(static_cast<float>(h * h));
@@ -160,23 +182,42 @@ void refresh_blurred_field(const LevelClasses& classes, BlurredField& field) {
 }
 
 double log_likelihood(const LevelClasses& classes, const BlurredField& field) {
-  const Extent e = field.labels.extent();
-  std::vector<double> log_scale;
-  for (const double p : classes.precision) log_scale.push_back(0.5 * exact_log(p));
+  const LogDensity density(classes);
   double total = 0.0;
-  for (int y = 0; y < e.height; ++y) {
-    const std::uint8_t* label = field.labels.row(y);
-    const float* relative = field.relative.row(y);
-    const float* residual = field.residual.row(y);
-    double sum = 0.0;
-    for (int x = 0; x < e.width; ++x) {
-      if (relative[x] == 0.0F) continue;
-      const double r = static_cast<double>(residual[x]);
-      sum += log_scale[label[x]] -
-             0.5 * static_cast<double>(relative[x]) * classes.precision[label[x]] * r * r;
-    }
-    total += sum;
+  for (int y = 0; y < field.labels.extent().height; ++y) {
+    total += density.row(field, y, field.relative.row(y), field.residual.row(y));
   }
+  return total;
+}
+
+double log_likelihood_under(const BlurKernel& kernel, const LevelClasses& classes,
+                            const BlurredField& field) {
+  const Extent e = field.labels.extent();
+  const LogDensity density(classes);
+  const std::vector<float> mean = as_floats(classes.mean);
+  const std::vector<double> nx = kernel.inside(e.width), ny = kernel.inside(e.height);
+  const std::vector<double> old_x = field.kernel.inside(e.width);
+  const std::vector<double> old_y = field.kernel.inside(e.height);
+  const auto width = static_cast<std::size_t>(e.width);
+  std::vector<float> relative(width), residual(width);
+  double total = 0.0;
+  convolve(
+      e, kernel.radius, as_floats(kernel.value),
+      [&](int y, float* row) {
+        const std::uint8_t* label = field.labels.row(y);
+        for (int x = 0; x < e.width; ++x) row[x] = mean[label[x]];
+      },
+      [&](int y, const float* blurred) {
+        const std::uint16_t* level = field.grey->level.row(y);
+        const float* old = field.relative.row(y);
+        const auto v = static_cast<std::size_t>(y);
+        for (std::size_t x = 0; x < width; ++x) {
+          const double n = ny[v] * nx[x], ratio = old_y[v] * old_x[x] / n;
+          relative[x] = static_cast<float>(static_cast<double>(old[x]) * ratio * ratio);
+          residual[x] = static_cast<float>(n * level[x] - static_cast<double>(blurred[x]));
+        }
+        total += density.row(field, y, relative.data(), residual.data());
+      });
   return total;
 }
 

@@ -57,6 +57,10 @@ void refresh_blurred_field(const LevelClasses& classes, BlurredField& field);
 // residual plane. Row sums in row order.
 double log_likelihood(const LevelClasses& classes, const BlurredField& field);
 
+// The same under another kernel, which the field does not take over.
+double log_likelihood_under(const BlurKernel& kernel, const LevelClasses& classes,
+                            const BlurredField& field);
+
 }  // namespace stillfield
 
 #endif  // STILLFIELD_SAMPLER_BLURRED_FIELD_H_

@@ -4,12 +4,12 @@
 // usage: study_blur IMAGES BLUR SIGMA [--rim] [--two] [--area] [--given] [--side N]
 //   --two    classes 1 and 3 only        --area   brightness averaged over 5 x 5 points a pixel
 //   --given  tells the program the blur instead of letting it estimate
-// Prints Markdown rows, plain run then blur-aware run. Results: docs/trust.md.
-#include <chrono>
+// Prints Markdown rows, plain run then blur-aware run (CPU seconds, the plain run before it
+// included). Results: docs/trust.md.
 #include <cmath>
 #include <cstdio>
 #include <cstdlib>
-#include <cstring>
+#include <ctime>
 #include <string>
 #include <vector>
 
@@ -51,8 +51,8 @@ Scene make_scene(const Options& o, std::uint64_t seed) {
   std::vector<Disk> disks;
   const int count = 8 + static_cast<int>(random.uniform() * 10.0);
   for (int i = 0; i < count; ++i) {
-    disks.push_back({o.side * random.uniform(), o.side * random.uniform(),
-                     3.0 + 11.0 * random.uniform()});
+    disks.push_back(
+        {o.side * random.uniform(), o.side * random.uniform(), 3.0 + 11.0 * random.uniform()});
   }
   // Without rims class 2 has places of its own: a stripe at the left.
   const auto label = [&](double x, double y) {
@@ -63,30 +63,37 @@ Scene make_scene(const Options& o, std::uint64_t seed) {
   Scene scene{Volume<std::uint8_t>({o.side, o.side}), Volume<float>({o.side, o.side})};
   const int margin = 10, wide = o.side + 2 * margin, points = o.area ? 5 : 1;
   std::vector<double> clean(static_cast<std::size_t>(wide * wide)), rows(clean.size());
-  const auto at = [&](int x, int y) { return static_cast<std::size_t>((y + margin) * wide + x + margin); };
+  const auto at = [&](int x, int y) {
+    return static_cast<std::size_t>((y + margin) * wide + x + margin);
+  };
   for (int y = -margin; y < o.side + margin; ++y) {
     for (int x = -margin; x < o.side + margin; ++x) {
       for (int j = 0; j < points; ++j) {
         for (int i = 0; i < points; ++i) {
-          clean[at(x, y)] += step * label(x + (i + 0.5) / points, y + (j + 0.5) / points) / (points * points);
+          clean[at(x, y)] +=
+              step * label(x + (i + 0.5) / points, y + (j + 0.5) / points) / (points * points);
         }
       }
     }
   }
   std::vector<double> h(2 * margin + 1, 0.0);
   double total = 0.0;
-  for (int i = -margin; i <= margin; ++i) total += h[static_cast<std::size_t>(i + margin)] = o.blur > 0 ? std::exp(-0.5 * i * i / (o.blur * o.blur)) : (i == 0);
+  for (int i = -margin; i <= margin; ++i)
+    total += h[static_cast<std::size_t>(i + margin)] =
+        o.blur > 0 ? std::exp(-0.5 * i * i / (o.blur * o.blur)) : (i == 0);
   for (double& v : h) v /= total;
   for (int y = -margin; y < o.side + margin; ++y) {
     for (int x = 0; x < o.side; ++x) {
-      for (int i = -margin; i <= margin; ++i) rows[at(x, y)] += h[static_cast<std::size_t>(i + margin)] * clean[at(x + i, y)];
+      for (int i = -margin; i <= margin; ++i)
+        rows[at(x, y)] += h[static_cast<std::size_t>(i + margin)] * clean[at(x + i, y)];
     }
   }
   RandomStream noise(chain_key(seed, 1), Purpose::kSimulation, 1);
   for (int y = 0; y < o.side; ++y) {
     for (int x = 0; x < o.side; ++x) {
       double v = 0.0;
-      for (int i = -margin; i <= margin; ++i) v += h[static_cast<std::size_t>(i + margin)] * rows[at(x, y + i)];
+      for (int i = -margin; i <= margin; ++i)
+        v += h[static_cast<std::size_t>(i + margin)] * rows[at(x, y + i)];
       scene.image.at(x, y) = static_cast<float>(v + o.sigma * noise.normal());
       scene.truth.at(x, y) = static_cast<std::uint8_t>(label(x + 0.5, y + 0.5));
     }
@@ -113,7 +120,8 @@ struct Tally {
   int converged = 0;
 };
 
-void tally(const Options& o, const Scene& scene, const LabelSampling& run, double seconds, Tally& t) {
+void tally(const Options& o, const Scene& scene, const LabelSampling& run, double seconds,
+           Tally& t) {
   const Volume<std::uint8_t> labels = run.counts->most_probable();
   std::vector<double> fraction(3, 0.0);
   std::int64_t invented = 0, wrong = 0;
@@ -141,11 +149,13 @@ void tally(const Options& o, const Scene& scene, const LabelSampling& run, doubl
 
 void print(const Options& o, const char* name, const Tally& t, double b, double b_sd) {
   const double n = o.images;
-  std::printf("| %d%s%s | %.1f | %.2f | %s | %.3f ± %.3f | %.3f | %.4f |", o.classes, o.rim ? " rim" : "",
-              o.area ? " area" : "", o.blur, o.sigma, name, b / n, std::sqrt(std::max(0.0, b_sd / n - b * b / n / n)), t.invented / n, t.wrong / n);
+  std::printf("| %d%s%s | %.1f | %.2f | %s | %.3f ± %.3f | %.3f | %.4f |", o.classes,
+              o.rim ? " rim" : "", o.area ? " area" : "", o.blur, o.sigma, name, b / n,
+              std::sqrt(std::max(0.0, b_sd / n - b * b / n / n)), t.invented / n, t.wrong / n);
   for (int k = 0; k < o.classes; ++k) {
     const auto i = static_cast<std::size_t>(k);
-    std::printf(" %+.4f (%.4f, %.2f) |", t.bias[i] / n, std::sqrt(t.square[i] / n), t.covered[i] / n);
+    std::printf(" %+.4f (%.4f, %.2f) |", t.bias[i] / n, std::sqrt(t.square[i] / n),
+                t.covered[i] / n);
   }
   std::printf(" %d/%d | %.0f | %.2f |\n", t.converged, o.images, t.sweeps / n, t.seconds / n);
   std::fflush(stdout);
@@ -158,14 +168,22 @@ int main(int argc, char** argv) {
   int place = 0;
   for (int i = 1; i < argc; ++i) {
     const std::string a = argv[i];
-    if (a == "--rim") o.rim = true;
-    else if (a == "--two") o.classes = 2;
-    else if (a == "--area") o.area = true;
-    else if (a == "--given") o.given = true;
-    else if (a == "--side") o.side = std::atoi(argv[++i]);
-    else if (place++ == 0) o.images = std::atoi(argv[i]);
-    else if (place == 2) o.blur = std::atof(argv[i]);
-    else o.sigma = std::atof(argv[i]);
+    if (a == "--rim")
+      o.rim = true;
+    else if (a == "--two")
+      o.classes = 2;
+    else if (a == "--area")
+      o.area = true;
+    else if (a == "--given")
+      o.given = true;
+    else if (a == "--side")
+      o.side = std::atoi(argv[++i]);
+    else if (place++ == 0)
+      o.images = std::atoi(argv[i]);
+    else if (place == 2)
+      o.blur = std::atof(argv[i]);
+    else
+      o.sigma = std::atof(argv[i]);
   }
   const Pool pool(1);
   JobObserver observer;
@@ -179,13 +197,18 @@ int main(int argc, char** argv) {
     settings.classes = o.classes;
     settings.blur.mode = o.given ? BlurMode::kGiven : BlurMode::kAuto;
     settings.blur.value = o.blur;
-    const auto begin = std::chrono::steady_clock::now();
-    const auto seconds = [&] { return std::chrono::duration<double>(std::chrono::steady_clock::now() - begin).count(); };
+    const std::clock_t begin = std::clock();
+    const auto seconds = [&] { return static_cast<double>(std::clock() - begin) / CLOCKS_PER_SEC; };
     LabelSampling run = restore_one(grey, settings, seed, pool, observer);
     tally(o, scene, run, seconds(), plain);
     restore_blurred(settings, pool, observer, run);
     tally(o, scene, run, seconds(), aware);
-    if (std::getenv("VERBOSE")) { std::printf("  %d b %.3f [%.3f, %.3f] %d beta %.2f sd", i, run.blur.value, run.blur.lower90, run.blur.upper90, run.blur.modelled, run.prior.beta); for (double s : run.chains[0].model.classes.sd) std::printf(" %.3f", s); std::printf("\n"); }
+    if (std::getenv("VERBOSE")) {
+      std::printf("  %d b %.3f [%.3f, %.3f] %d beta %.2f sd", i, run.blur.value, run.blur.lower90,
+                  run.blur.upper90, run.blur.modelled, run.prior.beta);
+      for (double s : run.chains[0].model.classes.sd) std::printf(" %.3f", s);
+      std::printf("\n");
+    }
     b += run.blur.value;
     b2 += run.blur.value * run.blur.value;
   }
