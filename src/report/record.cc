@@ -129,6 +129,7 @@ void describe(Archive& archive, Measurement& m) {
   archive("rhat", m.rhat);
   archive("ess", m.ess);
   archive("plain_estimate", m.plain_estimate);
+  archive("defined_share", m.defined_share);
 }
 
 template <class Archive>
