@@ -21,8 +21,8 @@ void MeasuredDraws::record(const LabelDraw& draw) {
 std::vector<Measurement> MeasuredDraws::measurements() const {
   std::vector<Measurement> list;
   for (std::size_t i = 0; i < keys_.size(); ++i) {
-    list.push_back(measurement_from_trace(keys_[i].name, keys_[i].label, keys_[i].unit,
-                                          Draws(traces_[i])));
+    list.push_back(
+        measurement_from_trace(keys_[i].name, keys_[i].label, keys_[i].unit, Draws(traces_[i])));
   }
   return list;
 }
