@@ -4,6 +4,7 @@
 #include <cmath>
 #include <limits>
 
+#include "image/atomic_file.h"
 #include "image/write.h"
 #include "job/field_frame.h"
 #include "job/field_record.h"
@@ -13,6 +14,7 @@
 #include "job/restore_one.h"
 #include "job/segment_input.h"
 #include "report/class_colours.h"
+#include "report/particle_csv.h"
 #include "simd/target.h"
 
 namespace stillfield {
@@ -111,7 +113,8 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& settings, cons
 
   LabelSampling sampling = restore_one(input.grey, settings, input.seed, pool, observer, &memo);
   describe_sampling(sampling, settings, record);
-  MeasuredDraws measured(input.pixels.view(), input.usable.view(), input.measure, settings.chains);
+  MeasuredDraws measured(sampling.counts->most_probable().view(), input.pixels.view(),
+                         input.usable.view(), input.measure, settings.chains);
   for_label_draws(settings, kMeasuredDraws, pool, observer, sampling,
                   [&](const LabelDraw& draw) { measured.record(draw); });
   describe_measured(measured.measurements(), input.masked(), record);
@@ -120,6 +123,10 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& settings, cons
   const fs::path record_file = with_suffix(task.stem, kRecordSuffix);
   fs::remove(record_file);  // from here to the end there is no finished result
   write_maps(task, sampling, input, record);
+  write_text_atomically(
+      with_suffix(task.stem, kParticlesSuffix),
+      particles_csv(record.input, input.measure.pixel_size_um, measured.particles()));
+  list_output(task, kParticlesSuffix, record);
   record.run.write_seconds = watch.lap();
   write_record(record_file, record);
   return record;
