@@ -55,6 +55,18 @@ void weigh(View<const std::uint8_t> usable, Extent frame, std::vector<Particle>&
   }
 }
 
+Particle particle_of(int component, const cv::Mat& stats, const cv::Mat& centroids) {
+  Particle p;
+  p.area = stats.at<int>(component, cv::CC_STAT_AREA);
+  p.left = stats.at<int>(component, cv::CC_STAT_LEFT);
+  p.top = stats.at<int>(component, cv::CC_STAT_TOP);
+  p.width = stats.at<int>(component, cv::CC_STAT_WIDTH);
+  p.height = stats.at<int>(component, cv::CC_STAT_HEIGHT);
+  p.x = centroids.at<double>(component, 0);
+  p.y = centroids.at<double>(component, 1);
+  return p;
+}
+
 }  // namespace
 
 Particles find_particles(View<const std::uint8_t> labels, int label,
@@ -65,27 +77,25 @@ Particles find_particles(View<const std::uint8_t> labels, int label,
   const int count =
       cv::connectedComponentsWithStats(class_mask(labels, label, usable), component, stats,
                                        centroids, settings.connectivity, CV_32S);
-  std::vector<std::int32_t> number(static_cast<std::size_t>(count));
-  for (int c = 1; c < count; ++c) {
-    Particle p;
-    p.area = stats.at<int>(c, cv::CC_STAT_AREA);
-    if (p.area < settings.min_area) continue;
-    p.left = stats.at<int>(c, cv::CC_STAT_LEFT);
-    p.top = stats.at<int>(c, cv::CC_STAT_TOP);
-    p.width = stats.at<int>(c, cv::CC_STAT_WIDTH);
-    p.height = stats.at<int>(c, cv::CC_STAT_HEIGHT);
-    p.x = centroids.at<double>(c, 0);
-    p.y = centroids.at<double>(c, 1);
-    p.component = static_cast<int>(found.list.size()) + 1;
-    number[static_cast<std::size_t>(c)] = p.component;
-    found.list.push_back(p);
-  }
-  weigh(usable, labels.extent(), found.list);
+  // OpenCV's own order depends on its method: components are numbered as their pixels are met.
+  constexpr std::int32_t kUnmet = -1;
+  std::vector<std::int32_t> number(static_cast<std::size_t>(count), kUnmet);
+  number[0] = 0;
   for (int y = 0; y < labels.height(); ++y) {
     const std::int32_t* in = component.ptr<std::int32_t>(y);
     std::int32_t* out = found.component.row(y);
-    for (int x = 0; x < labels.width(); ++x) out[x] = number[static_cast<std::size_t>(in[x])];
+    for (int x = 0; x < labels.width(); ++x) {
+      std::int32_t& n = number[static_cast<std::size_t>(in[x])];
+      if (n == kUnmet) {
+        Particle p = particle_of(in[x], stats, centroids);
+        const bool counts = p.area >= settings.min_area;
+        n = p.component = counts ? static_cast<int>(found.list.size()) + 1 : 0;
+        if (counts) found.list.push_back(p);
+      }
+      out[x] = n;
+    }
   }
+  weigh(usable, labels.extent(), found.list);
   return found;
 }
 

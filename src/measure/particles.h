@@ -20,7 +20,9 @@ namespace stillfield {
 
 struct ParticleSettings {
   int connectivity = 8;       // 4 or 8
-  std::int64_t min_area = 1;  // pixels; smaller components are no particles
+  // Pixels; smaller components are no particles. Draws at high noise are full of specks of 1 to 3
+  // pixels, which would outnumber the particles (docs/trust.md).
+  std::int64_t min_area = 4;
 };
 
 struct Particle {
