@@ -86,11 +86,12 @@ void describe_sampling(const LabelSampling& sampling, const SegmentSettings& set
   }
 }
 
-void describe_measured(const std::vector<Measurement>& measured, bool masked, ImageRecord& record) {
+void describe_measured(const std::vector<Measurement>& measured, bool complete,
+                       ImageRecord& record) {
   for (const Measurement& m : measured) {
     if (m.name != "area_fraction") {
       record.measurements.push_back(m);
-    } else if (masked) {
+    } else if (!complete) {
       const auto of_traces = std::find_if(record.measurements.begin(), record.measurements.end(),
                                           [&m](const Measurement& other) {
                                             return other.name == m.name && other.label == m.label;

@@ -18,8 +18,10 @@ void describe_sampling(const LabelSampling& sampling, const SegmentSettings& set
                        ImageRecord& record);
 
 // Adds what was measured on the draws, after describe_sampling. Area fractions stay those of the
-// traces, which saw every sweep, unless part of the field is masked: then they saw too much.
-void describe_measured(const std::vector<Measurement>& measured, bool masked, ImageRecord& record);
+// traces, which saw every sweep, if the field is complete; else those saw the observed pixels
+// alone.
+void describe_measured(const std::vector<Measurement>& measured, bool complete,
+                       ImageRecord& record);
 
 }  // namespace stillfield
 

@@ -117,7 +117,7 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& settings, cons
                          input.usable.view(), input.measure, settings.chains);
   for_label_draws(settings, kMeasuredDraws, pool, observer, sampling,
                   [&](const LabelDraw& draw) { measured.record(draw); });
-  describe_measured(measured.measurements(), input.masked(), record);
+  describe_measured(measured.measurements(), input.complete(), record);
   record.run.sample_seconds = watch.lap();
 
   const fs::path record_file = with_suffix(task.stem, kRecordSuffix);

@@ -22,7 +22,8 @@ struct SegmentInput {
   TiffOptions options;  // of the maps
   std::uint64_t seed = 0;
 
-  bool masked() const { return !usable.empty(); }
+  // Every pixel is observed.
+  bool complete() const { return grey.observed == pixels.extent().sites(); }
 };
 
 // Reads page and mask and begins the record. A pixel size of the settings overrides the file's.

@@ -9,8 +9,31 @@
 namespace stillfield {
 namespace {
 
-bool spans(const Particle& p, Extent frame) {
-  return (p.left == 0 && p.width == frame.width) || (p.top == 0 && p.height == frame.height);
+// The bounding box of the usable pixels.
+Particle frame_of(View<const std::uint8_t> usable, Extent extent) {
+  Particle frame;
+  frame.width = extent.width;
+  frame.height = extent.height;
+  if (usable.extent().sites() == 0) return frame;
+  int right = -1, bottom = -1;
+  frame.left = extent.width;
+  frame.top = extent.height;
+  for (int y = 0; y < extent.height; ++y) {
+    for (int x = 0; x < extent.width; ++x) {
+      if (usable.at(x, y) == 0) continue;
+      frame.left = std::min(frame.left, x);
+      frame.top = std::min(frame.top, y);
+      right = std::max(right, x);
+      bottom = y;
+    }
+  }
+  frame.width = right - frame.left + 1;
+  frame.height = bottom - frame.top + 1;
+  return frame;
+}
+
+bool spans(const Particle& p, const Particle& frame) {
+  return p.width == frame.width || p.height == frame.height;
 }
 
 // The component that may hold more than half of a particle's pixels, by the majority vote of Boyer
@@ -32,20 +55,22 @@ ParticleTable::ParticleTable(View<const std::uint8_t> labels, View<const float> 
                              View<const std::uint8_t> usable, const LabelMeasureSettings& settings,
                              int chains)
     : row_at_(labels.extent()) {
+  const Particle frame = frame_of(usable, labels.extent());
   for (int k = 1; k <= settings.classes; ++k) {
     first_.push_back(rows_.size());
-    add_class(k, find_particles(labels, k, usable, settings.particles), grey);
+    add_class(k, find_particles(labels, k, usable, settings.particles), grey, frame);
   }
   first_.push_back(rows_.size());
   areas_.assign(static_cast<std::size_t>(chains),
                 std::vector<std::vector<std::int64_t>>(rows_.size()));
 }
 
-void ParticleTable::add_class(int label, const Particles& found, View<const float> grey) {
+void ParticleTable::add_class(int label, const Particles& found, View<const float> grey,
+                              const Particle& frame) {
   const std::size_t before = rows_.size();
   std::vector<std::int32_t> row_of(found.list.size() + 1);
   for (const Particle& p : found.list) {
-    if (spans(p, row_at_.extent())) continue;
+    if (spans(p, frame)) continue;
     ParticleRow row;
     row.label = label;
     row.particle = p;

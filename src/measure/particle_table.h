@@ -1,7 +1,8 @@
 // The particles of the most probable labels, one by one: how likely each is, and how large.
 //
 // Particle     component of one class (measure/particles.h). One that reaches from a side of the
-//              frame to the opposite side is a matrix, not a particle, and is left out. Components
+//              frame (of the bounding box of the usable pixels) to the opposite side is a matrix,
+//              not a particle, and is left out. Components
 //              smaller than min_area are no particles, in draws neither
 // There        in a draw: a component of the class in that draw holds more than half of the
 //              particle's pixels, and more than half of the component's pixels lie in the particle.
@@ -48,7 +49,7 @@ class ParticleTable {
   std::vector<ParticleRow> rows(int draws) const;
 
  private:
-  void add_class(int label, const Particles& found, View<const float> grey);
+  void add_class(int label, const Particles& found, View<const float> grey, const Particle& frame);
 
   std::vector<ParticleRow> rows_;
   std::vector<std::size_t> first_;  // row of the first particle of class k at [k - 1]; then the end

@@ -26,7 +26,7 @@ namespace {
 
 constexpr int kSide = 192;
 constexpr double kSmallest = 3, kLargest = 9, kGap = 4;
-constexpr std::array<std::int64_t, 5> kMinAreas{1, 4, 6, 9, 16};
+constexpr std::array<std::int64_t, 3> kMinAreas{1, 4, 9};
 
 struct Disc {
   double x, y, r;
@@ -77,9 +77,10 @@ Scene draw_scene(bool touching, std::uint64_t seed) {
   return scene;
 }
 
+// The smallest value that at least half do not exceed, as measure/particles.h takes it.
 double median(std::vector<double> values) {
   std::sort(values.begin(), values.end());
-  return values.empty() ? 0 : values[values.size() / 2];
+  return values.empty() ? 0 : values[(values.size() - 1) / 2];
 }
 
 // Sums over images of a count and a D50.
