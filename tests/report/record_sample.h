@@ -22,7 +22,8 @@ inline Measurement area_fraction(int label, double estimate, double sd) {
           .mcse = sd / 20,
           .rhat = 1.003,
           .ess = 412.5,
-          .plain_estimate = estimate};
+          .plain_estimate = estimate,
+          .defined_share = 1};
 }
 
 inline ImageRecord record_sample(const std::string& path = "heat/a, \"b\".tif") {
