@@ -22,7 +22,7 @@ struct LabelSampling {
   std::unique_ptr<Colouring> colouring;        // the others refer to it
   std::unique_ptr<LogPartitionMemo> own_memo;  // unless the run has one
   LabelProblem problem;
-  std::vector<LabelChain> chains;  // where they stopped (label_draws.h goes on)
+  std::vector<LabelChain> chains;     // where they stopped (label_draws.h goes on)
   std::vector<BlurredField> blurred;  // one a chain when blur is modelled, else empty
   BlurFacts blur;
   std::unique_ptr<LabelCounts> counts;

@@ -56,7 +56,8 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
   }
   CouplingAdaptation adaptation(problem.field, problem.prior);
   Schedule schedule(settings.schedule, settings.coupling.mode == CouplingMode::kAuto);
-  run.traces = std::make_unique<Traces>(settings.classes, settings.chains, sampled);
+  run.traces = std::make_unique<Traces>(settings.classes, settings.chains, sampled,
+                                        grey.observed == extent.sites());
   run.counts = std::make_unique<LabelCounts>(colouring, settings.classes, settings.chains,
                                              schedule.first_part());
 

@@ -48,7 +48,7 @@ void sample_chains(const SegmentSettings& settings, const AdvanceChains& advance
       for (int c = 0; c < settings.chains; ++c) {
         run.counts->take(c, run.chains[static_cast<std::size_t>(c)]);
       }
-      run.probability = run.counts->quality(pool);
+      run.probability = run.counts->quality(pool, &run.problem.field);
       run.scalars = summarise_traces(run.traces->all());
       run.verdict = judge_convergence(run.scalars, run.probability.mcse, settings.target);
       run.counts->merge_parts();
