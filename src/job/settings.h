@@ -25,6 +25,7 @@ struct SegmentSettings {
   std::uint64_t seed = 1;
   ScheduleSettings schedule;
   ConvergenceTarget target;
+  int replicates = 12;  // of the bootstrap: 0 = none, otherwise an even number from 6 (job/bootstrap.h)
 };
 
 // Settings that do not.
