@@ -8,7 +8,7 @@
 #include "cli/noise_option.h"
 #include "cli/progress.h"
 #include "core/error.h"
-#include "image/digest.h"
+#include "job/mask.h"
 #include "report/camera_file.h"
 
 namespace stillfield {
@@ -83,9 +83,7 @@ void complete_settings(DenoiseOptions& options) {
   }
   if (!options.saturation.empty()) settings.saturation = parse_number(options.saturation);
   settings.mask = options.mask;
-  if (std::filesystem::is_regular_file(settings.mask)) {
-    settings.mask_sha256 = sha256_of_file(settings.mask);
-  }
+  settings.mask_sha256 = mask_digest(settings.mask);
   settings.learn_from = options.learn_from;
   settings.correlated_noise = options.correlation == "estimate";
   settings.connectivity = options.neighbours == "8" ? Connectivity::kEight : Connectivity::kFour;

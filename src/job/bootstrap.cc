@@ -212,7 +212,7 @@ BootstrapFacts bootstrap_measurements(const BootstrapInput& input, const Pool& p
   const Values value = setting.statistic(base, input.pixels);
   const Values floor = one_particle_variances(setting.cleaned(base.labels.view()).view(),
                                               input.usable, input.measure);
-  BootstrapFacts facts{2 * each, setting.blur, 0};
+  BootstrapFacts facts{2 * each, 0, setting.blur};
   for (Measurement& m : measurements) {
     const auto key =
         std::find_if(setting.keys.begin(), setting.keys.end(),

@@ -28,6 +28,7 @@
 #include "measure/label_measures.h"
 #include "measure/measurement.h"
 #include "parallel/pool.h"
+#include "report/record.h"
 
 namespace stillfield {
 
@@ -40,12 +41,6 @@ struct BootstrapInput {
   const LabelMeasureSettings& measure;
   const SegmentSettings& settings;
   std::uint64_t image_seed = 0;
-};
-
-struct BootstrapFacts {
-  int replicates = 0;  // 0: not done
-  double blur = 0;     // px, of the simulated images
-  int corrected = 0;   // measurements
 };
 
 // Corrects estimate, sd and bounds of `measurements` that measure_labels knows, by name and class;

@@ -4,10 +4,13 @@
 
 #include <cstdint>
 #include <filesystem>
+#include <optional>
+#include <string>
 #include <vector>
 
 #include "diagnose/verdict.h"
 #include "image/read.h"
+#include "measure/particles.h"
 #include "model/neighbourhood.h"
 #include "report/named_value.h"
 #include "sampler/coupling.h"
@@ -25,7 +28,12 @@ struct SegmentSettings {
   std::uint64_t seed = 1;
   ScheduleSettings schedule;
   ConvergenceTarget target;
-  int replicates = 12;  // of the bootstrap: 0 = none, otherwise an even number from 6 (job/bootstrap.h)
+  int replicates =
+      12;  // of the bootstrap: 0 = none, otherwise an even number from 6 (job/bootstrap.h)
+  ParticleSettings particles;
+  std::optional<double> pixel_size_um;  // > 0; overrides that of the file
+  std::filesystem::path mask;           // file, or folder of files named as the images; 0 = outside
+  std::string mask_sha256;              // of all that `mask` holds (job/mask.h)
 };
 
 // Settings that do not.

@@ -29,7 +29,7 @@ int most_frequent(const std::vector<int>& count, int own) {
 
 void remove_specks(int label, double least_area, std::size_t classes,
                    Volume<std::uint8_t>& labels) {
-  const Particles found = find_particles(labels.view(), label, {}, ParticleSettings{});
+  const Particles found = find_particles(labels.view(), label, {}, {8, 1});
   const auto small = [&](std::int32_t c) {
     return c > 0 &&
            static_cast<double>(found.list[static_cast<std::size_t>(c - 1)].area) < least_area;

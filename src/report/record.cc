@@ -102,6 +102,13 @@ void describe(Archive& archive, ScheduleFacts& schedule) {
 }
 
 template <class Archive>
+void describe(Archive& archive, BootstrapFacts& bootstrap) {
+  archive("replicates", bootstrap.replicates);
+  archive("corrected_measurements", bootstrap.corrected);
+  archive("blur_px", bootstrap.blur);
+}
+
+template <class Archive>
 void describe(Archive& archive, ProbabilityFacts& probability) {
   archive("mcse", probability.mcse);
   archive("share_rhat_above_1_05", probability.share_rhat_above_1_05);
@@ -129,6 +136,7 @@ void describe(Archive& archive, Measurement& m) {
   archive("rhat", m.rhat);
   archive("ess", m.ess);
   archive("plain_estimate", m.plain_estimate);
+  archive("defined_share", m.defined_share);
 }
 
 template <class Archive>
@@ -206,6 +214,7 @@ void describe(Archive& archive, ImageRecord& record) {
     archive("schedule", record.schedule);
     archive("scalars", record.scalars);
     archive("probability", record.probability);
+    archive("bootstrap", record.bootstrap);
   }
   archive("verdict", record.verdict);
   archive("measurements", record.measurements);
