@@ -139,7 +139,8 @@ void add_field_options(CLI::App& app, DenoiseOptions& options) {
   add_choice(app, "--prior", options.prior, {"patches", "edges", "smooth"},
              "Field over clean images: patches learned from the image, Laplace or Gaussian "
              "differences of neighbours");
-  add_whole(app, "--patch", settings.patch, 0, 8, "Side of a patch, 4, 6 or 8; 0: by the noise");
+  add_whole(app, "--patch", settings.patch, 0, 8,
+            "Side of a patch, 4, 6 or 8; 0: 6 and 8, blended");
   add_text(app, "--learn-from", options.learn_from, "FILE|DIR",
            "Like images to learn the patches from, instead of each image itself");
   add_choice(app, "--neighbours", options.neighbours, {"4", "8"},

@@ -217,7 +217,7 @@ BootstrapFacts bootstrap_measurements(const BootstrapInput& input, const Pool& p
     const auto key =
         std::find_if(setting.keys.begin(), setting.keys.end(),
                      [&](const MeasureKey& k) { return k.name == m.name && k.label == m.label; });
-    if (key == setting.keys.end()) continue;
+    if (key == setting.keys.end() || !std::isfinite(m.estimate)) continue;
     const auto i = static_cast<std::size_t>(key - setting.keys.begin());
     const bool fraction = m.name == "area_fraction";
     BootstrapErrors bootstrap;

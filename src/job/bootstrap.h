@@ -12,7 +12,8 @@
 //          mean over its sweeps, all else is measured on its most probable labels without specks
 // Interval measure/bootstrap_interval.h, with a floor of one doubtful particle
 //          (measure/one_particle.h)
-// Left     as they were: measurements for which a kind of truth gave fewer than two values
+// Left     as they were: measurements without an estimate, and those for which a kind of truth
+//          gave fewer than two values
 // Cost     one short run and one more a replicate, and twelve of half the length for the blur; on
 //          images above kWholeRuns pixels fewer replicates and shorter runs
 #ifndef STILLFIELD_JOB_BOOTSTRAP_H_
