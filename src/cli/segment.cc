@@ -40,6 +40,7 @@ struct SegmentOptions : CommonOptions {
   std::string pixel_size;
   std::string mask;
   bool quick = false;
+  bool no_bootstrap = false;
   SegmentSettings settings;
 };
 
@@ -66,6 +67,8 @@ int run_segment(SegmentOptions& options) {
   settings.mask = options.mask;
   settings.mask_sha256 = mask_digest(settings.mask);
   if (options.quick) settings.target = kQuickTarget;
+  if (options.no_bootstrap) settings.replicates = 0;
+  settings.replicates -= settings.replicates % 2;
   begin_run(options);
   FolderCounts counts;
   {
@@ -107,6 +110,13 @@ void add_sampling_options(CLI::App& app, SegmentOptions& options) {
                "probability 0.02 (0.01)");
 }
 
+void add_bootstrap_options(CLI::App& app, SegmentOptions& options) {
+  add_whole(app, "--replicates", options.settings.replicates, 6, 64,
+            "Simulated images that correct the measurements; an odd number counts as one less");
+  app.add_flag("--no-bootstrap", options.no_bootstrap,
+               "Leave the measurements as the posterior has them");
+}
+
 void add_measuring_options(CLI::App& app, SegmentOptions& options) {
   ParticleSettings& particles = options.settings.particles;
   app.add_option("--pixel-size", options.pixel_size,
@@ -134,6 +144,7 @@ Command add_segment(CLI::App& app) {
   add_inputs_and_output(*segment, *options);
   add_model_options(*segment, *options);
   add_measuring_options(*segment, *options);
+  add_bootstrap_options(*segment, *options);
   add_sampling_options(*segment, *options);
   add_run_options(*segment, *options);
   return {segment, [options] { return run_segment(*options); }};

@@ -6,6 +6,7 @@
 
 #include "image/atomic_file.h"
 #include "image/write.h"
+#include "job/bootstrap.h"
 #include "job/field_frame.h"
 #include "job/field_record.h"
 #include "job/label_draws.h"
@@ -120,6 +121,11 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& settings, cons
   for_label_draws(settings, kMeasuredDraws, pool, observer, sampling,
                   [&](const LabelDraw& draw) { measured.record(draw); });
   describe_measured(measured.measurements(), input.complete(), record);
+  if (settings.replicates > 0) {
+    record.bootstrap = bootstrap_measurements(
+        {input.grey, input.pixels.view(), input.usable.view(), input.measure, settings, input.seed},
+        pool, observer, sampling, record.measurements);
+  }
   record.run.sample_seconds = watch.lap();
 
   const fs::path record_file = with_suffix(task.stem, kRecordSuffix);

@@ -36,6 +36,8 @@ struct SegmentSettings {
   std::uint64_t seed = 1;
   ScheduleSettings schedule;
   ConvergenceTarget target;
+  int replicates =
+      12;  // of the bootstrap: 0 = none, otherwise an even number from 6 (job/bootstrap.h)
   ParticleSettings particles;
   std::optional<double> pixel_size_um;  // > 0; overrides that of the file
   std::filesystem::path mask;           // file, or folder of files named as the images; 0 = outside

@@ -111,6 +111,13 @@ void describe(Archive& archive, ScheduleFacts& schedule) {
 }
 
 template <class Archive>
+void describe(Archive& archive, BootstrapFacts& bootstrap) {
+  archive("replicates", bootstrap.replicates);
+  archive("corrected_measurements", bootstrap.corrected);
+  archive("blur_px", bootstrap.blur);
+}
+
+template <class Archive>
 void describe(Archive& archive, ProbabilityFacts& probability) {
   archive("mcse", probability.mcse);
   archive("share_rhat_above_1_05", probability.share_rhat_above_1_05);
@@ -224,6 +231,7 @@ void describe(Archive& archive, ImageRecord& record) {
     archive("schedule", record.schedule);
     archive("scalars", record.scalars);
     archive("probability", record.probability);
+    archive("bootstrap", record.bootstrap);
   }
   archive("verdict", record.verdict);
   archive("measurements", record.measurements);
