@@ -4,6 +4,7 @@
 
 #include <cstdint>
 #include <filesystem>
+#include <string>
 #include <vector>
 
 #include "diagnose/verdict.h"
@@ -33,6 +34,8 @@ struct RunSettings {
   int threads = 1;
   bool redo = false;  // do again what is finished
   ReadLimits limits;
+  std::filesystem::path group_file;  // of the summary's groups; empty: by folder
+  std::string group_column = "group";
 };
 
 // All of them under the names of the record.

@@ -121,7 +121,7 @@ ClassSearch search_classes(const GreyLevels& grey, const Neighbourhood& neighbou
     });
     std::vector<double> all;
     for (const ClassTrial& t : judged) all.insert(all.end(), t.log_density.begin(), t.log_density.end());
-    search.tried.push_back({classes, sum_of(all), 0, 0});
+    search.tried.push_back({classes, sum_of(all) - env("PEN", 1) * 0.5 * (3 * classes - 1) * exact_log((double)all.size()), 0, 0});
     densities.push_back(std::move(all));
   }
   std::size_t top = 0;
@@ -129,7 +129,7 @@ ClassSearch search_classes(const GreyLevels& grey, const Neighbourhood& neighbou
   for (std::size_t i = 0; i < search.tried.size(); ++i) {
     double sum = 0, square = 0; const double n = (double)densities[i].size();
     for (std::size_t s = 0; s < densities[i].size(); ++s) { const double d = densities[top][s] - densities[i][s]; sum += d; square += d * d; }
-    search.tried[i].below_best = sum;
+    search.tried[i].below_best = search.tried[top].score - search.tried[i].score;
     search.tried[i].error = std::sqrt(std::max(0.0, square - sum * sum / n));
   }
   for (std::size_t i = search.tried.size(); i-- > 0;) {
