@@ -4,6 +4,7 @@
 
 #include "image/read.h"
 #include "image/write.h"
+#include "job/choose_classes.h"
 #include "job/field_frame.h"
 #include "job/field_record.h"
 #include "job/output_folder.h"
@@ -73,7 +74,7 @@ void write_maps(const FieldTask& task, const LabelSampling& sampling, int classe
   finished(".entropy.tif");
 }
 
-ImageRecord segment(const FieldTask& task, const SegmentSettings& settings, const RunSettings& run,
+ImageRecord segment(const FieldTask& task, const SegmentSettings& asked, const RunSettings& run,
                     const Pool& pool, JobObserver& observer, LogPartitionMemo& memo) {
   ImageRecord record;
   Stopwatch watch;
@@ -83,14 +84,16 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& settings, cons
   {
     const Field field = read_page(task.file, task.page, run.limits);
     grey = make_grey_levels(field.pixels.view());
-    seed = begin_record(task, field, kSegment, named_settings(settings), settings.seed, record);
+    seed = begin_record(task, field, kSegment, named_settings(asked), asked.seed, record);
     options.pixel_size_um = field.pixel_size_um;
   }
   describe_grey(grey, record);
   record.run = {active_cpu_target(), pool.threads(), watch.lap(), 0, 0};
 
+  const SegmentSettings settings = with_chosen_classes(grey, asked, seed, pool, record);
   const LabelSampling sampling = restore_one(grey, settings, seed, pool, observer, &memo);
   describe_sampling(sampling, settings, record);
+  add_choice_sentences(record);
   record.run.sample_seconds = watch.lap();
 
   const fs::path record_file = with_suffix(task.stem, kRecordSuffix);

@@ -16,9 +16,11 @@
 
 namespace stillfield {
 
+inline constexpr int kAutoClasses = 0;  // chosen by the data (job/choose_classes.h)
+
 // Settings that change results; all of them stand in the record.
 struct SegmentSettings {
-  int classes = 2;  // 2..64
+  int classes = 2;  // 2..64, or kAutoClasses
   Connectivity connectivity = Connectivity::kFour;
   CouplingSettings coupling;
   bool shared_variance = false;

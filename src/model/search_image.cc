@@ -48,8 +48,8 @@ std::vector<std::uint16_t> coarser_levels(const GreyLevels& grey, GreyLevels& ou
   out.step = grey.step * width;
   std::vector<std::uint16_t> level(static_cast<std::size_t>(grey.levels) + 1);
   for (int l = 0; l < grey.levels; ++l) {
-    level[static_cast<std::size_t>(l)] = static_cast<std::uint16_t>(
-        std::clamp((l - first) / width + 0.5, 0.0, out.levels - 1.0));
+    level[static_cast<std::size_t>(l)] =
+        static_cast<std::uint16_t>(std::clamp((l - first) / width + 0.5, 0.0, out.levels - 1.0));
   }
   level.back() = out.missing();
   return level;

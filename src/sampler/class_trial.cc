@@ -46,7 +46,7 @@ ClassTrial try_classes(const GreyLevels& grey, const Neighbourhood& neighbourhoo
   const Colouring colouring(grey.level.extent(), neighbourhood);
   GreyLevels kept = copy_of(grey);
   const auto classes = start.classes.mean.size();
-  HeldOut held = hold_out(colouring, settings.fold_key, settings.fold, settings.folds,
+  HeldOut held = hold_out(colouring, settings.parts_key, settings.part, settings.parts,
                           static_cast<int>(classes), kept);
   const ObservedField field = observe(colouring, kept);
   const GaussianPrior prior = default_prior(grey, start.classes);
@@ -65,8 +65,7 @@ ClassTrial try_classes(const GreyLevels& grey, const Neighbourhood& neighbourhoo
   // One class has no labels to draw.
   const int blocks = classes == 1 ? 0 : settings.settling_blocks + settings.counting_blocks;
   for (int block = 0; block < blocks; ++block) {
-    chain.model.prior.beta =
-        settings.beta * std::min(1.0, 0.5 + 0.5 * block / kRisingBlocks);
+    chain.model.prior.beta = settings.beta * std::min(1.0, 0.5 + 0.5 * block / kRisingBlocks);
     prepare_weights(field, chain.model, pool, weights);
     sweep_labels(colouring, weights, kSweepsABlock, Purpose::kHeldOut, pool, chain);
     total_labels(field, pool, chain);

@@ -3,7 +3,7 @@
 // Method   the coupling is given and rises from half of it over the first blocks, so that labels
 //          can move far first; the class field is fitted by pseudo-likelihood on the running
 //          labels (model/pseudo_likelihood.h); classes are drawn from their conditionals.
-// Pixels   the held-out ones depend on `fold_key` and `fold` alone: trials of several numbers of
+// Pixels   the held-out ones depend on `parts_key` and `part` alone: trials of several numbers of
 //          classes can be compared pixel by pixel
 #ifndef STILLFIELD_SAMPLER_CLASS_TRIAL_H_
 #define STILLFIELD_SAMPLER_CLASS_TRIAL_H_
@@ -21,9 +21,9 @@ struct TrialSettings {
   double beta = 1.0;
   int settling_blocks = 10;
   int counting_blocks = 10;
-  std::uint32_t fold = 0;
-  std::uint32_t folds = 8;
-  PhiloxKey fold_key{};
+  std::uint32_t part = 0;
+  std::uint32_t parts = 8;
+  PhiloxKey parts_key{};
   PhiloxKey chain_key{};  // a key of its own for each trial
 };
 

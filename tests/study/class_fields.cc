@@ -22,7 +22,9 @@ void smooth(Plane& plane, int side, double sd) {
   for (int i = 0; i <= reach; ++i) {
     kernel[static_cast<std::size_t>(i)] = std::exp(-0.5 * i * i / (sd * sd)) / total;
   }
-  const auto reflected = [side](int i) { return i < 0 ? -1 - i : i >= side ? 2 * side - 1 - i : i; };
+  const auto reflected = [side](int i) {
+    return i < 0 ? -1 - i : i >= side ? 2 * side - 1 - i : i;
+  };
   for (const bool along_x : {true, false}) {
     const Plane in = plane;
     for (int y = 0; y < side; ++y) {
@@ -115,9 +117,8 @@ void draw_blobs(const std::vector<double>& share, RandomStream& random, Labels& 
   double below = 0.0;
   for (const double s : share) {
     below += s;
-    limit.push_back(
-        sorted[std::min(sorted.size() - 1,
-                        static_cast<std::size_t>(below * static_cast<double>(sorted.size())))]);
+    limit.push_back(sorted[std::min(
+        sorted.size() - 1, static_cast<std::size_t>(below * static_cast<double>(sorted.size())))]);
   }
   for (int y = 0; y < side; ++y) {
     for (int x = 0; x < side; ++x) {
