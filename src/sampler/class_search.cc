@@ -91,10 +91,11 @@ std::vector<LabelStart> starts_for(const GreyLevels& grey, int classes, bool sha
   return starts;
 }
 
-// Means, standard deviations and class fields, less the field that is fixed.
+// Parameters: means, standard deviations and class fields, less the field that is fixed.
 double penalty(int classes, bool shared_variance, std::size_t pixels) {
   const int parameters = shared_variance ? 2 * classes : 3 * classes - 1;
-  return 0.5 * parameters * exact_log(static_cast<double>(std::max<std::size_t>(pixels, 1)));
+  const auto n = static_cast<double>(std::max<std::size_t>(pixels, 1));
+  return std::max(0.5 * parameters * exact_log(n), kLeastGain * n * classes);
 }
 
 }  // namespace

@@ -1,12 +1,14 @@
 // How many classes an image has.
 //
 // Maths    score(K) = sum over held-out pixels of log sum_k P(z_s = k | neighbours) f_k(y_s)
-//                     - (d / 2) log n
+//                     - max( (d / 2) log n, kLeastGain n K )
 //          with the labels of the neighbours drawn without y_s (sampler/held_out.h), n held-out
 //          pixels, d parameters: K means, K (or 1) standard deviations, K - 1 class fields. It is
 //          the pseudo-likelihood information criterion (Stanford & Raftery 2002) with the
 //          pseudo-likelihood of data that the labels have not seen: labels that were fitted to a
-//          pixel explain its noise, and the more classes the better.
+//          pixel explain its noise, and the more classes the better. kLeastGain: no image follows
+//          the model to the last nat, and in a large one every trifle (blurred borders, a skewed
+//          class) is significant; what a class adds must be worth having in each pixel.
 // Choice   the fewest classes whose score lies within kSearchErrors standard errors of the best
 //          one, the error being that of the sum of the differences, pixel by pixel (the rule of
 //          one standard error: Breiman, Friedman, Olshen & Stone 1984, here with two)
@@ -28,6 +30,7 @@
 namespace stillfield {
 
 inline constexpr double kSearchErrors = 2.0;
+inline constexpr double kLeastGain = 0.003;  // nats a pixel and class; rule of thumb, no source
 
 struct TriedClasses {
   int classes = 1;
