@@ -32,6 +32,7 @@ constexpr char kEpilogue[] =
     "  stillfield segment a.tif b.tif --classes 2 --out results --quick\n";
 
 struct SegmentOptions : CommonOptions {
+  std::string classes;
   std::string neighbours = "4";
   std::string coupling = "auto";
   std::string variance = "own";
@@ -58,6 +59,9 @@ BlurSettings blur_settings(const std::string& text) {
 
 int run_segment(SegmentOptions& options) {
   SegmentSettings& settings = options.settings;
+  settings.classes = options.classes == "auto"
+                         ? kAutoClasses
+                         : static_cast<int>(parse_whole(options.classes).value());
   settings.connectivity = options.neighbours == "8" ? Connectivity::kEight : Connectivity::kFour;
   settings.coupling = coupling_settings(options.coupling);
   settings.blur = blur_settings(options.blur);
@@ -80,10 +84,11 @@ int run_segment(SegmentOptions& options) {
 }
 
 void add_model_options(CLI::App& app, SegmentOptions& options) {
-  SegmentSettings& settings = options.settings;
-  add_whole(app, "--classes", settings.classes, 2, 64, "Number of classes")
-      ->required()
-      ->default_str("");
+  app.add_option("--classes", options.classes,
+                 "Number of classes, or auto: 2 to 8, chosen for each image by held-out prediction")
+      ->check(CLI::Validator(auto_or_whole(2, 64), "", ""))
+      ->type_name("auto|2..64")
+      ->required();
   add_choice(app, "--neighbours", options.neighbours, {"4", "8"}, "Neighbours of a pixel");
   app.add_option("--coupling", options.coupling,
                  "How strongly neighbours agree: fitted, drawn (path sampling), or given")

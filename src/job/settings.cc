@@ -34,7 +34,9 @@ std::uint64_t whole(int value) {
 }  // namespace
 
 std::vector<NamedValue> named_settings(const SegmentSettings& settings) {
-  std::vector<NamedValue> list = {{"classes", whole(settings.classes)},
+  std::vector<NamedValue> list = {settings.classes == kAutoClasses
+                                      ? NamedValue{"classes", std::string("auto")}
+                                      : NamedValue{"classes", whole(settings.classes)},
                                   {"neighbours", whole(static_cast<int>(settings.connectivity))},
                                   {"coupling", coupling_name(settings.coupling.mode)}};
   if (settings.coupling.mode == CouplingMode::kFixed) {

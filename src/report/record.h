@@ -59,6 +59,21 @@ struct ModelFacts {
   std::vector<ClassFacts> classes;
 };
 
+struct ClassesTried {
+  int classes = 1;
+  double score = 0;       // log predictive density of held-out pixels less a penalty, nats
+  double below_best = 0;  // the best score less this one
+  double error = 0;       // its standard error
+};
+
+struct ClassChoiceFacts {
+  int used = 2;               // number of classes of the result
+  int best_explained_by = 0;  // what --classes auto chose, 1 too; 0 for a number that was given
+  int runner_up = 0;          // best score of the others; 0 if there is none
+  double margin = kUnknown;   // score of the choice less that of the runner-up
+  std::vector<ClassesTried> tried;
+};
+
 struct CouplingTried {
   double beta = 0;
   double score = 0;
@@ -119,6 +134,7 @@ struct ImageRecord {
   GreyFacts grey;
   std::vector<NamedValue> settings;
   std::string image_seed;  // hexadecimal: JSON readers may round 64-bit integers
+  ClassChoiceFacts class_choice;
   ModelFacts model;
   BlurFacts blur;
   std::vector<CouplingTried> coupling_tried;
