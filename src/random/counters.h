@@ -40,7 +40,8 @@ enum class Purpose : std::uint32_t {
   kTiling = 8,      // patches of a random tiling: c0, c1 = first pixel (sampler/patch_tiling.h)
   kGroup = 9,       // groups of similar patches: c1 = tile of groups (sampler/patch_groups.h)
   kRedraw = 10,     // values redrawn between sweeps: missing pixels, impulses, unequal noise
-  kRecheck = 11     // noise of the recalibration runs
+  kRecheck = 11,    // noise of the recalibration runs
+  kReplicate = 12   // images drawn to check a model: c0, c1 = pixel, block (diagnose/residual_block.h)
 };
 
 inline constexpr std::uint32_t kMaxSlices = 1u << 24;
