@@ -12,11 +12,15 @@
 #include "posterior/label_counts.h"
 #include "posterior/traces.h"
 #include "sampler/coupling_search.h"
+#include "sampler/sweep.h"
 
 namespace stillfield {
 
 struct LabelSampling {
-  std::unique_ptr<Colouring> colouring;  // the counts refer to it
+  std::unique_ptr<Colouring> colouring;        // the others refer to it
+  std::unique_ptr<LogPartitionMemo> own_memo;  // unless the run has one
+  LabelProblem problem;
+  std::vector<LabelChain> chains;  // where they stopped (label_draws.h goes on)
   std::unique_ptr<LabelCounts> counts;
   std::unique_ptr<Traces> traces;
   LabelPrior prior;  // of the last block; fixed while sampling unless sampled

@@ -4,6 +4,7 @@
 #include <string>
 
 #include "core/error.h"
+#include "job/every_chain.h"
 #include "job/trace_summaries.h"
 #include "sampler/path_sampling.h"
 #include "sampler/starts.h"
@@ -12,8 +13,6 @@
 namespace stillfield {
 namespace {
 
-// Below this size one image cannot keep two threads busy: whole chains run side by side instead.
-constexpr std::int64_t kRowParallelPixels = 320 * 320;
 constexpr int kVisitsLimit = 255;  // visits are counted in bytes
 
 void check_grey_levels(const GreyLevels& grey, int classes) {
@@ -41,43 +40,33 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
   const Extent extent = grey.level.extent();
   run.colouring = std::make_unique<Colouring>(extent, make_neighbourhood(settings.connectivity));
   const Colouring& colouring = *run.colouring;
-  const ObservedField field = observe(colouring, grey);
+  LabelProblem& problem = run.problem;
+  problem.field = observe(colouring, grey);
 
-  std::vector<LabelChain> chains = start_chains(
-      field,
+  run.chains = start_chains(
+      problem.field,
       {settings.classes, settings.chains, settings.shared_variance, settings.coupling, image_seed});
-  const GaussianPrior prior = default_prior(grey, chains.front().model.classes);
+  std::vector<LabelChain>& chains = run.chains;
+  problem.prior = default_prior(grey, chains.front().model.classes);
   const bool sampled = settings.coupling.mode == CouplingMode::kSampled;
-  LogPartitionMemo own_memo;
-  const LogPartition* log_partition = nullptr;
   if (sampled) {
-    log_partition =
-        &(memo ? *memo : own_memo)
-             .get(extent, colouring.neighbourhood(), settings.classes, settings.seed, pool);
-    run.log_partition_hysteresis = log_partition->hysteresis;
+    if (!memo) run.own_memo = std::make_unique<LogPartitionMemo>();
+    problem.log_partition =
+        &(memo ? memo : run.own_memo.get())
+             ->get(extent, colouring.neighbourhood(), settings.classes, settings.seed, pool);
+    run.log_partition_hysteresis = problem.log_partition->hysteresis;
   }
-  CouplingAdaptation adaptation(field, prior);
+  CouplingAdaptation adaptation(problem.field, problem.prior);
   Schedule schedule(settings.schedule, settings.coupling.mode == CouplingMode::kAuto);
   run.traces = std::make_unique<Traces>(settings.classes, settings.chains, sampled);
   run.counts = std::make_unique<LabelCounts>(colouring, settings.classes, settings.chains,
                                              schedule.first_part());
 
-  const Pool serial(1);
-  const bool side_by_side = extent.sites() < kRowParallelPixels && pool.threads() > 1;
-  std::vector<WeightPlanes> weights(side_by_side ? chains.size() : 1);
-
-  // One block of one chain: labels given the parameters, then parameters given the labels.
+  EveryChain every_chain(extent, settings.chains, pool);
+  // One block of one chain, and what is kept of it.
   const auto advance = [&](int c, WeightPlanes& planes, const Pool& inner) {
     LabelChain& chain = chains[static_cast<std::size_t>(c)];
-    prepare_weights(field, chain.model, inner, planes);
-    sweep_labels(colouring, planes, schedule.sweeps_a_block(), Purpose::kLabels, inner, chain);
-    total_labels(field, inner, chain);
-    RandomStream random(chain.key, Purpose::kParameters, chain.sweeps_done);
-    draw_gaussian_classes(grey, chain.totals.classes, prior, random, chain.model.classes);
-    if (sampled) {
-      chain.model.prior.beta = draw_coupling(
-          *log_partition, chain.totals.weighted_pairs(colouring.neighbourhood()), random);
-    }
+    advance_chain(problem, schedule.sweeps_a_block(), inner, planes, chain);
     if (schedule.stage() != Stage::kAdapting) {
       run.traces->record(c, chain, colouring.neighbourhood());
     }
@@ -90,12 +79,7 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
 
   while (schedule.stage() != Stage::kDone) {
     if (observer.stop_requested()) throw Error(ErrorKind::kInterrupt, "stopped on request");
-    if (side_by_side) {
-      pool.for_each(settings.chains,
-                    [&](int c) { advance(c, weights[static_cast<std::size_t>(c)], serial); });
-    } else {
-      for (int c = 0; c < settings.chains; ++c) advance(c, weights.front(), pool);
-    }
+    every_chain.run(advance);
     schedule.block_done();
     observer.swept(schedule.stage(), static_cast<int>(chains.front().sweeps_done));
 
@@ -122,6 +106,7 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
       schedule.sampling_judged(run.verdict.converged);
     }
   }
+  for (LabelChain& chain : chains) chain.visits = {};
   run.prior = chains.front().model.prior;
   run.coupling_ladder = adaptation.choice().ladder;
   run.adapting_sweeps = schedule.adapting_sweeps();

@@ -164,4 +164,19 @@ void total_labels(const ObservedField& field, const Pool& pool, LabelChain& chai
   }
 }
 
+void advance_chain(const LabelProblem& problem, int sweeps, const Pool& pool, WeightPlanes& weights,
+                   LabelChain& chain) {
+  const Colouring& colouring = *problem.field.colouring;
+  prepare_weights(problem.field, chain.model, pool, weights);
+  sweep_labels(colouring, weights, sweeps, Purpose::kLabels, pool, chain);
+  total_labels(problem.field, pool, chain);
+  RandomStream random(chain.key, Purpose::kParameters, chain.sweeps_done);
+  draw_gaussian_classes(*problem.field.grey, chain.totals.classes, problem.prior, random,
+                        chain.model.classes);
+  if (problem.log_partition) {
+    chain.model.prior.beta = draw_coupling(
+        *problem.log_partition, chain.totals.weighted_pairs(colouring.neighbourhood()), random);
+  }
+}
+
 }  // namespace stillfield

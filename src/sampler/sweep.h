@@ -9,6 +9,7 @@
 
 #include "parallel/pool.h"
 #include "sampler/label_chain.h"
+#include "sampler/path_sampling.h"
 
 namespace stillfield {
 
@@ -26,6 +27,17 @@ void sweep_labels(const Colouring& colouring, const WeightPlanes& weights, int s
 
 // Recomputes chain.totals from the labels.
 void total_labels(const ObservedField& field, const Pool& pool, LabelChain& chain);
+
+// The posterior of one field: what all chains share.
+struct LabelProblem {
+  ObservedField field;
+  GaussianPrior prior;
+  const LogPartition* log_partition = nullptr;  // null: the coupling is not drawn
+};
+
+// One block of one chain: labels given the parameters, then parameters given the labels.
+void advance_chain(const LabelProblem& problem, int sweeps, const Pool& pool, WeightPlanes& weights,
+                   LabelChain& chain);
 
 }  // namespace stillfield
 
