@@ -6,6 +6,7 @@
 //   (the least-squares share of the other class in a border pixel)
 // 0 without mixing; P(Z < -1/2 / s) for optics that blur by a Gaussian of s pixels (0.16 at s = 0.5,
 // 0.31 at s = 1).
+// Seen are borders at least three pixels from the rims of blocks.
 // NaN      without such a border
 #ifndef STILLFIELD_DIAGNOSE_BORDER_PULL_H_
 #define STILLFIELD_DIAGNOSE_BORDER_PULL_H_

@@ -31,6 +31,7 @@ class ResidualHistogram {
 
   HistogramDistance distance(const GreyLevels& grey, const GaussianClasses& classes) const;
   double far_share() const;
+  std::int64_t pixels() const { return all_; }  // inner ones
 
  private:
   static constexpr int kEdges = 257;  // bin 0 lies below the first, bin kEdges above the last
