@@ -20,7 +20,7 @@ constexpr char kEpilogue[] =
     "  NAME.entropy.tif      doubt at each pixel, in bits\n"
     "  NAME.labels.png       preview in colour\n"
     "  NAME.record.json      settings, diagnostics, measurements, digests\n"
-    "and for the run: measurements.csv, summary.csv, run.json.\n"
+    "and for the run: measurements.csv, summary.csv, checks.csv, run.json.\n"
     "\n"
     "Options can stand in a file: --config FILE (TOML, section [segment], keys as the options\n"
     "without dashes); the command line wins.\n"

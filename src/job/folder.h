@@ -1,7 +1,8 @@
 // Folders and files through a whole job, with the tables of the run.
 //
-// Writes   per field what segment_field.h or denoise_field.h says; measurements.csv, summary.csv
-//          and run.json, also after an interrupt. Fields that are finished already are left alone.
+// Writes   per field what segment_field.h or denoise_field.h says; measurements.csv, summary.csv,
+//          checks.csv (segment) and run.json, also after an interrupt. Fields that are finished
+//          already are left alone.
 // Errors   of single fields are collected; thrown are those of find_inputs() (image/walk.h) and
 //          prepare_output_folder(), before any work, and Error(kOutput) for the tables
 #ifndef STILLFIELD_JOB_FOLDER_H_
@@ -27,6 +28,7 @@ struct FolderCounts {
   int failed = 0;
   int not_reached = 0;
   int not_converged = 0;  // of those done or skipped
+  int check_failed = 0;   // likewise
   bool interrupted = false;
 };
 

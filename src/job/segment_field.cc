@@ -6,6 +6,8 @@
 #include "image/write.h"
 #include "job/field_frame.h"
 #include "job/field_record.h"
+#include "job/label_draws.h"
+#include "job/model_checks.h"
 #include "job/output_folder.h"
 #include "job/restore_one.h"
 #include "report/class_colours.h"
@@ -89,13 +91,19 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& settings, cons
   describe_grey(grey, record);
   record.run = {active_cpu_target(), pool.threads(), watch.lap(), 0, 0};
 
-  const LabelSampling sampling = restore_one(grey, settings, seed, pool, observer, &memo);
+  LabelSampling sampling = restore_one(grey, settings, seed, pool, observer, &memo);
   describe_sampling(sampling, settings, record);
+  const int draws = draws_for_checks(settings.chains);
+  PredictiveChecks checks(grey, settings.chains, draws, seed);
+  for_label_draws(settings, draws, pool, observer, sampling, [&](const LabelDraw& d) {
+    checks.show(d.chain, d.draw, d.labels, d.model.classes);
+  });
   record.run.sample_seconds = watch.lap();
 
   const fs::path record_file = with_suffix(task.stem, kRecordSuffix);
   fs::remove(record_file);  // from here to the end there is no finished result
   write_maps(task, sampling, settings.classes, options, record);
+  describe_checks(grey, sampling, checks, record);
   record.run.write_seconds = watch.lap();
   write_record(record_file, record);
   return record;

@@ -11,6 +11,8 @@
 #include <string>
 #include <vector>
 
+#include "diagnose/assessment.h"
+#include "diagnose/model_check.h"
 #include "diagnose/verdict.h"
 #include "measure/measurement.h"
 #include "report/named_value.h"
@@ -101,7 +103,8 @@ struct RunFacts {
 inline constexpr char kSegment[] = "segment";
 inline constexpr char kDenoise[] = "denoise";
 
-// The parts from `grey` to `probability` belong to segment, `restoration` to denoise.
+// The parts from `grey` to `probability` and those of the checks belong to segment, `restoration`
+// to denoise.
 struct ImageRecord {
   std::string command;
   std::string version;  // of the program
@@ -118,6 +121,8 @@ struct ImageRecord {
   ProbabilityFacts probability;
   RestorationFacts restoration;
   VerdictFacts verdict;
+  Assessment assessment;
+  std::vector<ModelCheck> checks;
   std::vector<Measurement> measurements;
   std::vector<OutputFile> outputs;
   RunFacts run;

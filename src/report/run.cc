@@ -14,6 +14,8 @@ void describe(Archive& archive, RunImage& image) {
   archive("status", image.status);
   archive("sentence", image.sentence);
   archive("converged", image.converged);
+  archive("verdict", image.verdict);
+  archive("reasons", image.reasons);
   archive("record", image.record);
 }
 

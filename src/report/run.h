@@ -16,7 +16,9 @@ struct RunImage {
   std::string status;      // "done", "skipped" (finished before), "failed", "not reached"
   std::string sentence;    // why it failed; empty otherwise
   bool converged = false;  // of done and skipped images
-  std::string record;      // file relative to the output folder; empty if there is none
+  std::string verdict;     // "sound", "look", "doubtful"; empty where nothing was checked
+  std::vector<std::string> reasons;
+  std::string record;  // file relative to the output folder; empty if there is none
 };
 
 struct RunSummary {
