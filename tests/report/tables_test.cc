@@ -27,7 +27,7 @@ std::string field(const CsvRows& rows, std::size_t row, const std::string& colum
 std::vector<ImageRecord> fields(const std::vector<double>& fractions) {
   std::vector<ImageRecord> records;
   for (const double fraction : fractions) {
-    records.push_back(record_sample("f" + std::to_string(records.size()) + ".png"));
+    records.push_back(record_sample(std::string("f") + std::to_string(records.size()) + ".png"));
     records.back().measurements = {area_fraction(1, fraction, 0.01),
                                    area_fraction(2, 1 - fraction, 0.01)};
   }
