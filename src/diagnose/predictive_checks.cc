@@ -158,7 +158,7 @@ std::vector<ModelCheck> PredictiveChecks::results() const {
   add(correlation(), 0.03, 0.15, inner);
   ModelCheck distribution = one_sided("noise_distribution", &Discrepancies::distance);
   distribution.label = most_distant_class();
-  add(std::move(distribution), 0.03, 0.12, inner);
+  add(std::move(distribution), 0.02, 0.12, inner);
   add(one_sided("slow_trend", &Discrepancies::trend), 0.01, 0.10, inner);
   add(one_sided("border_mixing", &Discrepancies::pull), 0.08, kNever, border);
   add(one_sided("stray_values", &Discrepancies::far), 0.001, 0.02, inner);

@@ -13,7 +13,7 @@
 //   name                T                                                limit   grave
 //   noise_level         spread of the noise variance (local_noise.h)      0.10    0.50
 //   noise_correlation   Moran's I of neighbours, the worse direction      0.03    0.15
-//   noise_distribution  distance of the residuals from normal             0.03    0.12
+//   noise_distribution  distance of the residuals from normal             0.02    0.12
 //   slow_trend          share of the residuals that a surface explains    0.01    0.10
 //   border_mixing       share of the other class in border pixels         0.08    never
 //   stray_values        share of residuals beyond 4 sd                    0.001   0.02
