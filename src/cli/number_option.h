@@ -23,6 +23,11 @@ std::function<std::string(const std::string&)> whole_number(std::uint64_t lowest
 inline constexpr double kLargestCoupling = 5;
 std::string check_coupling(const std::string& text);
 
+// A length with its unit, 320nm, 0.32um (or with a micro sign) or 0.00032mm, in micrometres;
+// greater than 0.
+std::optional<double> parse_length_um(const std::string& text);
+std::string check_length(const std::string& text);
+
 }  // namespace stillfield
 
 #endif  // STILLFIELD_CLI_NUMBER_OPTION_H_

@@ -5,6 +5,7 @@
 
 #include "cli/common_options.h"
 #include "cli/progress.h"
+#include "job/mask.h"
 
 namespace stillfield {
 namespace {
@@ -19,8 +20,10 @@ constexpr char kEpilogue[] =
     "  NAME.probability.tif  probability of each class, one page a class\n"
     "  NAME.entropy.tif      doubt at each pixel, in bits\n"
     "  NAME.labels.png       preview in colour\n"
+    "  NAME.particles.csv    the particles of NAME.labels.tif, one by one\n"
     "  NAME.record.json      settings, diagnostics, measurements, digests\n"
-    "and for the run: measurements.csv, summary.csv, checks.csv, run.json.\n"
+    "and for the run: measurements.csv, summary.csv, particles.csv,\n"
+    "checks.csv, run.json.\n"
     "\n"
     "Options can stand in a file: --config FILE (TOML, section [segment], keys as the options\n"
     "without dashes); the command line wins.\n"
@@ -33,6 +36,9 @@ struct SegmentOptions : CommonOptions {
   std::string neighbours = "4";
   std::string coupling = "auto";
   std::string variance = "own";
+  std::string particle_neighbours = "8";
+  std::string pixel_size;
+  std::string mask;
   bool quick = false;
   SegmentSettings settings;
 };
@@ -48,6 +54,10 @@ int run_segment(SegmentOptions& options) {
   settings.connectivity = options.neighbours == "8" ? Connectivity::kEight : Connectivity::kFour;
   settings.coupling = coupling_settings(options.coupling);
   settings.shared_variance = options.variance == "shared";
+  settings.particles.connectivity = options.particle_neighbours == "4" ? 4 : 8;
+  if (!options.pixel_size.empty()) settings.pixel_size_um = parse_length_um(options.pixel_size);
+  settings.mask = options.mask;
+  settings.mask_sha256 = mask_digest(settings.mask);
   if (options.quick) settings.target = kQuickTarget;
   begin_run(options);
   FolderCounts counts;
@@ -84,6 +94,22 @@ void add_sampling_options(CLI::App& app, SegmentOptions& options) {
                "probability 0.02 (0.01)");
 }
 
+void add_measuring_options(CLI::App& app, SegmentOptions& options) {
+  ParticleSettings& particles = options.settings.particles;
+  app.add_option("--pixel-size", options.pixel_size,
+                 "Side of a pixel, say 0.32um (nm, um or mm); overrides that of the files")
+      ->check(CLI::Validator(check_length, "", ""))
+      ->type_name("LENGTH");
+  add_whole(app, "--min-area", particles.min_area, 1, std::uint64_t{1} << 40,
+            "Pixels; smaller regions are no particles");
+  add_choice(app, "--particle-neighbours", options.particle_neighbours, {"4", "8"},
+             "Neighbours that make one particle");
+  app.add_option("--mask", options.mask,
+                 "Region of interest: not 0. Pixels of 0 are neither seen nor measured. One file "
+                 "for all images, or a folder of files named as the images")
+      ->type_name("FILE|DIR");
+}
+
 }  // namespace
 
 Command add_segment(CLI::App& app) {
@@ -94,6 +120,7 @@ Command add_segment(CLI::App& app) {
   segment->footer(kEpilogue);
   add_inputs_and_output(*segment, *options);
   add_model_options(*segment, *options);
+  add_measuring_options(*segment, *options);
   add_sampling_options(*segment, *options);
   add_run_options(*segment, *options);
   return {segment, [options] { return run_segment(*options); }};

@@ -51,13 +51,16 @@ std::vector<ModelCheck> contrast_facts(const GaussianClasses& classes) {
   return facts;
 }
 
-std::vector<ModelCheck> support_facts(int label, const Volume<float>& probability) {
+std::vector<ModelCheck> support_facts(const GreyLevels& grey, int label,
+                                      const Volume<float>& probability) {
   double sum = 0, square = 0;
   for (int z = 0; z < probability.depth(); ++z) {
     for (int y = 0; y < probability.height(); ++y) {
       const float* row = probability.row(y, z);
       double row_sum = 0, row_square = 0;
+      const std::uint16_t* level = grey.level.row(y, z);
       for (int x = 0; x < probability.width(); ++x) {
+        if (level[x] == grey.missing()) continue;
         row_sum += row[x];
         row_square += static_cast<double>(row[x]) * row[x];
       }
@@ -65,7 +68,7 @@ std::vector<ModelCheck> support_facts(int label, const Volume<float>& probabilit
       square += row_square;
     }
   }
-  const double share = sum / static_cast<double>(probability.extent().sites());
+  const double share = sum / static_cast<double>(grey.observed);
   const double stays = square / sum;  // NaN for a class that never was
   std::vector<ModelCheck> facts = {fact("class_share", label, share, kLeastShare),
                                    fact("class_persistence", label, stays, kLeastPersistence)};
@@ -105,9 +108,10 @@ std::vector<ModelCheck> saturation_facts(const GreyLevels& grey, View<const std:
   return facts;
 }
 
-std::vector<ModelCheck> share_facts(const GreyLevels& grey, double uncertain_share) {
-  const double pixels = static_cast<double>(grey.level.extent().sites());
-  const double missing = 1.0 - static_cast<double>(grey.observed) / pixels;
+std::vector<ModelCheck> share_facts(const GreyLevels& grey, std::int64_t region_pixels,
+                                    double uncertain_share) {
+  const double missing =
+      1.0 - static_cast<double>(grey.observed) / static_cast<double>(region_pixels);
   std::vector<ModelCheck> facts = {fact("uncertain_pixels", 0, uncertain_share, kMostUncertain),
                                    fact("missing_pixels", 0, missing, kMostMissing)};
   judge(facts[0], uncertain_share > kMostUncertain, uncertain_share > kHopelesslyUncertain);

@@ -5,7 +5,7 @@
 //   class_persistence  sum_s p_k(s)^2 / sum_s p_k(s): the probability that a pixel of class k in
 //                      one draw has it in another as well. Near 1 for a class that the image
 //                      supports, near its share for one that splits noise
-//   class_share        sum_s p_k(s) / pixels
+//   class_share        sum_s p_k(s) / pixels; both over observed pixels
 //   saturation         share of the class's pixels at the smallest or largest grey level, whichever
 //                      is more; expected: what its normal distribution puts on that level
 //   uncertain_pixels, missing_pixels   shares of the image
@@ -26,12 +26,15 @@ namespace stillfield {
 std::vector<ModelCheck> contrast_facts(const GaussianClasses& classes);
 
 // Share and persistence of one class from its probability map.
-std::vector<ModelCheck> support_facts(int label, const Volume<float>& probability);
+std::vector<ModelCheck> support_facts(const GreyLevels& grey, int label,
+                                      const Volume<float>& probability);
 
 std::vector<ModelCheck> saturation_facts(const GreyLevels& grey, View<const std::uint8_t> labels,
                                          const GaussianClasses& classes);
 
-std::vector<ModelCheck> share_facts(const GreyLevels& grey, double uncertain_share);
+// region_pixels: of the image, or of its region of interest.
+std::vector<ModelCheck> share_facts(const GreyLevels& grey, std::int64_t region_pixels,
+                                    double uncertain_share);
 
 }  // namespace stillfield
 

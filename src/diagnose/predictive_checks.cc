@@ -34,7 +34,7 @@ struct Sums {
 PredictiveChecks::PredictiveChecks(const GreyLevels& grey, int chains, int draws_a_chain,
                                    std::uint64_t image_seed)
     : grey_(grey),
-      stride_(std::max(1, chains * draws_a_chain / kMostCheckedDraws)),
+      stride_(std::max(1, chains * draws_a_chain / kCheckedDraws)),
       chains_(chains),
       kept_a_chain_((draws_a_chain + stride_ - 1) / stride_),
       seed_(image_seed),

@@ -34,13 +34,13 @@
 namespace stillfield {
 
 inline constexpr double kCheckLevel = 0.01;
-inline constexpr int kMostCheckedDraws = 128;  // of all chains together
+inline constexpr int kCheckedDraws = 128;  // of all chains together
 inline constexpr double kFewestCheckedPixels = 100;
 
 class PredictiveChecks {
  public:
-  // Draws draws_a_chain draws of each chain will be shown; about kMostCheckedDraws of them, evenly
-  // spaced, are looked at. `grey` must outlive this.
+  // Draws draws_a_chain draws of each chain will be shown; kCheckedDraws of them or somewhat
+  // more, evenly spaced, are looked at. `grey` must outlive this.
   PredictiveChecks(const GreyLevels& grey, int chains, int draws_a_chain, std::uint64_t image_seed);
 
   // labels: 1..K. Different chains may be shown at the same time; does not throw.

@@ -1,5 +1,7 @@
 #include "job/field_record.h"
 
+#include <algorithm>
+
 #include "measure/from_trace.h"
 
 namespace stillfield {
@@ -81,6 +83,21 @@ void describe_sampling(const LabelSampling& sampling, const SegmentSettings& set
     if (unit.empty()) continue;
     record.measurements.push_back(measurement_from_summary(traces[i].name, traces[i].label, unit,
                                                            sampling.scalars[i].summary));
+  }
+}
+
+void describe_measured(const std::vector<Measurement>& measured, bool complete,
+                       ImageRecord& record) {
+  for (const Measurement& m : measured) {
+    if (m.name != "area_fraction") {
+      record.measurements.push_back(m);
+    } else if (!complete) {
+      const auto of_traces = std::find_if(record.measurements.begin(), record.measurements.end(),
+                                          [&m](const Measurement& other) {
+                                            return other.name == m.name && other.label == m.label;
+                                          });
+      *of_traces = m;
+    }
   }
 }
 

@@ -1,8 +1,8 @@
 // Folders and files through a whole job, with the tables of the run.
 //
 // Writes   per field what segment_field.h or denoise_field.h says; measurements.csv, summary.csv,
-//          checks.csv (segment) and run.json, also after an interrupt. Fields that are finished
-//          already are left alone.
+//          run.json and (segment) particles.csv and checks.csv, also after an interrupt. Fields that
+//          are finished already are left alone.
 // Errors   of single fields are collected; thrown are those of find_inputs() (image/walk.h) and
 //          prepare_output_folder(), before any work, and Error(kOutput) for the tables
 #ifndef STILLFIELD_JOB_FOLDER_H_

@@ -9,12 +9,11 @@
 
 namespace stillfield {
 
-// Draws a chain that the checks ask for.
-int draws_for_checks(int chains);
-
 // `predictive` has seen its draws; record.model and record.probability are filled in.
-void describe_checks(const GreyLevels& grey, const LabelSampling& sampling,
-                     const PredictiveChecks& predictive, ImageRecord& record);
+// usable: the region of interest; empty: all of the image.
+void describe_checks(const GreyLevels& grey, const Volume<std::uint8_t>& usable,
+                     const LabelSampling& sampling, const PredictiveChecks& predictive,
+                     ImageRecord& record);
 
 }  // namespace stillfield
 

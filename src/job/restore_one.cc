@@ -58,7 +58,8 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
   }
   CouplingAdaptation adaptation(problem.field, problem.prior);
   Schedule schedule(settings.schedule, settings.coupling.mode == CouplingMode::kAuto);
-  run.traces = std::make_unique<Traces>(settings.classes, settings.chains, sampled);
+  run.traces = std::make_unique<Traces>(settings.classes, settings.chains, sampled,
+                                        grey.observed == extent.sites());
   run.counts = std::make_unique<LabelCounts>(colouring, settings.classes, settings.chains,
                                              schedule.first_part());
 
@@ -99,7 +100,7 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
       for (int c = 0; c < settings.chains; ++c) {
         run.counts->take(c, chains[static_cast<std::size_t>(c)]);
       }
-      run.probability = run.counts->quality(pool);
+      run.probability = run.counts->quality(pool, &problem.field);
       run.scalars = summarise_traces(run.traces->all());
       run.verdict = judge_convergence(run.scalars, run.probability.mcse, settings.target);
       run.counts->merge_parts();

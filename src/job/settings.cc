@@ -40,6 +40,13 @@ std::vector<NamedValue> named_settings(const SegmentSettings& settings) {
       {"min_ess", settings.target.min_ess},
       {"max_probability_mcse", settings.target.max_probability_mcse}};
   list.insert(list.end(), rest.begin(), rest.end());
+  list.push_back({"particle_neighbours", whole(settings.particles.connectivity)});
+  list.push_back({"min_area", static_cast<std::uint64_t>(settings.particles.min_area)});
+  if (settings.pixel_size_um) list.push_back({"pixel_size_um", *settings.pixel_size_um});
+  if (!settings.mask.empty()) {
+    list.push_back({"mask", settings.mask.generic_string()});
+    list.push_back({"mask_sha256", settings.mask_sha256});
+  }
   return list;
 }
 

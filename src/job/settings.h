@@ -4,10 +4,13 @@
 
 #include <cstdint>
 #include <filesystem>
+#include <optional>
+#include <string>
 #include <vector>
 
 #include "diagnose/verdict.h"
 #include "image/read.h"
+#include "measure/particles.h"
 #include "model/neighbourhood.h"
 #include "report/named_value.h"
 #include "sampler/coupling.h"
@@ -25,6 +28,10 @@ struct SegmentSettings {
   std::uint64_t seed = 1;
   ScheduleSettings schedule;
   ConvergenceTarget target;
+  ParticleSettings particles;
+  std::optional<double> pixel_size_um;  // > 0; overrides that of the file
+  std::filesystem::path mask;           // file, or folder of files named as the images; 0 = outside
+  std::string mask_sha256;              // of all that `mask` holds (job/mask.h)
 };
 
 // Settings that do not.

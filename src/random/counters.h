@@ -41,7 +41,8 @@ enum class Purpose : std::uint32_t {
   kGroup = 9,       // groups of similar patches: c1 = tile of groups (sampler/patch_groups.h)
   kRedraw = 10,     // values redrawn between sweeps: missing pixels, impulses, unequal noise
   kRecheck = 11,    // noise of the recalibration runs
-  kReplicate = 12   // images drawn to check a model: c0, c1 = pixel, block (diagnose/residual_block.h)
+  kSplitNoise = 12,  // noise that splits an image in two: one normal a pixel
+  kReplicate = 13   // images drawn to check a model: c0, c1 = pixel, block (diagnose/residual_block.h)
 };
 
 inline constexpr std::uint32_t kMaxSlices = 1u << 24;

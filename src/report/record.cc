@@ -130,6 +130,7 @@ void describe(Archive& archive, Measurement& m) {
   archive("rhat", m.rhat);
   archive("ess", m.ess);
   archive("plain_estimate", m.plain_estimate);
+  archive("defined_share", m.defined_share);
 }
 
 template <class Archive>
@@ -150,6 +151,14 @@ void describe(Archive& archive, NoiseFacts& noise) {
 }
 
 template <class Archive>
+void describe(Archive& archive, BlendFacts& blend) {
+  archive("patch", blend.patch);
+  archive("components", blend.components);
+  archive("stage", blend.stage);
+  archive("weight", blend.weight);
+}
+
+template <class Archive>
 void describe(Archive& archive, ChannelFacts& channel) {
   archive("channel", channel.channel);
   archive("noise", channel.noise);
@@ -158,14 +167,13 @@ void describe(Archive& archive, ChannelFacts& channel) {
   archive("saturated_pixels", channel.saturated);
   archive("mean_sd", channel.mean_sd);
   archive("sd_factor", channel.sd_factor);
+  archive("blend", channel.blend);
   archive("scalars", channel.scalars);
 }
 
 template <class Archive>
 void describe(Archive& archive, RestorationFacts& restoration) {
   archive("prior", restoration.prior);
-  archive("patch", restoration.patch);
-  archive("components", restoration.components);
   archive("warming_sweeps", restoration.warming_sweeps);
   archive("sampling_sweeps", restoration.sampling_sweeps);
   archive("channels", restoration.channels);

@@ -28,3 +28,18 @@ TEST_CASE("a coupling is auto, sampled or a number in range") {
     CHECK_FALSE(check_coupling(bad).empty());
   }
 }
+
+TEST_CASE("lengths with their unit, in micrometres") {
+  CHECK(parse_length_um("0.32um") == 0.32);
+  CHECK(parse_length_um("320nm") == Approx(0.32));
+  CHECK(parse_length_um("0.00032mm") == Approx(0.32));
+  CHECK(parse_length_um("2\xc2\xb5m") == 2.0);
+  CHECK(parse_length_um("2\xce\xbcm") == 2.0);
+  for (const char* text :
+       {"", "um", "0.32", "0um", "-1um", "infum", "nanum", "1 um", "1m", "1px"}) {
+    CAPTURE(text);
+    CHECK_FALSE(parse_length_um(text));
+    CHECK_FALSE(check_length(text).empty());
+  }
+  CHECK(check_length("5nm").empty());
+}

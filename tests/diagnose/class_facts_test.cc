@@ -15,6 +15,14 @@ Volume<float> constant_map(float value) {
   return map;
 }
 
+GreyLevels observed_everywhere() {
+  GreyLevels grey;
+  grey.level = Volume<std::uint16_t>({10, 10});
+  grey.levels = 1;
+  grey.observed = 100;
+  return grey;
+}
+
 }  // namespace
 
 TEST_CASE("class contrast is the distance of means in root-mean-square deviations") {
@@ -30,18 +38,18 @@ TEST_CASE("class contrast is the distance of means in root-mean-square deviation
 }
 
 TEST_CASE("persistence is 1 for settled pixels and p for pixels that flip at random") {
-  const auto flipping = support_facts(2, constant_map(0.3F));
+  const auto flipping = support_facts(observed_everywhere(), 2, constant_map(0.3F));
   CHECK(flipping[0].value == Approx(0.3));
   CHECK(flipping[1].value == Approx(0.3));
   CHECK(flipping[1].failed);
   CHECK(flipping[1].grave);
   Volume<float> settled = constant_map(0.0F);
   std::fill_n(settled.row(3), 10, 1.0F);
-  const auto firm = support_facts(1, settled);
+  const auto firm = support_facts(observed_everywhere(), 1, settled);
   CHECK(firm[0].value == Approx(0.1));
   CHECK(firm[1].value == Approx(1.0));
   CHECK_FALSE(firm[1].failed);
-  const auto empty = support_facts(1, constant_map(0.0F));
+  const auto empty = support_facts(observed_everywhere(), 1, constant_map(0.0F));
   CHECK(empty[0].failed);  // an empty class
 }
 
@@ -70,7 +78,7 @@ TEST_CASE("shares of uncertain and missing pixels have limits") {
   GreyLevels grey;
   grey.level = Volume<std::uint16_t>({10, 10});
   grey.observed = 70;
-  const auto facts = share_facts(grey, 0.1);
+  const auto facts = share_facts(grey, 100, 0.1);
   CHECK_FALSE(facts[0].failed);
   CHECK(facts[1].value == Approx(0.3));
   CHECK(facts[1].failed);

@@ -26,12 +26,12 @@ ImageRecord checked(const study::CheckedImage& image, int threads) {
   record.command = kSegment;
   record.probability.uncertain_share = 0;
   describe_sampling(sampling, settings, record);
-  const int draws = draws_for_checks(settings.chains);
-  PredictiveChecks checks(grey, settings.chains, draws, image.seed);
-  for_label_draws(settings, draws, pool, observer, sampling, [&](const LabelDraw& d) {
+  constexpr int kDraws = 32;
+  PredictiveChecks checks(grey, settings.chains, kDraws, image.seed);
+  for_label_draws(settings, kDraws, pool, observer, sampling, [&](const LabelDraw& d) {
     checks.show(d.chain, d.draw, d.labels, d.model.classes);
   });
-  describe_checks(grey, sampling, checks, record);
+  describe_checks(grey, {}, sampling, checks, record);
   return record;
 }
 

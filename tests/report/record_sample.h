@@ -22,7 +22,8 @@ inline Measurement area_fraction(int label, double estimate, double sd) {
           .mcse = sd / 20,
           .rhat = 1.003,
           .ess = 412.5,
-          .plain_estimate = estimate};
+          .plain_estimate = estimate,
+          .defined_share = 1};
 }
 
 inline ImageRecord record_sample(const std::string& path = "heat/a, \"b\".tif") {
@@ -63,7 +64,7 @@ inline ImageRecord record_sample(const std::string& path = "heat/a, \"b\".tif") 
 inline ImageRecord restoration_sample() {
   ImageRecord record = record_sample("yeast/a.tif");
   record.command = kDenoise;
-  record.restoration = {"patches", 6, 20, 25, 2, {}};
+  record.restoration = {"patches", 0, 27, {}};
   ChannelFacts channel;
   channel.channel = "grey";
   channel.noise.kind = "photon";
@@ -73,6 +74,7 @@ inline ImageRecord restoration_sample() {
   channel.observed = 1199;
   channel.missing = 1;
   channel.mean_sd = 2.25;
+  channel.blend = {{6, 20, "tilings", 0.25}, {6, 20, "groups", 0.75}};
   channel.scalars = {{"prior_strength", {}}};
   record.restoration.channels = {channel, channel};
   return record;
