@@ -6,6 +6,7 @@
 #include "image/atomic_file.h"
 #include "image/digest.h"
 #include "image/file_bytes.h"
+#include "report/check_archive.h"
 #include "report/json_archive.h"
 #include "report/versions.h"
 
@@ -252,6 +253,10 @@ void describe(Archive& archive, ImageRecord& record) {
     archive("bootstrap", record.bootstrap);
   }
   archive("verdict", record.verdict);
+  if (record.command != kDenoise) {
+    archive("assessment", record.assessment);
+    archive("checks", record.checks);
+  }
   archive("measurements", record.measurements);
   archive("outputs", record.outputs);
   archive.constant("cautions", cautions());
