@@ -8,7 +8,7 @@
 #include "cli/noise_option.h"
 #include "cli/progress.h"
 #include "core/error.h"
-#include "image/digest.h"
+#include "job/mask.h"
 #include "report/camera_file.h"
 
 namespace stillfield {
@@ -83,9 +83,7 @@ void complete_settings(DenoiseOptions& options) {
   }
   if (!options.saturation.empty()) settings.saturation = parse_number(options.saturation);
   settings.mask = options.mask;
-  if (std::filesystem::is_regular_file(settings.mask)) {
-    settings.mask_sha256 = sha256_of_file(settings.mask);
-  }
+  settings.mask_sha256 = mask_digest(settings.mask);
   settings.learn_from = options.learn_from;
   settings.correlated_noise = options.correlation == "estimate";
   settings.connectivity = options.neighbours == "8" ? Connectivity::kEight : Connectivity::kFour;
@@ -141,7 +139,8 @@ void add_field_options(CLI::App& app, DenoiseOptions& options) {
   add_choice(app, "--prior", options.prior, {"patches", "edges", "smooth"},
              "Field over clean images: patches learned from the image, Laplace or Gaussian "
              "differences of neighbours");
-  add_whole(app, "--patch", settings.patch, 0, 8, "Side of a patch, 4, 6 or 8; 0: by the noise");
+  add_whole(app, "--patch", settings.patch, 0, 8,
+            "Side of a patch, 4, 6 or 8; 0: 6 and 8, blended");
   add_text(app, "--learn-from", options.learn_from, "FILE|DIR",
            "Like images to learn the patches from, instead of each image itself");
   add_choice(app, "--neighbours", options.neighbours, {"4", "8"},

@@ -1,6 +1,11 @@
 #include "cli/number_option.h"
 
 #include <charconv>
+#include <cmath>
+#include <string_view>
+#include <utility>
+
+#include "model/blur.h"
 
 namespace stillfield {
 namespace {
@@ -47,6 +52,32 @@ std::string check_coupling(const std::string& text) {
   const auto value = parse_number(text);
   if (value && *value >= 0 && *value <= kLargestCoupling) return {};
   return "must be auto, sampled or a number from 0 to 5, not '" + text + "'";
+}
+
+std::string check_blur(const std::string& text) {
+  if (text == "auto" || text == "none") return {};
+  const auto value = parse_number(text);
+  if (value && *value >= kSmallestBlur && *value <= kLargestBlur) return {};
+  return "must be auto, none or a number of pixels from 0.2 to 3, not '" + text + "'";
+}
+
+std::optional<double> parse_length_um(const std::string& text) {
+  // The micro sign (U+00B5) and the Greek letter mu (U+03BC) look alike.
+  constexpr std::pair<std::string_view, double> kUnits[] = {
+      {"nm", 1e-3}, {"um", 1.0}, {"\xc2\xb5m", 1.0}, {"\xce\xbcm", 1.0}, {"mm", 1e3}};
+  for (const auto& [unit, micrometres] : kUnits) {
+    if (!text.ends_with(unit)) continue;
+    const auto value = parse_number(text.substr(0, text.size() - unit.size()));
+    if (!value || !std::isfinite(*value) || *value <= 0) return std::nullopt;
+    return *value * micrometres;
+  }
+  return std::nullopt;
+}
+
+std::string check_length(const std::string& text) {
+  if (parse_length_um(text)) return {};
+  return "must be a length above 0 with its unit, such as 0.32um, 320nm or 0.00032mm, not '" +
+         text + "'";
 }
 
 }  // namespace stillfield

@@ -27,6 +27,14 @@ std::function<std::string(const std::string&)> auto_or_whole(std::uint64_t lowes
 inline constexpr double kLargestCoupling = 5;
 std::string check_coupling(const std::string& text);
 
+// auto, none or a number of pixels from 0.2 to 3.
+std::string check_blur(const std::string& text);
+
+// A length with its unit, 320nm, 0.32um (or with a micro sign) or 0.00032mm, in micrometres;
+// greater than 0.
+std::optional<double> parse_length_um(const std::string& text);
+std::string check_length(const std::string& text);
+
 }  // namespace stillfield
 
 #endif  // STILLFIELD_CLI_NUMBER_OPTION_H_

@@ -5,6 +5,7 @@
 
 #include "cli/common_options.h"
 #include "cli/progress.h"
+#include "job/mask.h"
 
 namespace stillfield {
 namespace {
@@ -19,8 +20,9 @@ constexpr char kEpilogue[] =
     "  NAME.probability.tif  probability of each class, one page a class\n"
     "  NAME.entropy.tif      doubt at each pixel, in bits\n"
     "  NAME.labels.png       preview in colour\n"
+    "  NAME.particles.csv    the particles of NAME.labels.tif, one by one\n"
     "  NAME.record.json      settings, diagnostics, measurements, digests\n"
-    "and for the run: measurements.csv, summary.csv, run.json.\n"
+    "and for the run: measurements.csv, summary.csv, particles.csv, run.json.\n"
     "\n"
     "Options can stand in a file: --config FILE (TOML, section [segment], keys as the options\n"
     "without dashes); the command line wins.\n"
@@ -34,7 +36,12 @@ struct SegmentOptions : CommonOptions {
   std::string neighbours = "4";
   std::string coupling = "auto";
   std::string variance = "own";
+  std::string blur = "none";
+  std::string particle_neighbours = "8";
+  std::string pixel_size;
+  std::string mask;
   bool quick = false;
+  bool no_bootstrap = false;
   SegmentSettings settings;
 };
 
@@ -44,6 +51,12 @@ CouplingSettings coupling_settings(const std::string& text) {
   return {CouplingMode::kFixed, parse_number(text).value()};
 }
 
+BlurSettings blur_settings(const std::string& text) {
+  if (text == "auto") return {BlurMode::kAuto, 0};
+  if (text == "none") return {BlurMode::kNone, 0};
+  return {BlurMode::kGiven, parse_number(text).value()};
+}
+
 int run_segment(SegmentOptions& options) {
   SegmentSettings& settings = options.settings;
   settings.classes = options.classes == "auto"
@@ -51,8 +64,15 @@ int run_segment(SegmentOptions& options) {
                          : static_cast<int>(parse_whole(options.classes).value());
   settings.connectivity = options.neighbours == "8" ? Connectivity::kEight : Connectivity::kFour;
   settings.coupling = coupling_settings(options.coupling);
+  settings.blur = blur_settings(options.blur);
   settings.shared_variance = options.variance == "shared";
+  settings.particles.connectivity = options.particle_neighbours == "4" ? 4 : 8;
+  if (!options.pixel_size.empty()) settings.pixel_size_um = parse_length_um(options.pixel_size);
+  settings.mask = options.mask;
+  settings.mask_sha256 = mask_digest(settings.mask);
   if (options.quick) settings.target = kQuickTarget;
+  if (options.no_bootstrap) settings.replicates = 0;
+  settings.replicates -= settings.replicates % 2;
   begin_run(options);
   FolderCounts counts;
   {
@@ -76,6 +96,12 @@ void add_model_options(CLI::App& app, SegmentOptions& options) {
       ->type_name("auto|sampled|VALUE")
       ->capture_default_str();
   add_choice(app, "--variance", options.variance, {"own", "shared"}, "Noise variance of classes");
+  app.add_option("--blur", options.blur,
+                 "The optics' blur, so that no class lines the border of two others: estimated, "
+                 "left out, or its standard deviation")
+      ->check(CLI::Validator(check_blur, "", ""))
+      ->type_name("auto|none|PIXELS")
+      ->capture_default_str();
 }
 
 void add_sampling_options(CLI::App& app, SegmentOptions& options) {
@@ -89,6 +115,29 @@ void add_sampling_options(CLI::App& app, SegmentOptions& options) {
                "probability 0.02 (0.01)");
 }
 
+void add_bootstrap_options(CLI::App& app, SegmentOptions& options) {
+  add_whole(app, "--replicates", options.settings.replicates, 6, 64,
+            "Simulated images that correct the measurements; an odd number counts as one less");
+  app.add_flag("--no-bootstrap", options.no_bootstrap,
+               "Leave the measurements as the posterior has them");
+}
+
+void add_measuring_options(CLI::App& app, SegmentOptions& options) {
+  ParticleSettings& particles = options.settings.particles;
+  app.add_option("--pixel-size", options.pixel_size,
+                 "Side of a pixel, say 0.32um (nm, um or mm); overrides that of the files")
+      ->check(CLI::Validator(check_length, "", ""))
+      ->type_name("LENGTH");
+  add_whole(app, "--min-area", particles.min_area, 1, std::uint64_t{1} << 40,
+            "Pixels; smaller regions are no particles");
+  add_choice(app, "--particle-neighbours", options.particle_neighbours, {"4", "8"},
+             "Neighbours that make one particle");
+  app.add_option("--mask", options.mask,
+                 "Region of interest: not 0. Pixels of 0 are neither seen nor measured. One file "
+                 "for all images, or a folder of files named as the images")
+      ->type_name("FILE|DIR");
+}
+
 }  // namespace
 
 Command add_segment(CLI::App& app) {
@@ -99,6 +148,8 @@ Command add_segment(CLI::App& app) {
   segment->footer(kEpilogue);
   add_inputs_and_output(*segment, *options);
   add_model_options(*segment, *options);
+  add_measuring_options(*segment, *options);
+  add_bootstrap_options(*segment, *options);
   add_sampling_options(*segment, *options);
   add_run_options(*segment, *options);
   return {segment, [options] { return run_segment(*options); }};

@@ -37,7 +37,7 @@ struct DenoiseSettings {
   double impulse_share = 0;          // kShare: the share to start from
   std::optional<double> saturation;  // grey values from here on are saturated
   std::filesystem::path mask;        // file, or folder of files named as the images; 0 = not used
-  std::string mask_sha256;           // of a mask file
+  std::string mask_sha256;           // of all that `mask` holds (job/mask.h)
   std::filesystem::path learn_from;  // file or folder of like images for the patch mixture
   bool correlated_noise = false;     // model a short-range covariance of the noise
   bool recheck = false;              // scale the intervals by restoring re-noised results

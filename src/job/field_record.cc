@@ -1,5 +1,8 @@
 #include "job/field_record.h"
 
+#include <algorithm>
+#include <cstdio>
+
 #include "measure/from_trace.h"
 
 namespace stillfield {
@@ -37,6 +40,14 @@ ModelFacts describe_model(const LabelSampling& sampling, bool coupling_sampled) 
   return model;
 }
 
+std::string blur_note(const BlurFacts& blur) {
+  char text[160];
+  std::snprintf(text, sizeof text,
+                "blurred by about %.2f pixels (standard deviation); the labels account for it",
+                blur.value);
+  return text;
+}
+
 VerdictFacts describe_verdict(const LabelSampling& sampling, int max_sweeps) {
   VerdictFacts verdict;
   verdict.converged = sampling.verdict.converged;
@@ -66,6 +77,10 @@ void describe_grey(const GreyLevels& grey, ImageRecord& record) {
 void describe_sampling(const LabelSampling& sampling, const SegmentSettings& settings,
                        ImageRecord& record) {
   record.model = describe_model(sampling, settings.coupling.mode == CouplingMode::kSampled);
+  record.blur = sampling.blur;
+  if (sampling.blur.estimated && sampling.blur.modelled) {
+    record.input.notes.push_back(blur_note(sampling.blur));
+  }
   for (const CouplingScore& tried : sampling.coupling_ladder) {
     record.coupling_tried.push_back({tried.beta, tried.score});
   }
@@ -81,6 +96,21 @@ void describe_sampling(const LabelSampling& sampling, const SegmentSettings& set
     if (unit.empty()) continue;
     record.measurements.push_back(measurement_from_summary(traces[i].name, traces[i].label, unit,
                                                            sampling.scalars[i].summary));
+  }
+}
+
+void describe_measured(const std::vector<Measurement>& measured, bool complete,
+                       ImageRecord& record) {
+  for (const Measurement& m : measured) {
+    if (m.name != "area_fraction") {
+      record.measurements.push_back(m);
+    } else if (!complete) {
+      const auto of_traces = std::find_if(record.measurements.begin(), record.measurements.end(),
+                                          [&m](const Measurement& other) {
+                                            return other.name == m.name && other.label == m.label;
+                                          });
+      *of_traces = m;
+    }
   }
 }
 

@@ -2,6 +2,8 @@
 #ifndef STILLFIELD_JOB_FIELD_RECORD_H_
 #define STILLFIELD_JOB_FIELD_RECORD_H_
 
+#include <vector>
+
 #include "job/label_sampling.h"
 #include "model/grey_levels.h"
 #include "report/record.h"
@@ -13,6 +15,12 @@ void describe_grey(const GreyLevels& grey, ImageRecord& record);
 
 // Model, coupling, schedule, scalars, probability (without uncertain_share), verdict, measurements.
 void describe_sampling(const LabelSampling& sampling, const SegmentSettings& settings,
+                       ImageRecord& record);
+
+// Adds what was measured on the draws, after describe_sampling. Area fractions stay those of the
+// traces, which saw every sweep, if the field is complete; else those saw the observed pixels
+// alone.
+void describe_measured(const std::vector<Measurement>& measured, bool complete,
                        ImageRecord& record);
 
 }  // namespace stillfield

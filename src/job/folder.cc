@@ -4,12 +4,14 @@
 #include <optional>
 
 #include "core/error.h"
+#include "image/file_bytes.h"
 #include "job/denoise_field.h"
 #include "job/learn_patches.h"
 #include "job/output_folder.h"
 #include "job/plan.h"
 #include "job/segment_field.h"
 #include "report/field_groups.h"
+#include "report/particle_csv.h"
 #include "report/run.h"
 #include "report/tables.h"
 #include "report/versions.h"
@@ -37,6 +39,7 @@ class RunLog {
     summary_.images.back().converged = record.verdict.converged;
     summary_.images.back().record = file.lexically_relative(run_.output).generic_string();
     records_.push_back(record);
+    stems_.push_back(task.stem);
     record_groups_.push_back(summary_.images.back().group);
   }
   void add_failure(const FieldTask& task, const std::string& sentence) {
@@ -61,11 +64,22 @@ class RunLog {
     count("not_converged", counts_.not_converged);
     write_if_changed(run_.output / "measurements.csv", measurements_csv(records_));
     write_if_changed(run_.output / "summary.csv", summary_csv(records_, record_groups_));
+    if (summary_.command == kSegment) {
+      write_if_changed(run_.output / "particles.csv", particles_of_all());
+    }
     write_if_changed(run_.output / "run.json", run_text(summary_));
   }
   const FolderCounts& counts() const { return counts_; }
 
  private:
+  std::string particles_of_all() const {
+    std::vector<std::string> tables;
+    for (const fs::path& stem : stems_) {
+      const std::vector<std::byte> bytes = read_whole(with_suffix(stem, kParticlesSuffix));
+      tables.emplace_back(reinterpret_cast<const char*>(bytes.data()), bytes.size());
+    }
+    return joined_particles_csv(tables);
+  }
   void list(const FieldTask& task, const char* status) {
     RunImage image;
     image.image = task.relative.generic_string();
@@ -80,6 +94,7 @@ class RunLog {
   RunSummary summary_;
   FolderCounts counts_;
   std::vector<ImageRecord> records_;
+  std::vector<fs::path> stems_;  // of the records
   std::vector<std::string> record_groups_;
 };
 

@@ -2,8 +2,11 @@
 
 #include <algorithm>
 #include <cmath>
+#include <span>
+#include <vector>
 
 #include "core/error.h"
+#include "image/digest.h"
 
 namespace stillfield {
 namespace {
@@ -56,6 +59,21 @@ Volume<std::uint8_t> read_mask(const fs::path& mask, const FieldTask& task, cons
     }
   }
   return usable;
+}
+
+std::string mask_digest(const fs::path& mask) {
+  if (fs::is_regular_file(mask)) return sha256_of_file(mask);
+  if (!fs::is_directory(mask)) return {};
+  std::vector<fs::path> files;
+  for (const auto& entry : fs::recursive_directory_iterator(mask)) {
+    if (entry.is_regular_file() && fs::file_size(entry.path()) > 0) files.push_back(entry.path());
+  }
+  std::sort(files.begin(), files.end());
+  std::string list;
+  for (const fs::path& file : files) {
+    list += file.lexically_relative(mask).generic_string() + '\0' + sha256_of_file(file) + '\n';
+  }
+  return sha256_hex(std::as_bytes(std::span(list)));
 }
 
 }  // namespace stillfield

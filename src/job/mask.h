@@ -4,6 +4,7 @@
 
 #include <cstdint>
 #include <filesystem>
+#include <string>
 
 #include "core/volume.h"
 #include "image/read.h"
@@ -17,6 +18,10 @@ namespace stillfield {
 // Error(kInput) if there is no mask for the field, or its size differs.
 Volume<std::uint8_t> read_mask(const std::filesystem::path& mask, const FieldTask& task,
                                const Extent& extent, const ReadLimits& limits);
+
+// SHA-256 of a mask file; of a folder, over the names and contents of all its files; empty for an
+// empty path or one where nothing is. Throws Error(kInput) for what cannot be read.
+std::string mask_digest(const std::filesystem::path& mask);
 
 }  // namespace stillfield
 

@@ -123,7 +123,10 @@ FieldPosterior sample_patches(const PreparedPlane& plane, const DenoiseSettings&
                      result.moments.variance.view());
   }
   if (plane.impulses.share > 0) out.impulse = redraw.impulse_probability();
-  out.field = {name_of(PriorChoice::kPatches), result.patch, result.components, 0, steps_made, {}};
+  for (const PatchShare& s : result.shares) {
+    out.facts.blend.push_back({s.side, s.components, s.groups ? "groups" : "tilings", s.weight});
+  }
+  out.field = {name_of(PriorChoice::kPatches), 0, steps_made, {}};
   return {std::move(result.moments), std::move(result.draws)};
 }
 
@@ -152,7 +155,7 @@ FieldPosterior sample_differences(const PreparedPlane& plane, PriorChoice prior,
                                                          observer.stepped(sweeps, most);
                                                          return observer.stop_requested();
                                                        });
-  out.field = {name_of(prior), 0, 0, result.warming_sweeps, result.sampling_sweeps, {}};
+  out.field = {name_of(prior), result.warming_sweeps, result.sampling_sweeps, {}};
   out.facts.scalars = result.scalars;
   out.converged = result.converged;
   for (const MissedTarget& miss : result.verdict.misses) out.sentences.push_back(miss.sentence);

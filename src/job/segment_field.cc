@@ -1,15 +1,23 @@
 #include "job/segment_field.h"
 
 #include <algorithm>
+#include <cmath>
+#include <limits>
 
-#include "image/read.h"
+#include "image/atomic_file.h"
 #include "image/write.h"
+#include "job/bootstrap.h"
 #include "job/choose_classes.h"
 #include "job/field_frame.h"
 #include "job/field_record.h"
+#include "job/label_draws.h"
+#include "job/measured_draws.h"
 #include "job/output_folder.h"
+#include "job/restore_blurred.h"
 #include "job/restore_one.h"
+#include "job/segment_input.h"
 #include "report/class_colours.h"
+#include "report/particle_csv.h"
 #include "simd/target.h"
 
 namespace stillfield {
@@ -19,17 +27,33 @@ namespace fs = std::filesystem;
 
 constexpr float kCertain = 0.9F;  // pixels whose largest probability is smaller are uncertain
 
+constexpr float kNotMapped = std::numeric_limits<float>::quiet_NaN();
+
+// Sets what lies outside the region of interest.
+template <class T>
+void blank_outside(const Volume<std::uint8_t>& usable, T value, Volume<T>& map) {
+  for (int y = 0; y < usable.height(); ++y) {
+    for (int x = 0; x < usable.width(); ++x) {
+      if (usable.at(x, y) == 0) map.at(x, y) = value;
+    }
+  }
+}
+
+// Of the pixels that are mapped.
 double share_below(const std::vector<Volume<float>>& probability, float limit) {
   const Extent extent = probability.front().extent();
+  std::int64_t mapped = 0;
   std::int64_t below = 0;
   for (int y = 0; y < extent.height; ++y) {
     for (int x = 0; x < extent.width; ++x) {
+      if (std::isnan(probability.front().at(x, y))) continue;
+      ++mapped;
       float largest = 0;
       for (const Volume<float>& p : probability) largest = std::max(largest, p.at(x, y));
       below += largest < limit ? 1 : 0;
     }
   }
-  return static_cast<double>(below) / static_cast<double>(extent.sites());
+  return static_cast<double>(below) / static_cast<double>(mapped);
 }
 
 void write_preview(const fs::path& file, const Volume<std::uint8_t>& labels, int classes) {
@@ -38,7 +62,8 @@ void write_preview(const fs::path& file, const Volume<std::uint8_t>& labels, int
   Volume<std::uint8_t> blue(labels.extent());
   for (int y = 0; y < labels.height(); ++y) {
     for (int x = 0; x < labels.width(); ++x) {
-      const Rgb colour = class_colour(labels.at(x, y), classes);
+      const int label = labels.at(x, y);
+      const Rgb colour = label == 0 ? Rgb{} : class_colour(label, classes);
       red.at(x, y) = colour.red;
       green.at(x, y) = colour.green;
       blue.at(x, y) = colour.blue;
@@ -47,12 +72,15 @@ void write_preview(const fs::path& file, const Volume<std::uint8_t>& labels, int
   write_png(file, {red.view(), green.view(), blue.view()});
 }
 
-void write_maps(const FieldTask& task, const LabelSampling& sampling, int classes,
-                const TiffOptions& options, ImageRecord& record) {
+void write_maps(const FieldTask& task, const LabelSampling& sampling, const SegmentInput& input,
+                ImageRecord& record) {
   const LabelCounts& counts = *sampling.counts;
+  const int classes = input.measure.classes;
+  const TiffOptions& options = input.options;
   const auto finished = [&](const std::string& suffix) { list_output(task, suffix, record); };
   {
-    const Volume<std::uint8_t> labels = counts.most_probable();
+    Volume<std::uint8_t> labels = counts.most_probable();
+    blank_outside(input.usable, std::uint8_t{0}, labels);
     write_tiff(with_suffix(task.stem, ".labels.tif"), labels.view(), options);
     finished(".labels.tif");
     write_preview(with_suffix(task.stem, ".labels.png"), labels, classes);
@@ -61,7 +89,10 @@ void write_maps(const FieldTask& task, const LabelSampling& sampling, int classe
   {
     std::vector<Volume<float>> probability;
     std::vector<TiffPage<float>> pages;
-    for (int k = 0; k < classes; ++k) probability.push_back(counts.probability(k));
+    for (int k = 0; k < classes; ++k) {
+      probability.push_back(counts.probability(k));
+      blank_outside(input.usable, kNotMapped, probability.back());
+    }
     for (int k = 0; k < classes; ++k) {
       pages.push_back(
           {probability[static_cast<std::size_t>(k)].view(), "class " + std::to_string(k + 1)});
@@ -70,7 +101,9 @@ void write_maps(const FieldTask& task, const LabelSampling& sampling, int classe
     finished(".probability.tif");
     record.probability.uncertain_share = share_below(probability, kCertain);
   }
-  write_tiff(with_suffix(task.stem, ".entropy.tif"), counts.entropy().view(), options);
+  Volume<float> entropy = counts.entropy();
+  blank_outside(input.usable, kNotMapped, entropy);
+  write_tiff(with_suffix(task.stem, ".entropy.tif"), entropy.view(), options);
   finished(".entropy.tif");
 }
 
@@ -78,27 +111,34 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& asked, const R
                     const Pool& pool, JobObserver& observer, LogPartitionMemo& memo) {
   ImageRecord record;
   Stopwatch watch;
-  GreyLevels grey;
-  TiffOptions options;
-  std::uint64_t seed = 0;
-  {
-    const Field field = read_page(task.file, task.page, run.limits);
-    grey = make_grey_levels(field.pixels.view());
-    seed = begin_record(task, field, kSegment, named_settings(asked), asked.seed, record);
-    options.pixel_size_um = field.pixel_size_um;
-  }
-  describe_grey(grey, record);
+  SegmentInput input = read_segment_input(task, asked, run.limits, record);
   record.run = {active_cpu_target(), pool.threads(), watch.lap(), 0, 0};
 
-  const SegmentSettings settings = with_chosen_classes(grey, asked, seed, pool, record);
-  const LabelSampling sampling = restore_one(grey, settings, seed, pool, observer, &memo);
+  const SegmentSettings settings = with_chosen_classes(input.grey, asked, input.seed, pool, record);
+  input.measure.classes = settings.classes;
+  LabelSampling sampling = restore_one(input.grey, settings, input.seed, pool, observer, &memo);
+  restore_blurred(settings, pool, observer, sampling);
   describe_sampling(sampling, settings, record);
   add_choice_sentences(record);
+  MeasuredDraws measured(sampling.counts->most_probable().view(), input.pixels.view(),
+                         input.usable.view(), input.measure, settings.chains);
+  for_label_draws(settings, kMeasuredDraws, pool, observer, sampling,
+                  [&](const LabelDraw& draw) { measured.record(draw); });
+  describe_measured(measured.measurements(), input.complete(), record);
+  if (settings.replicates > 0) {
+    record.bootstrap = bootstrap_measurements(
+        {input.grey, input.pixels.view(), input.usable.view(), input.measure, settings, input.seed},
+        pool, observer, sampling, record.measurements);
+  }
   record.run.sample_seconds = watch.lap();
 
   const fs::path record_file = with_suffix(task.stem, kRecordSuffix);
   fs::remove(record_file);  // from here to the end there is no finished result
-  write_maps(task, sampling, settings.classes, options, record);
+  write_maps(task, sampling, input, record);
+  write_text_atomically(
+      with_suffix(task.stem, kParticlesSuffix),
+      particles_csv(record.input, input.measure.pixel_size_um, measured.particles()));
+  list_output(task, kParticlesSuffix, record);
   record.run.write_seconds = watch.lap();
   write_record(record_file, record);
   return record;

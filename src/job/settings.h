@@ -4,17 +4,26 @@
 
 #include <cstdint>
 #include <filesystem>
+#include <optional>
 #include <string>
 #include <vector>
 
 #include "diagnose/verdict.h"
 #include "image/read.h"
+#include "measure/particles.h"
 #include "model/neighbourhood.h"
 #include "report/named_value.h"
 #include "sampler/coupling.h"
 #include "sampler/schedule.h"
 
 namespace stillfield {
+
+// The optics' blur: estimated, left out, or given in pixels (standard deviation).
+enum class BlurMode { kAuto, kNone, kGiven };
+struct BlurSettings {
+  BlurMode mode = BlurMode::kNone;
+  double value = 0.0;  // for kGiven
+};
 
 inline constexpr int kAutoClasses = 0;  // chosen by the data (job/choose_classes.h)
 
@@ -24,10 +33,16 @@ struct SegmentSettings {
   Connectivity connectivity = Connectivity::kFour;
   CouplingSettings coupling;
   bool shared_variance = false;
+  BlurSettings blur;
   int chains = 4;  // 2..16
   std::uint64_t seed = 1;
   ScheduleSettings schedule;
   ConvergenceTarget target;
+  int replicates = 12;  // of the bootstrap (job/bootstrap.h): even, from 6; 0: none
+  ParticleSettings particles;
+  std::optional<double> pixel_size_um;  // > 0; overrides that of the file
+  std::filesystem::path mask;           // file, or folder of files named as the images; 0 = outside
+  std::string mask_sha256;              // of all that `mask` holds (job/mask.h)
 };
 
 // Settings that do not.

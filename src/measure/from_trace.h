@@ -3,7 +3,12 @@
 // Maths    posterior mean, sd and equal-tailed intervals, MCSE, rank-normalised split R-hat, the
 //          smaller of bulk and tail ESS (diagnose/summary.h); plain_estimate is the posterior mean
 // Input    draws in `unit`; label 0 = whole image
-// Output   every number NaN for fewer than 4 draws a chain or a draw that is not finite
+// Missing  a draw that is not finite has no such quantity (no particle to size, say).
+//          defined_share is the share of draws that have it. From kLeastDefinedShare on, mean, sd
+//          and intervals are those of all draws that have it: they hold given that it exists; MCSE,
+//          R-hat and ESS come from the chains without the other draws, cut to the shortest. Below
+//          that share every other number is NaN
+// Output   every number NaN for fewer than 4 draws; MCSE, R-hat and ESS NaN if a chain has fewer
 #ifndef STILLFIELD_MEASURE_FROM_TRACE_H_
 #define STILLFIELD_MEASURE_FROM_TRACE_H_
 
@@ -14,6 +19,8 @@
 #include "measure/measurement.h"
 
 namespace stillfield {
+
+inline constexpr double kLeastDefinedShare = 0.5;
 
 Measurement measurement_from_trace(std::string name, int label, std::string unit,
                                    const Draws& draws);

@@ -56,7 +56,8 @@ std::vector<MeasureKey> measure_keys(const LabelMeasureSettings& settings) {
 
 std::vector<double> measure_labels(View<const std::uint8_t> labels, View<const float> grey,
                                    View<const std::uint8_t> usable,
-                                   const LabelMeasureSettings& settings) {
+                                   const LabelMeasureSettings& settings,
+                                   const ParticleVisit& visit) {
   const double scale = settings.pixel_size_um > 0 ? settings.pixel_size_um : 1.0;
   const std::vector<ClassTotals> totals = class_totals(labels, grey, usable, settings.classes);
   double pixels = 0;
@@ -64,8 +65,9 @@ std::vector<double> measure_labels(View<const std::uint8_t> labels, View<const f
   std::vector<double> values;
   for (int k = 1; k <= settings.classes; ++k) {
     const ClassTotals& t = totals[static_cast<std::size_t>(k - 1)];
-    const ParticleSizes sizes =
-        particle_sizes(find_particles(labels, k, usable, settings.particles).list);
+    const Particles particles = find_particles(labels, k, usable, settings.particles);
+    if (visit) visit(k, particles);
+    const ParticleSizes sizes = particle_sizes(particles.list);
     values.push_back(static_cast<double>(t.pixels) / pixels);
     values.push_back(interface_length(labels, k, usable) * scale);
     values.push_back(sizes.count);

@@ -13,6 +13,7 @@
 #define STILLFIELD_MEASURE_LABEL_MEASURES_H_
 
 #include <cstdint>
+#include <functional>
 #include <limits>
 #include <string>
 #include <vector>
@@ -37,11 +38,15 @@ struct MeasureKey {
 // What measure_labels measures, in its order.
 std::vector<MeasureKey> measure_keys(const LabelMeasureSettings& settings);
 
+// Shown the particles of each class in turn, for those who need more of them.
+using ParticleVisit = std::function<void(int label, const Particles& particles)>;
+
 // One value a key. Planes of equal extent; labels are 1..K; an empty `usable`: all pixels are;
 // `grey` may hold NaN where nothing was observed.
 std::vector<double> measure_labels(View<const std::uint8_t> labels, View<const float> grey,
                                    View<const std::uint8_t> usable,
-                                   const LabelMeasureSettings& settings);
+                                   const LabelMeasureSettings& settings,
+                                   const ParticleVisit& visit = {});
 
 }  // namespace stillfield
 

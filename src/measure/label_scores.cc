@@ -69,7 +69,7 @@ LabelScores score_labels(View<const std::uint8_t> labels,
   for (int y = 0; y < labels.height(); ++y) {
     for (int x = 0; x < labels.width(); ++x) {
       const int z = true_class(truth.at(x, y), s.classes);
-      if (z == 0) continue;
+      if (z == 0 || labels.at(x, y) == 0) continue;
       ++s.pixels;
       const auto found = static_cast<std::size_t>(labels.at(x, y) - 1);
       ++s.confusion[static_cast<std::size_t>(z - 1) * probability.size() + found];

@@ -1,6 +1,7 @@
 // How well labels and their probabilities agree with a known truth.
 //
-// Truth     class 1..K of each pixel; pixels of truth 0 do not count
+// Truth     class 1..K of each pixel; pixels of truth 0 do not count, nor those of label 0, which
+//           lie outside the region of interest
 // Maths     Dice of class k    2 |A and B| / (|A| + |B|)                        (Dice 1945)
 //           Brier score        mean over pixels of sum_k (p_k - 1[z = k])^2, 0..2  (Brier 1950)
 //           reliability        pixels by their largest probability in ten equal bins from 0 to 1:
@@ -38,7 +39,7 @@ struct LabelScores {
   double calibration_error = 0;
 };
 
-// `labels` 1..K; one plane of probability a class. Throws Error(kInput) if a truth is above K.
+// `labels` 0..K; one plane of probability a class. Throws Error(kInput) if a truth is above K.
 LabelScores score_labels(View<const std::uint8_t> labels,
                          const std::vector<View<const float>>& probability,
                          View<const float> truth);

@@ -24,6 +24,8 @@ struct Measurement {
   double rhat = std::numeric_limits<double>::quiet_NaN();
   double ess = std::numeric_limits<double>::quiet_NaN();             // smaller of bulk and tail
   double plain_estimate = std::numeric_limits<double>::quiet_NaN();  // before any bootstrap
+  double defined_share =
+      std::numeric_limits<double>::quiet_NaN();  // of the draws: see from_trace.h
 };
 
 }  // namespace stillfield

@@ -6,6 +6,8 @@
 #include <numbers>
 #include <opencv2/imgproc.hpp>
 
+#include "measure/box_places.h"
+
 namespace stillfield {
 namespace {
 
@@ -21,10 +23,48 @@ cv::Mat class_mask(View<const std::uint8_t> labels, int label, View<const std::u
   return mask;
 }
 
-double frame_weight(const Particle& p, int width, int height) {
-  const double free_places =
-      (static_cast<double>(width) - p.width) * (static_cast<double>(height) - p.height);
-  return free_places > 0 ? static_cast<double>(width) * height / free_places : 0.0;
+// Whether the box with a margin of one pixel leaves the frame or holds an unusable pixel.
+bool touches_edge(const Particle& p, Extent frame, View<const std::uint8_t> usable) {
+  if (p.left == 0 || p.top == 0 || p.left + p.width == frame.width ||
+      p.top + p.height == frame.height) {
+    return true;
+  }
+  if (usable.extent().sites() == 0) return false;
+  for (int y = p.top - 1; y <= p.top + p.height; ++y) {
+    const std::uint8_t* row = usable.row(y);
+    if (std::find(row + p.left - 1, row + p.left + p.width + 1, 0) != row + p.left + p.width + 1) {
+      return true;
+    }
+  }
+  return false;
+}
+
+void weigh(View<const std::uint8_t> usable, Extent frame, std::vector<Particle>& list) {
+  int widest = 0, highest = 0;
+  for (Particle& p : list) {
+    p.on_border = touches_edge(p, frame, usable);
+    if (p.on_border) continue;
+    widest = std::max(widest, p.width);
+    highest = std::max(highest, p.height);
+  }
+  const BoxPlaces boxes(frame, usable, widest, highest);
+  for (Particle& p : list) {
+    if (p.on_border) continue;
+    p.weight =
+        static_cast<double>(boxes.area()) / static_cast<double>(boxes.places(p.width, p.height));
+  }
+}
+
+Particle particle_of(int component, const cv::Mat& stats, const cv::Mat& centroids) {
+  Particle p;
+  p.area = stats.at<int>(component, cv::CC_STAT_AREA);
+  p.left = stats.at<int>(component, cv::CC_STAT_LEFT);
+  p.top = stats.at<int>(component, cv::CC_STAT_TOP);
+  p.width = stats.at<int>(component, cv::CC_STAT_WIDTH);
+  p.height = stats.at<int>(component, cv::CC_STAT_HEIGHT);
+  p.x = centroids.at<double>(component, 0);
+  p.y = centroids.at<double>(component, 1);
+  return p;
 }
 
 }  // namespace
@@ -37,29 +77,25 @@ Particles find_particles(View<const std::uint8_t> labels, int label,
   const int count =
       cv::connectedComponentsWithStats(class_mask(labels, label, usable), component, stats,
                                        centroids, settings.connectivity, CV_32S);
-  std::vector<std::int32_t> number(static_cast<std::size_t>(count));
-  for (int c = 1; c < count; ++c) {
-    Particle p;
-    p.area = stats.at<int>(c, cv::CC_STAT_AREA);
-    if (p.area < settings.min_area) continue;
-    p.left = stats.at<int>(c, cv::CC_STAT_LEFT);
-    p.top = stats.at<int>(c, cv::CC_STAT_TOP);
-    p.width = stats.at<int>(c, cv::CC_STAT_WIDTH);
-    p.height = stats.at<int>(c, cv::CC_STAT_HEIGHT);
-    p.x = centroids.at<double>(c, 0);
-    p.y = centroids.at<double>(c, 1);
-    p.on_border = p.left == 0 || p.top == 0 || p.left + p.width == labels.width() ||
-                  p.top + p.height == labels.height();
-    if (!p.on_border) p.weight = frame_weight(p, labels.width(), labels.height());
-    p.component = static_cast<int>(found.list.size()) + 1;
-    number[static_cast<std::size_t>(c)] = p.component;
-    found.list.push_back(p);
-  }
+  // OpenCV's own order depends on its method: components are numbered as their pixels are met.
+  constexpr std::int32_t kUnmet = -1;
+  std::vector<std::int32_t> number(static_cast<std::size_t>(count), kUnmet);
+  number[0] = 0;
   for (int y = 0; y < labels.height(); ++y) {
     const std::int32_t* in = component.ptr<std::int32_t>(y);
     std::int32_t* out = found.component.row(y);
-    for (int x = 0; x < labels.width(); ++x) out[x] = number[static_cast<std::size_t>(in[x])];
+    for (int x = 0; x < labels.width(); ++x) {
+      std::int32_t& n = number[static_cast<std::size_t>(in[x])];
+      if (n == kUnmet) {
+        Particle p = particle_of(in[x], stats, centroids);
+        const bool counts = p.area >= settings.min_area;
+        n = p.component = counts ? static_cast<int>(found.list.size()) + 1 : 0;
+        if (counts) found.list.push_back(p);
+      }
+      out[x] = n;
+    }
   }
+  weigh(usable, labels.extent(), found.list);
   return found;
 }
 

@@ -1,11 +1,12 @@
 // Particles of one class in a label image: connected components, measured.
 //
 // Components  4- or 8-connected (OpenCV connectedComponentsWithStats)
-// Border      a particle cut by the frame has no size. Those that touch it are left out, and the
-//             others weigh 1 / the chance that a particle of their bounding box w x h lies wholly
-//             inside a frame of W x H: weight = W H / ((W - w)(H - h)) (Miles 1974, Lantuejoul
-//             1980; ISO 13322-1). The sum of weights is the number of particles the frame would
-//             hold if none were cut
+// Border      a particle cut by the edge of the region of interest has no size. Those whose
+//             bounding box touches the edge are left out, and the others weigh 1 / the chance that
+//             a box of their size does not (Miles 1974, Lantuejoul 1980; ISO 13322-1), in whole
+//             pixels: W H / ((W - w - 1)(H - h - 1)) in a frame of W x H; other regions in
+//             measure/box_places.h. The sum of weights is, in expectation over where the region
+//             was laid, the number of particles a region of its area holds
 // Units       pixels
 #ifndef STILLFIELD_MEASURE_PARTICLES_H_
 #define STILLFIELD_MEASURE_PARTICLES_H_
@@ -19,7 +20,9 @@ namespace stillfield {
 
 struct ParticleSettings {
   int connectivity = 8;       // 4 or 8
-  std::int64_t min_area = 1;  // pixels; smaller components are no particles
+  // Pixels; smaller components are no particles. Draws at high noise are full of specks of 1 to 3
+  // pixels, which would outnumber the particles (docs/trust.md).
+  std::int64_t min_area = 4;
 };
 
 struct Particle {
@@ -27,7 +30,7 @@ struct Particle {
   std::int64_t area = 0;
   int left = 0, top = 0, width = 0, height = 0;
   double x = 0, y = 0;     // centroid, pixel centres at whole numbers
-  bool on_border = false;  // touches the frame
+  bool on_border = false;  // its box touches the frame, or what lies outside the region
   double weight = 0;       // 0 on the border
 };
 

@@ -106,7 +106,7 @@ GreyLevels make_grey_levels(View<const float> pixels) {
   }
   const std::int64_t missing = pixels.extent().sites() - range.observed;
   if (missing > 0) {
-    g.notes.push_back(std::to_string(missing) + " missing pixels (not finite numbers)");
+    g.notes.push_back(std::to_string(missing) + " missing pixels (not finite numbers, or masked)");
   }
   g.histogram.assign(static_cast<std::size_t>(g.levels), 0);
   for_each_pixel(pixels, [&g](int x, int y, int z, float v) {

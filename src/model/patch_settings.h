@@ -11,7 +11,8 @@
 namespace stillfield {
 
 struct PatchSettings {
-  int patch = 0;       // side in pixels, 4, 6 or 8; 0: 6 below a relative noise of 40/255, else 8
+  int patch = 0;       // side in pixels, 4, 6 or 8; 0: 6 and 8 (sampler/patch_field.h), and for one
+                       // mixture 6 below a relative noise of 40/255, else 8
   int components = 0;  // of the mixture; 0: 30, 40 above 512^2 pixels
   int tiling_sweeps = 25;  // random tilings of the mixture field
   int group_passes = 2;    // passes of local groups; 0: mixture only

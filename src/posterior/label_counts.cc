@@ -60,7 +60,7 @@ int LabelCounts::sweeps() const {
   return chains_.front().sweeps[0] + chains_.front().sweeps[1];
 }
 
-ProbabilityQuality LabelCounts::quality(const Pool& pool) const {
+ProbabilityQuality LabelCounts::quality(const Pool& pool, const ObservedField* field) const {
   const Colouring& c = *colouring_;
   double total = 0.0;
   std::vector<Batch> batches;
@@ -85,6 +85,9 @@ ProbabilityQuality LabelCounts::quality(const Pool& pool) const {
           RowQuality& sums = rows[static_cast<std::size_t>(row)];
           const std::size_t at = c.plane_row(colour, slice, row);
           for (int j = 0; j < c.sites(colour, slice, row); ++j) {
+            if (field && field->level[at + static_cast<std::size_t>(j)] == field->grey->missing()) {
+              continue;
+            }
             bool bad = false;
             for (int k = 1; k < classes_; ++k) {
               const std::size_t i =
@@ -114,7 +117,7 @@ ProbabilityQuality LabelCounts::quality(const Pool& pool) const {
       }
     }
   }
-  const auto pixels = static_cast<double>(c.extent().sites());
+  const auto pixels = static_cast<double>(field ? field->grey->observed : c.extent().sites());
   quality.mcse = std::sqrt(*std::max_element(variance.begin(), variance.end()) / pixels);
   quality.worst_share = static_cast<double>(worst) / pixels;
   return quality;

@@ -42,7 +42,8 @@ class LabelCounts {
   void merge_parts();
 
   int sweeps() const;  // a chain
-  ProbabilityQuality quality(const Pool& pool) const;
+  // Of the pixels that `field` shows; of all without one.
+  ProbabilityQuality quality(const Pool& pool, const ObservedField* field = nullptr) const;
 
   // Probability of one class (0-based), as float32.
   Volume<float> probability(int k) const;

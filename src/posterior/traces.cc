@@ -2,7 +2,8 @@
 
 namespace stillfield {
 
-Traces::Traces(int classes, int chains, bool with_coupling) : with_coupling_(with_coupling) {
+Traces::Traces(int classes, int chains, bool with_coupling, bool complete)
+    : with_coupling_(with_coupling), complete_(complete) {
   const auto add = [&](const char* name, int label) {
     traces_.push_back(
         {name, label, std::vector<std::vector<double>>(static_cast<std::size_t>(chains))});
@@ -10,7 +11,7 @@ Traces::Traces(int classes, int chains, bool with_coupling) : with_coupling_(wit
   for (const char* name : {"area_fraction", "class_mean", "class_sd"}) {
     for (int k = 1; k <= classes; ++k) add(name, k);
   }
-  add("equal_neighbours", 0);
+  if (complete) add("equal_neighbours", 0);
   if (with_coupling) add("coupling", 0);
 }
 
@@ -18,12 +19,15 @@ void Traces::record(int chain_number, const LabelChain& chain, const Neighbourho
   const auto c = static_cast<std::size_t>(chain_number);
   std::size_t at = 0;
   const auto put = [&](double value) { traces_[at++].chains[c].push_back(value); };
+  const auto counted = [this](const ClassSums& sums) {
+    return static_cast<double>(complete_ ? sums.sites : sums.observed);
+  };
   double sites = 0.0;
-  for (const ClassSums& sums : chain.totals.classes) sites += static_cast<double>(sums.sites);
-  for (const ClassSums& sums : chain.totals.classes) put(static_cast<double>(sums.sites) / sites);
+  for (const ClassSums& sums : chain.totals.classes) sites += counted(sums);
+  for (const ClassSums& sums : chain.totals.classes) put(counted(sums) / sites);
   for (const double mean : chain.model.classes.mean) put(mean);
   for (const double sd : chain.model.classes.sd) put(sd);
-  put(chain.totals.weighted_pairs(neighbourhood) / sites);
+  if (complete_) put(chain.totals.weighted_pairs(neighbourhood) / sites);
   if (with_coupling_) put(chain.model.prior.beta);
 }
 

@@ -17,7 +17,10 @@ struct Trace {
 
 class Traces {
  public:
-  Traces(int classes, int chains, bool with_coupling);
+  // `complete`: every pixel is observed. Otherwise fractions are those of the observed pixels and
+  // equal_neighbours is left out: where nothing is seen, labels follow the prior, whose regions may
+  // hold for thousands of sweeps, and that says nothing about what is measured.
+  Traces(int classes, int chains, bool with_coupling, bool complete = true);
 
   // Adds the current state of one chain. Different chains may record at the same time.
   void record(int chain_number, const LabelChain& chain, const Neighbourhood& neighbourhood);
@@ -30,6 +33,7 @@ class Traces {
 
  private:
   bool with_coupling_;
+  bool complete_;
   std::vector<Trace> traces_;
 };
 

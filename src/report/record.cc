@@ -87,6 +87,15 @@ void describe(Archive& archive, ModelFacts& model) {
 }
 
 template <class Archive>
+void describe(Archive& archive, BlurFacts& blur) {
+  archive("sd_px", blur.value);
+  archive("lower90", blur.lower90);
+  archive("upper90", blur.upper90);
+  archive("estimated", blur.estimated);
+  archive("modelled", blur.modelled);
+}
+
+template <class Archive>
 void describe(Archive& archive, ClassesTried& tried) {
   archive("classes", tried.classes);
   archive("score", tried.score);
@@ -119,6 +128,13 @@ void describe(Archive& archive, ScheduleFacts& schedule) {
 }
 
 template <class Archive>
+void describe(Archive& archive, BootstrapFacts& bootstrap) {
+  archive("replicates", bootstrap.replicates);
+  archive("corrected_measurements", bootstrap.corrected);
+  archive("blur_px", bootstrap.blur);
+}
+
+template <class Archive>
 void describe(Archive& archive, ProbabilityFacts& probability) {
   archive("mcse", probability.mcse);
   archive("share_rhat_above_1_05", probability.share_rhat_above_1_05);
@@ -146,6 +162,7 @@ void describe(Archive& archive, Measurement& m) {
   archive("rhat", m.rhat);
   archive("ess", m.ess);
   archive("plain_estimate", m.plain_estimate);
+  archive("defined_share", m.defined_share);
 }
 
 template <class Archive>
@@ -166,6 +183,14 @@ void describe(Archive& archive, NoiseFacts& noise) {
 }
 
 template <class Archive>
+void describe(Archive& archive, BlendFacts& blend) {
+  archive("patch", blend.patch);
+  archive("components", blend.components);
+  archive("stage", blend.stage);
+  archive("weight", blend.weight);
+}
+
+template <class Archive>
 void describe(Archive& archive, ChannelFacts& channel) {
   archive("channel", channel.channel);
   archive("noise", channel.noise);
@@ -174,14 +199,13 @@ void describe(Archive& archive, ChannelFacts& channel) {
   archive("saturated_pixels", channel.saturated);
   archive("mean_sd", channel.mean_sd);
   archive("sd_factor", channel.sd_factor);
+  archive("blend", channel.blend);
   archive("scalars", channel.scalars);
 }
 
 template <class Archive>
 void describe(Archive& archive, RestorationFacts& restoration) {
   archive("prior", restoration.prior);
-  archive("patch", restoration.patch);
-  archive("components", restoration.components);
   archive("warming_sweeps", restoration.warming_sweeps);
   archive("sampling_sweeps", restoration.sampling_sweeps);
   archive("channels", restoration.channels);
@@ -220,10 +244,12 @@ void describe(Archive& archive, ImageRecord& record) {
     archive("grey_levels", record.grey);
     archive("class_choice", record.class_choice);
     archive("model", record.model);
+    archive("blur", record.blur);
     archive("coupling_tried", record.coupling_tried);
     archive("schedule", record.schedule);
     archive("scalars", record.scalars);
     archive("probability", record.probability);
+    archive("bootstrap", record.bootstrap);
   }
   archive("verdict", record.verdict);
   archive("measurements", record.measurements);

@@ -13,6 +13,7 @@
 
 #include "diagnose/verdict.h"
 #include "measure/measurement.h"
+#include "report/blur_facts.h"
 #include "report/named_value.h"
 #include "report/restoration_facts.h"
 
@@ -93,6 +94,13 @@ struct ProbabilityFacts {
   double uncertain_share = kUnknown;        // of the pixels: largest probability below 0.9
 };
 
+// Of the parametric bootstrap of the measurements.
+struct BootstrapFacts {
+  int replicates = 0;  // 0: not done
+  int corrected = 0;   // measurements; the others were left as they were
+  double blur = 0;     // of the simulated images, standard deviation in pixels
+};
+
 struct VerdictFacts {
   bool converged = false;
   std::vector<std::string> sentences;
@@ -116,7 +124,7 @@ struct RunFacts {
 inline constexpr char kSegment[] = "segment";
 inline constexpr char kDenoise[] = "denoise";
 
-// The parts from `grey` to `probability` belong to segment, `restoration` to denoise.
+// The parts from `grey` to `bootstrap` belong to segment, `restoration` to denoise.
 struct ImageRecord {
   std::string command;
   std::string version;  // of the program
@@ -128,10 +136,12 @@ struct ImageRecord {
   std::string image_seed;  // hexadecimal: JSON readers may round 64-bit integers
   ClassChoiceFacts class_choice;
   ModelFacts model;
+  BlurFacts blur;
   std::vector<CouplingTried> coupling_tried;
   ScheduleFacts schedule;
   std::vector<NamedSummary> scalars;
   ProbabilityFacts probability;
+  BootstrapFacts bootstrap;
   RestorationFacts restoration;
   VerdictFacts verdict;
   std::vector<Measurement> measurements;

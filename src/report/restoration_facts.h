@@ -32,6 +32,14 @@ struct NoiseFacts {
   double correlation_p_value = kUnknown;
 };
 
+// One of the restorations that a channel's result blends (sampler/patch_blend.h).
+struct BlendFacts {
+  int patch = 0;       // side
+  int components = 0;  // of the mixture
+  std::string stage;   // "tilings", "groups"
+  double weight = 1;
+};
+
 struct ChannelFacts {
   std::string channel;  // "grey", "red", "green", "blue"
   NoiseFacts noise;
@@ -40,13 +48,12 @@ struct ChannelFacts {
   std::int64_t saturated = 0;
   double mean_sd = kUnknown;          // mean over pixels of the posterior standard deviation
   double sd_factor = 1;               // by which a recheck widened or narrowed the intervals
+  std::vector<BlendFacts> blend;      // of patches; empty for the other priors
   std::vector<NamedSummary> scalars;  // of sampled parameters
 };
 
 struct RestorationFacts {
   std::string prior;  // "patches", "edges", "smooth"
-  int patch = 0;      // side, and components of the mixture; 0 for the other priors
-  int components = 0;
   int warming_sweeps = 0;  // sweeps of each chain; for patches tilings and passes
   int sampling_sweeps = 0;
   std::vector<ChannelFacts> channels;

@@ -83,7 +83,7 @@ void add_block(const FieldGroup& block, CsvTable& table) {
 std::string measurements_csv(std::span<const ImageRecord> records) {
   CsvTable table(
       "image,page,class,measurement,unit,estimate,sd,lower90,upper90,lower95,upper95,mcse,rhat,ess,"
-      "plain_estimate");
+      "plain_estimate,defined_share");
   for (const ImageRecord& record : records) {
     for (const Measurement& m : record.measurements) {
       table.start_row();
@@ -93,7 +93,7 @@ std::string measurements_csv(std::span<const ImageRecord> records) {
       table.add(m.name);
       table.add(m.unit);
       for (const double value : {m.estimate, m.sd, m.lower90, m.upper90, m.lower95, m.upper95,
-                                 m.mcse, m.rhat, m.ess, m.plain_estimate}) {
+                                 m.mcse, m.rhat, m.ess, m.plain_estimate, m.defined_share}) {
         table.add(value);
       }
     }

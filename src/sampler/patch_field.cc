@@ -1,14 +1,13 @@
 #include "sampler/patch_field.h"
 
 #include <algorithm>
+#include <array>
 #include <cmath>
 
 #include "core/error.h"
 #include "model/patch_tables.h"
-#include "sampler/patch_groups.h"
-#include "sampler/patch_search.h"
-#include "sampler/patch_sums.h"
-#include "sampler/patch_tiling.h"
+#include "sampler/patch_blend.h"
+#include "sampler/patch_run.h"
 
 namespace stillfield {
 namespace {
@@ -16,7 +15,8 @@ namespace {
 constexpr int kQuickTilings = 12;
 constexpr int kUpdates = 4;
 constexpr int kQuickUpdates = 2;
-constexpr int kRowsPerTask = 16;
+constexpr int kJudgedTilings = 12;
+constexpr std::array<int, 2> kSides{6, 8};
 
 double plane_mean(const Volume<float>& v) {
   double total = 0.0;
@@ -28,108 +28,164 @@ double plane_mean(const Volume<float>& v) {
   return total / static_cast<double>(v.extent().sites());
 }
 
-// Calls body(y) for all rows.
-template <class Body>
-void for_rows(const Volume<float>& v, const Pool& pool, const Body& body) {
-  pool.for_bands(v.height(), kRowsPerTask, [&](int first, int last) {
-    for (int y = first; y < last; ++y) body(y);
-  });
+Volume<float> copy(const Volume<float>& from) {
+  Volume<float> to(from.extent());
+  for (int y = 0; y < from.height(); ++y) std::copy_n(from.row(y), from.width(), to.row(y));
+  return to;
 }
 
-class PatchRun {
+// Counts the steps and passes requests to stop on.
+class Steps {
  public:
-  PatchRun(const Volume<float>& value, double noise_sd, PatchTables tables, PhiloxKey key,
-           const Pool& pool, PixelRedraw* redraw)
-      : pool_(pool),
-        key_(key),
-        redraw_(redraw),
-        tables_(std::move(tables)),
-        noise_sd_(noise_sd),
-        scaled_(value.extent(), value.view().offset()),
-        origin_(value.extent()),
-        sums_(origin_),
-        moments_{Volume<float>(value.extent()), Volume<float>(value.extent())} {
-    if (redraw_) observed_ = Volume<float>(value.extent(), value.view().offset());
-    scale(value);
-    for_rows(value, pool_, [&](int y) {
-      if (redraw_) std::copy_n(value.row(y), value.width(), observed_.row(y));
-      std::copy_n(scaled_.row(y), scaled_.width(), origin_.row(y));
-      std::copy_n(value.row(y), value.width(), moments_.mean.row(y));
-      std::fill_n(moments_.variance.row(y), value.width(),
-                  static_cast<float>(noise_sd_ * noise_sd_));
-    });
-  }
+  Steps(const PatchProgress& progress, int steps) : progress_(progress), steps_(steps) {}
 
-  void tiling(std::uint32_t sweep) {
-    refresh(sweep, true);
-    sweep_tiling(scaled_, tables_, key_, sweep, pool_, sums_);
-  }
-
-  void groups(std::uint32_t sweep, std::uint32_t pass, const GroupPass& settings) {
-    if (redraw_) refresh(sweep, false);
-    SearchImage estimate(scaled_.extent());
-    for_rows(scaled_, pool_, [&](int y) {
-      for (int x = 0; x < scaled_.width(); ++x) estimate.row(y)[x] = sums_.mean(x, y);
-    });
-    sums_.clear(pool_);
-    pass_groups(scaled_, estimate, tables_, settings, key_, pass, pool_, sums_);
-  }
-
-  // Mean and variance from the sums, in image units.
-  const IntensityMoments& moments() {
-    for_rows(scaled_, pool_, [&](int y) {
-      float* mean = moments_.mean.row(y);
-      float* variance = moments_.variance.row(y);
-      for (int x = 0; x < scaled_.width(); ++x) {
-        mean[x] = static_cast<float>(double{sums_.mean(x, y)} * noise_sd_ + tables_.centre);
-        variance[x] = static_cast<float>(double{sums_.variance(x, y)} * noise_sd_ * noise_sd_);
-      }
-    });
-    return moments_;
-  }
-
-  IntensityMoments take_moments() { return std::move(moments_); }
-
-  // The pooled mean plus a tiling's deviation, scaled to the pooled variance.
-  Volume<float> draw(std::uint32_t sweep) const {
-    Volume<float> out = draw_tiling_deviation(scaled_, tables_, key_, sweep, pool_);
-    for_rows(out, pool_, [&](int y) {
-      for (int x = 0; x < out.width(); ++x) {
-        out.at(x, y) =
-            moments_.mean.at(x, y) + out.at(x, y) * std::sqrt(moments_.variance.at(x, y));
-      }
-    });
-    return out;
+  void next() {
+    if (progress_ && progress_(done_, steps_)) {
+      throw Error(ErrorKind::kInterrupt, "the restoration was interrupted: run it again");
+    }
+    ++done_;
   }
 
  private:
-  // Observed values anew, if they are redrawn, from the best estimate so far.
-  void refresh(std::uint32_t sweep, bool first_uses_observed) {
-    if (!redraw_) return;
-    if (!first_uses_observed || sweep > 0) moments();
-    redraw_->redraw(moments_, sweep, pool_, observed_);
-    scale(observed_);
-  }
+  const PatchProgress& progress_;
+  int steps_;
+  int done_ = 0;
+};
 
-  void scale(const Volume<float>& value) {
-    for_rows(value, pool_, [&](int y) {
-      for (int x = 0; x < value.width(); ++x) {
-        scaled_.at(x, y) =
-            static_cast<float>((double{value.at(x, y)} - tables_.centre) / noise_sd_);
+// A patch size with its settings and mixture.
+struct Side {
+  PatchSettings settings;
+  PatchMixture own;
+  const PatchMixture* mixture = nullptr;
+
+  GroupPass group_pass() const {
+    return {settings.quick ? settings.patch : settings.patch / 2, settings.group_size,
+            settings.quick ? kQuickUpdates : kUpdates};
+  }
+};
+
+class PatchRestoration {
+ public:
+  PatchRestoration(const Volume<float>& value, double noise_sd, const PatchSettings& settings,
+                   PhiloxKey key, const Pool& pool, PixelRedraw* redraw,
+                   const PatchMixture* learned)
+      : value_(value), noise_sd_(noise_sd), key_(key), pool_(pool), redraw_(redraw) {
+    const PatchPlane plane{&value, noise_sd};
+    PatchSettings s = settings;
+    if (learned) s.patch = learned->side;
+    learned_ = learned != nullptr;
+    white_ = s.noise_correlation.white();
+    judged_ = white_ && !s.quick;
+    if (judged_ && s.patch == 0) {
+      for (const int side : kSides) {
+        s.patch = side;
+        sides_.push_back({resolved_settings(s, {&plane, 1}), {}, learned});
       }
-    });
+    } else {
+      sides_.push_back({resolved_settings(s, {&plane, 1}), {}, learned});
+    }
+    const PatchSettings& first = sides_.front().settings;
+    tilings_ = first.quick ? std::min(first.tiling_sweeps, kQuickTilings) : first.tiling_sweeps;
+    passes_ = first.quick ? std::min(first.group_passes, 1) : first.group_passes;
+    judged_ = judged_ && (passes_ > 0 || sides_.size() > 1);
   }
 
-  const Pool& pool_;
-  PhiloxKey key_;
-  PixelRedraw* redraw_;
-  PatchTables tables_;
+  PatchResult run(const PatchProgress& progress) {
+    const int judging = judged_ ? std::min(tilings_, kJudgedTilings) : 0;
+    const int side_steps = 1 + tilings_ + passes_ + (judged_ ? judging + passes_ : 0);
+    Steps steps(progress, side_steps * static_cast<int>(sides_.size()));
+    PatchResult result;
+    std::vector<IntensityMoments> restorations;
+    Volume<float> usable;
+    for (Side& side : sides_) {
+      steps.next();
+      learn(value_, noise_sd_, side);
+      PatchRun run(value_, tables(side, noise_sd_), key_, pool_, redraw_);
+      restore(side, run, tilings_, steps, [&](bool groups) {
+        if (!judged_ && !groups && passes_ > 0) return;
+        const IntensityMoments& m = run.moments();
+        restorations.push_back({copy(m.mean), copy(m.variance)});
+        result.shares.push_back({side.mixture->side, side.mixture->size(), groups, 1.0});
+      });
+      if (usable.empty()) usable = copy(run.observed());
+    }
+    if (judged_) {
+      const std::vector<double> weights = judge(usable, judging, steps);
+      for (std::size_t i = 0; i < weights.size(); ++i) result.shares[i].weight = weights[i];
+      result.moments = blend(restorations, weights, pool_);
+    } else {
+      result.moments = std::move(restorations.front());
+    }
+    steps.next();
+    draw(usable, result);
+    return result;
+  }
+
+ private:
+  void learn(const Volume<float>& value, double noise_sd, Side& side) const {
+    if (side.mixture) return;
+    const PatchPlane plane{&value, noise_sd};
+    side.own = learn_patch_mixture({&plane, 1}, side.settings, key_, pool_);
+    side.mixture = &side.own;
+  }
+
+  PatchTables tables(const Side& side, double noise_sd) const {
+    const PatchNoise noise =
+        white_ ? PatchNoise{} : patch_noise(side.settings.noise_correlation, side.settings.patch);
+    return make_patch_tables(*side.mixture, noise_sd, plane_mean(value_), TableParts::kAll, pool_,
+                             white_ ? nullptr : &noise);
+  }
+
+  // All steps of one run; `kept` is told when the tilings are done, and when the groups are.
+  template <class Kept>
+  void restore(const Side& side, PatchRun& run, int tilings, Steps& steps, const Kept& kept) {
+    for (int t = 0; t < tilings; ++t) {
+      steps.next();
+      run.tiling(sweep_++);
+    }
+    kept(false);
+    for (int pass = 0; pass < passes_; ++pass) {
+      steps.next();
+      run.groups(sweep_++, static_cast<std::uint32_t>(pass), side.group_pass());
+    }
+    if (passes_ > 0) kept(true);
+  }
+
+  std::vector<double> judge(const Volume<float>& usable, int tilings, Steps& steps) {
+    const SplitNoise split = split_noise(usable, noise_sd_, key_, pool_);
+    std::vector<Volume<float>> restorations;
+    for (const Side& side : sides_) {
+      // Learned anew, if only quickly: a mixture learned from `value` knows the noise of both parts
+      // and would speak for the tilings.
+      Side anew{side.settings, {}, nullptr};
+      anew.settings.quick = true;
+      if (learned_) anew.mixture = side.mixture;
+      learn(split.restored_from, split.noise_sd, anew);
+      PatchRun run(split.restored_from, tables(anew, split.noise_sd), key_, pool_, nullptr);
+      restore(side, run, tilings, steps,
+              [&](bool) { restorations.push_back(copy(run.moments().mean)); });
+    }
+    return blend_weights(restorations, split, value_, usable);
+  }
+
+  void draw(const Volume<float>& usable, PatchResult& result) {
+    const int samples = sides_.front().settings.samples;
+    if (samples == 0) return;
+    const PatchRun run(usable, tables(sides_.front(), noise_sd_), key_, pool_, nullptr);
+    for (int i = 0; i < samples; ++i) result.draws.push_back(run.draw(result.moments, sweep_++));
+  }
+
+  const Volume<float>& value_;
   double noise_sd_;
-  Volume<float> observed_;  // empty unless values are redrawn
-  Volume<float> scaled_;
-  Volume<float> origin_;
-  PatchSums sums_;
-  IntensityMoments moments_;
+  PhiloxKey key_;
+  const Pool& pool_;
+  PixelRedraw* redraw_;
+  bool white_ = true;
+  bool learned_ = false;  // elsewhere
+  bool judged_ = false;   // weights come from split noise
+  std::vector<Side> sides_;
+  int tilings_ = 0, passes_ = 0;
+  std::uint32_t sweep_ = 0;
 };
 
 }  // namespace
@@ -138,54 +194,12 @@ PatchResult restore_patches(const Volume<float>& value, double noise_sd,
                             const PatchSettings& settings, PhiloxKey key, const Pool& pool,
                             PixelRedraw* redraw, const PatchMixture* learned,
                             const PatchProgress& progress) {
-  const PatchPlane plane{&value, noise_sd};
-  PatchSettings s = settings;
-  if (learned) s.patch = learned->side;
-  s = resolved_settings(s, {&plane, 1});
-  const bool white = s.noise_correlation.white();
-  if (redraw && !white) {
+  if (redraw && !settings.noise_correlation.white()) {
     throw Error(ErrorKind::kUsage,
                 "values cannot be redrawn under correlated noise: fill them in, or take the noise "
                 "as white");
   }
-  const int tilings = s.quick ? std::min(s.tiling_sweeps, kQuickTilings) : s.tiling_sweeps;
-  const int passes = s.quick ? std::min(s.group_passes, 1) : s.group_passes;
-  const GroupPass group_pass{s.quick ? s.patch : s.patch / 2, s.group_size,
-                             s.quick ? kQuickUpdates : kUpdates};
-  const int steps = 1 + tilings + passes;
-  int step = 0;
-  const auto pause = [&] {
-    if (progress && progress(step, steps)) {
-      throw Error(ErrorKind::kInterrupt, "the restoration was interrupted: run it again");
-    }
-    ++step;
-  };
-  pause();
-  PatchMixture own;
-  if (!learned) own = learn_patch_mixture({&plane, 1}, s, key, pool);
-  const PatchMixture& mixture = learned ? *learned : own;
-  const PatchNoise noise = white ? PatchNoise{} : patch_noise(s.noise_correlation, s.patch);
-  PatchRun run(value, noise_sd,
-               make_patch_tables(mixture, noise_sd, plane_mean(value), TableParts::kAll, pool,
-                                 white ? nullptr : &noise),
-               key, pool, redraw);
-  std::uint32_t sweep = 0;
-  for (int t = 0; t < tilings; ++t, ++sweep) {
-    pause();
-    run.tiling(sweep);
-  }
-  for (int pass = 0; pass < passes; ++pass, ++sweep) {
-    pause();
-    run.groups(sweep, static_cast<std::uint32_t>(pass), group_pass);
-  }
-  run.moments();
-  PatchResult result;
-  result.patch = mixture.side;
-  result.components = mixture.size();
-  for (int i = 0; i < s.samples; ++i, ++sweep) result.draws.push_back(run.draw(sweep));
-  result.moments = run.take_moments();
-  pause();
-  return result;
+  return PatchRestoration(value, noise_sd, settings, key, pool, redraw, learned).run(progress);
 }
 
 }  // namespace stillfield

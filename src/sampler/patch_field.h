@@ -9,6 +9,10 @@
 //             drawn by a short Gibbs run (sampler/patch_groups.h). The search looks at the data
 //             and the run is short: empirical Bayes
 //          3. all overlapping patch means are pooled by precision (sampler/patch_sums.h)
+//          4. tilings and groups, of patches of side 6 and of side 8 unless one is asked for, are
+//             blended with the weights that restore split noise best (sampler/patch_blend.h)
+// Plainly  `quick`, and correlated noise: one side (6 below a relative noise of 40/255, else 8),
+//          its groups alone
 // Units    those of the image throughout
 // Bytes    the same for any number of threads and any CPU target
 #ifndef STILLFIELD_SAMPLER_PATCH_FIELD_H_
@@ -30,11 +34,18 @@ namespace stillfield {
 // Called between sweeps with the steps done; true asks to stop.
 using PatchProgress = std::function<bool(int step, int steps)>;
 
+// One of the blended restorations.
+struct PatchShare {
+  int side = 0;
+  int components = 0;   // of the mixture
+  bool groups = false;  // after the passes of groups; before them otherwise
+  double weight = 1;
+};
+
 struct PatchResult {
   IntensityMoments moments;
   std::vector<Volume<float>> draws;  // images drawn from the posterior, `samples` of them
-  int patch = 0;                     // side used
-  int components = 0;                // of the mixture used
+  std::vector<PatchShare> shares;
 };
 
 // value: one plane, finite everywhere (missing pixels hold a guess); noise_sd > 0.

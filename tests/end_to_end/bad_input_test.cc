@@ -36,7 +36,8 @@ std::string refusal(const TempFolder& folder, const std::string& name, int class
   if (fs::exists(folder / "out")) {
     for (const auto& entry : fs::directory_iterator(folder / "out")) {
       const std::string left = entry.path().filename().string();
-      CHECK((left == "run.json" || left == "measurements.csv" || left == "summary.csv"));
+      CHECK((left == "run.json" || left == "measurements.csv" || left == "summary.csv" ||
+             left == "particles.csv"));
     }
   }
   return ended.err;

@@ -70,7 +70,7 @@ void check_labels(int classes, const Arguments& model) {
   Arguments command = {"segment", "--classes", std::to_string(classes), "--quick"};
   command.insert(command.end(), model.begin(), model.end());
   const auto save = [classes](const fs::path& in) { save_images(in, classes); };
-  check_same_bytes(command, save, 5 * (classes == 3 ? 3 : 2) + 2, classes == 3);
+  check_same_bytes(command, save, 6 * (classes == 3 ? 3 : 2) + 3, classes == 3);
 }
 
 }  // namespace
@@ -91,6 +91,10 @@ TEST_CASE("the coupling drawn by path sampling: same bytes everywhere") {
   check_labels(2, {"--coupling", "sampled", "--max-sweeps", "600"});
 }
 
+TEST_CASE("labels seen through blur: same bytes everywhere") {
+  check_labels(2, {"--blur", "0.8", "--max-sweeps", "600"});
+}
+
 TEST_CASE("restored intensities, every prior and kind of noise: same bytes everywhere") {
   const auto save = [](const fs::path& in) {
     save_png(in / "grey8.png", draw_scene({64, 48, 3, 1, 40, 60, 15}));
@@ -107,6 +111,21 @@ TEST_CASE("restored intensities, every prior and kind of noise: same bytes every
     const bool draws = command[1] == "--samples";
     check_same_bytes(command, save, 2 * (draws ? 7 : 6) + 2);
   }
+}
+
+TEST_CASE("a region of interest, and particles by other rules: same bytes everywhere") {
+  const TempFolder masks;
+  Volume<float> mask({64, 48});
+  for (int y = 4; y < 40; ++y) {
+    for (int x = 6; x < 60; ++x) mask.at(x, y) = (x * y) % 97 != 0;
+  }
+  save_png(masks / "mask.png", mask);
+  const auto save = [](const fs::path& in) {
+    save_png(in / "grey8.png", draw_scene({64, 48, 2, 1, 60, 80, 25}));
+  };
+  check_same_bytes({"segment", "--classes", "2", "--quick", "--max-sweeps", "600", "--mask",
+                    (masks / "mask.png").string(), "--min-area", "2", "--particle-neighbours", "4"},
+                   save, 6 + 3);
 }
 
 TEST_CASE("another seed gives other bytes") {

@@ -18,9 +18,11 @@ TEST_CASE("version, help and info") {
   CHECK_THAT(help.out, Contains("Exit codes") && Contains("segment") && Contains("Examples"));
   const Ended options = run_program({"segment", "--help"});
   CHECK(options.code == 0);
-  for (const char* name : {"--classes", "--out", "--neighbours", "--coupling", "--variance",
-                           "--chains", "--seed", "--threads", "--max-sweeps", "--quick", "--redo",
-                           "--strict", "--quiet", "--cpu-target", "--max-pixels", "--config"}) {
+  for (const char* name : {"--classes",    "--out",        "--neighbours", "--coupling",
+                           "--variance",   "--chains",     "--seed",       "--threads",
+                           "--max-sweeps", "--quick",      "--redo",       "--strict",
+                           "--quiet",      "--pixel-size", "--min-area",   "--particle-neighbours",
+                           "--mask",       "--replicates", "--no-bootstrap", "--cpu-target", "--max-pixels", "--config"}) {
     CHECK_THAT(options.out, Contains(name));
   }
   const Ended info = run_program({"info"});
@@ -51,6 +53,14 @@ TEST_CASE("wrong usage is exit code 2 with a sentence that names the option") {
   CHECK_THAT(refused({"--classes", "2", "--threads", "0"}), Contains("--threads"));
   CHECK_THAT(refused({"--classes", "2", "--max-sweeps", "10"}), Contains("--max-sweeps"));
   CHECK_THAT(refused({"--classes", "2", "--cpu-target", "abacus"}), Contains("abacus"));
+  for (const char* length : {"0.32", "um", "-1um", "0um", "1e999um", "3 px", "nanum"}) {
+    CHECK_THAT(refused({"--classes", "2", "--pixel-size", length}),
+               Contains("--pixel-size: must be a length above 0 with its unit"));
+  }
+  CHECK_THAT(refused({"--classes", "2", "--min-area", "0"}),
+             Contains("--min-area: must be a whole number"));
+  CHECK_THAT(refused({"--classes", "2", "--particle-neighbours", "6"}),
+             Contains("--particle-neighbours: must be one of 4|8"));
   CHECK_THAT(refused({"--classes", "2", "--sharpen"}), Contains("--sharpen"));
   CHECK(run_program({}).code == 2);
   CHECK_THAT(run_program({"polish"}).err, Contains("polish"));

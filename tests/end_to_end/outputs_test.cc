@@ -128,11 +128,11 @@ TEST_CASE("the record holds settings, digests, diagnostics, verdict and cautions
   CHECK(record["model"]["classes"].size() == 2);
   CHECK(record["model"]["classes"][0]["mean"]["mean"].get<double>() == Approx(1000).margin(60));
   CHECK(record["scalars"].size() == 7);  // 3 a class, and equal_neighbours
-  CHECK(record["measurements"].size() == 6);
+  CHECK(record["measurements"].size() == 6 + 7 * 2);
   CHECK(record["schedule"]["sampling_sweeps"].get<int>() >= 144);
   CHECK(record["verdict"]["converged"].is_boolean());
   CHECK(record["cautions"].dump().find("Not a medical device") != std::string::npos);
-  REQUIRE(record["outputs"].size() == 4);
+  REQUIRE(record["outputs"].size() == 5);
   for (const auto& output : record["outputs"]) {
     const fs::path file = folder / ("out/a" + output["suffix"].get<std::string>());
     CHECK(output["sha256"] == sha256_of_file(file));
@@ -146,12 +146,12 @@ TEST_CASE("tables: a row each, fractions of an image sum to 1, the summary is th
   save_png(folder / "in/c.png", draw_scene({64, 48, 2, 5}));
   REQUIRE(segment(folder / "in", 2, folder / "out").code == 0);
   const CsvRows rows = read_csv(get(folder / "out/measurements.csv"));
-  REQUIRE(rows.size() == 1 + 2 * 6);
+  REQUIRE(rows.size() == 1 + 2 * 20);
   CHECK(rows[1][0] == "a, \"b\".png");
   double sum = 0;
   double of_class_1 = 0;
   for (const auto& row : rows) {
-    REQUIRE(row.size() == 15);
+    REQUIRE(row.size() == 16);
     if (row[3] != "area_fraction") continue;
     sum += number(row[5]);
     if (row[2] == "1") of_class_1 += number(row[5]);
@@ -163,7 +163,7 @@ TEST_CASE("tables: a row each, fractions of an image sum to 1, the summary is th
   }
   CHECK(sum == Approx(2).epsilon(1e-9));
   const CsvRows summary = read_csv(get(folder / "out/summary.csv"));
-  REQUIRE(summary.size() == 1 + 6);
+  REQUIRE(summary.size() == 1 + 20);
   CHECK(summary[1][1] == "area_fraction");
   CHECK(summary[1][3] == "2");
   CHECK(number(summary[1][5]) == Approx(of_class_1 / 2));

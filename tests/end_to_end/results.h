@@ -12,8 +12,9 @@ namespace stillfield::test {
 
 using Tree = std::map<std::string, std::string>;  // relative path -> content
 
-inline const std::vector<std::string> kResultSuffixes = {
-    ".labels.tif", ".labels.png", ".probability.tif", ".entropy.tif", ".record.json"};
+inline const std::vector<std::string> kResultSuffixes = {".labels.tif",      ".labels.png",
+                                                         ".probability.tif", ".entropy.tif",
+                                                         ".particles.csv",   ".record.json"};
 
 // Every file below `folder`, hidden ones too. Records come without their "run" object, the one
 // place where equal runs may differ; run.json is left out.

@@ -60,3 +60,21 @@ TEST_CASE("a mask of another size is refused with both sizes") {
                          }),
              Contains("4 x 2") && Contains("5 x 2"));
 }
+
+TEST_CASE("the digest of a mask follows its content, of a folder also the names in it") {
+  const TempFolder folder;
+  CHECK(mask_digest({}).empty());
+  CHECK(mask_digest(folder / "gone").empty());
+  save_mask(folder / "masks/a.png", {4, 2});
+  save_mask(folder / "m.png", {4, 2});
+  const std::string file = mask_digest(folder / "m.png");
+  const std::string before = mask_digest(folder / "masks");
+  CHECK(file.size() == 64);
+  save_mask(folder / "m.png", {4, 3});
+  CHECK(mask_digest(folder / "m.png") != file);
+  save_mask(folder / "masks/heat/b.png", {4, 2});
+  const std::string two = mask_digest(folder / "masks");
+  CHECK(two != before);
+  fs::rename(folder / "masks/heat/b.png", folder / "masks/heat/c.png");
+  CHECK(mask_digest(folder / "masks") != two);
+}

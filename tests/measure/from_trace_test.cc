@@ -51,3 +51,47 @@ TEST_CASE("the sample size of a measurement is known only if both parts are") {
   s.ess_tail = 300;
   CHECK(measurement_from_summary("a", 0, "1", s).ess == 300);
 }
+
+TEST_CASE("draws without the quantity are left out, and their share is told") {
+  const double none = std::nan("");
+  std::vector<std::vector<double>> chains(4);
+  std::vector<double> there;
+  for (int c = 0; c < 4; ++c) {
+    for (int i = 0; i < 50; ++i) {
+      const bool missing = i % 10 == 3 || (c == 2 && i == 49);
+      const double value = 5 + 0.01 * ((37 * i + 11 * c) % 101);
+      chains[static_cast<std::size_t>(c)].push_back(missing ? none : value);
+      if (!missing) there.push_back(value);
+    }
+  }
+  const Measurement m = measurement_from_trace("d50", 2, "px", Draws(chains));
+  const TraceSummary s = summarise(Draws(there, 1));
+  CHECK(m.defined_share == 179.0 / 200);
+  CHECK(m.estimate == s.mean);
+  CHECK(m.sd == s.sd);
+  CHECK(m.lower90 == s.lower90);
+  CHECK(m.upper95 == s.upper95);
+  CHECK(std::isfinite(m.mcse));
+  CHECK(std::isfinite(m.rhat));
+
+  CHECK(measurement_from_trace("d50", 2, "px", Draws(there, 1)).defined_share == 1);
+}
+
+TEST_CASE("a quantity that most draws lack has no figures; one chain without it no diagnostics") {
+  const double none = std::nan("");
+  std::vector<std::vector<double>> chains(4, std::vector<double>(20, none));
+  for (int i = 0; i < 19; ++i) chains[0][static_cast<std::size_t>(i)] = i;
+  const Measurement rare = measurement_from_trace("d50", 1, "px", Draws(chains));
+  CHECK(rare.defined_share == 19.0 / 80);
+  CHECK(std::isnan(rare.estimate));
+  for (int i = 0; i < 20; ++i) {
+    chains[1][static_cast<std::size_t>(i)] = i;
+    chains[2][static_cast<std::size_t>(i)] = i;
+  }
+  const Measurement three = measurement_from_trace("d50", 1, "px", Draws(chains));
+  CHECK(three.defined_share == 59.0 / 80);
+  CHECK(std::isfinite(three.estimate));
+  CHECK(std::isfinite(three.lower90));
+  CHECK(std::isnan(three.rhat));
+  CHECK(std::isnan(three.mcse));
+}

@@ -27,7 +27,7 @@ TEST_CASE("measurements of a drawn scene, in pixels and in micrometres") {
   CHECK((keys[8].name == "area_fraction" && keys[8].label == 2 && keys[8].unit == "1"));
   CHECK(v[8] == 12.0 / 200);
   CHECK(v[0] == 188.0 / 200);
-  CHECK(v[10] == Approx(200.0 / ((20 - 4) * (10 - 3))));
+  CHECK(v[10] == Approx(200.0 / ((20 - 4 - 1) * (10 - 3 - 1))));
   CHECK(v[11] == 12.0);
   CHECK((keys[13].name == "d50" && keys[13].unit == "px"));
   CHECK(v[13] == Approx(std::sqrt(48 / 3.14159265358979)));

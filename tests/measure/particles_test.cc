@@ -52,7 +52,7 @@ TEST_CASE("rectangles are found with area, box, centroid and border weight") {
   CHECK(box->x == Approx(4.5));
   CHECK(box->y == Approx(3.0));
   CHECK_FALSE(box->on_border);
-  CHECK(box->weight == Approx(20.0 * 10 / ((20 - 4) * (10 - 3))));
+  CHECK(box->weight == Approx(20.0 * 10 / ((20 - 4 - 1) * (10 - 3 - 1))));
   CHECK(four.component.at(4, 3) == box->component);
   for (const Particle& p : four.list) {
     if (p.area == 5) CHECK((p.on_border && p.weight == 0));

@@ -54,3 +54,15 @@ TEST_CASE("traces without a sampled coupling do not list it, and clearing keeps 
   CHECK(traces.all().size() == 10);
   CHECK(traces.all().front().chains.size() == 4);
 }
+
+TEST_CASE("of a field with unseen pixels the seen ones count, and pairs are not listed") {
+  Traces traces(2, 1, false, false);
+  LabelChain chain = chain_with(60, 40, 0.5);
+  chain.totals.classes[0].observed = 6;
+  chain.totals.classes[1].observed = 2;
+  traces.record(0, chain, make_neighbourhood(Connectivity::kFour));
+  REQUIRE(traces.all().size() == 6);
+  CHECK(traces.all()[0].chains[0][0] == 0.75);
+  CHECK(traces.all()[1].chains[0][0] == 0.25);
+  CHECK(traces.all().back().name == "class_sd");
+}

@@ -22,7 +22,8 @@ inline Measurement area_fraction(int label, double estimate, double sd) {
           .mcse = sd / 20,
           .rhat = 1.003,
           .ess = 412.5,
-          .plain_estimate = estimate};
+          .plain_estimate = estimate,
+          .defined_share = 1};
 }
 
 inline ImageRecord record_sample(const std::string& path = "heat/a, \"b\".tif") {
@@ -45,6 +46,7 @@ inline ImageRecord record_sample(const std::string& path = "heat/a, \"b\".tif") 
   record.class_choice = {2, 1, 3, -4.5, {{1, -900.5, 2.5, 1.25}, {2, -898, 0, 0}}};
   record.model = {
       1.25, kUnknown, kUnknown, kUnknown, {{1, 0, summary, summary}, {2, -0.3, summary, summary}}};
+  record.blur = {0.8, 0.7, 0.9, true, true};
   record.coupling_tried = {{1.0, -100.5}, {1.25, -99.75}};
   record.schedule = {240, 96, 144, false, true};
   record.scalars = {{"area_fraction of class 1", summary}, {"equal_neighbours", {}}};
@@ -60,7 +62,7 @@ inline ImageRecord record_sample(const std::string& path = "heat/a, \"b\".tif") 
 inline ImageRecord restoration_sample() {
   ImageRecord record = record_sample("yeast/a.tif");
   record.command = kDenoise;
-  record.restoration = {"patches", 6, 20, 25, 2, {}};
+  record.restoration = {"patches", 0, 27, {}};
   ChannelFacts channel;
   channel.channel = "grey";
   channel.noise.kind = "photon";
@@ -70,6 +72,7 @@ inline ImageRecord restoration_sample() {
   channel.observed = 1199;
   channel.missing = 1;
   channel.mean_sd = 2.25;
+  channel.blend = {{6, 20, "tilings", 0.25}, {6, 20, "groups", 0.75}};
   channel.scalars = {{"prior_strength", {}}};
   record.restoration.channels = {channel, channel};
   return record;

@@ -41,7 +41,8 @@ TEST_CASE("measurements are tidy: a row each, all columns, names quoted") {
   REQUIRE(rows.size() == 3);
   CHECK(rows[0] == std::vector<std::string>{"image", "page", "class", "measurement", "unit",
                                             "estimate", "sd", "lower90", "upper90", "lower95",
-                                            "upper95", "mcse", "rhat", "ess", "plain_estimate"});
+                                            "upper95", "mcse", "rhat", "ess", "plain_estimate",
+                                            "defined_share"});
   for (const auto& row : rows) CHECK(row.size() == rows[0].size());
   CHECK(field(rows, 1, "image") == "heat/a, \"b\".tif");
   CHECK(field(rows, 1, "page") == "2");

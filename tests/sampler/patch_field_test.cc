@@ -23,6 +23,17 @@ void check_finite(const IntensityMoments& m) {
   }
 }
 
+// The scene with a chirp: flat parts alone are restored far better than any nominal interval.
+Volume<float> chirped_scene(int side) {
+  Volume<float> clean = scene(side, side);
+  for (int y = 0; y < side; ++y) {
+    for (int x = 0; x < side; ++x) {
+      clean.at(x, y) += 25.0f * static_cast<float>(std::sin(0.008 * (x * x + y * y)));
+    }
+  }
+  return clean;
+}
+
 // Counts its calls and checks what it is given.
 class CountingRedraw : public PixelRedraw {
  public:
@@ -68,16 +79,16 @@ TEST_CASE("a restored image has the same bytes on every CPU target") {
 }
 
 TEST_CASE("most of the noise goes and the intervals cover") {
-  // Bounds from the definition: the noise's own mean square is sd^2 = 400. A piecewise smooth
-  // scene must lose at least three quarters of it, in the quick mode too; a nominal 90 % interval
-  // must hold the truth at .8 to .99 of these 96^2 correlated errors.
-  const Volume<float> clean = scene(96, 96);
+  // Bounds from the definition: the noise's own mean square is sd^2 = 400. The scene must lose
+  // at least three quarters of it, in the quick mode too; a nominal 90 % interval must hold the
+  // truth at .8 to .99 of these 96^2 correlated errors.
+  const Volume<float> clean = chirped_scene(96);
   const Volume<float> value = noisy(clean, 20.0);
   for (const bool quick : {false, true}) {
     PatchSettings s;
     s.quick = quick;
     const PatchResult r = restore(value, 20.0, s, 2);
-    CAPTURE(quick, r.patch, r.components);
+    CAPTURE(quick, r.shares.size());
     CHECK(mean_square(r.moments.mean, clean) < 100.0);
     CHECK(coverage(r.moments, clean) > 0.8);
     CHECK(coverage(r.moments, clean) < 0.995);
@@ -85,13 +96,7 @@ TEST_CASE("most of the noise goes and the intervals cover") {
 }
 
 TEST_CASE("modelling the noise's correlation restores better, and its intervals cover") {
-  // The scene with a chirp: flat parts alone are restored far better than any nominal interval.
-  Volume<float> clean = scene(96, 96);
-  for (int y = 0; y < 96; ++y) {
-    for (int x = 0; x < 96; ++x) {
-      clean.at(x, y) += 25.0f * static_cast<float>(std::sin(0.008 * (x * x + y * y)));
-    }
-  }
+  const Volume<float> clean = chirped_scene(96);
   const Volume<float> value = noisy(clean, 20.0, 0.8);
   PatchSettings s;
   s.quick = true;
@@ -106,9 +111,34 @@ TEST_CASE("modelling the noise's correlation restores better, and its intervals 
   CHECK(coverage(modelled.moments, clean) < 0.995);
 }
 
+TEST_CASE("an open patch size blends both, before and after the groups") {
+  const Volume<float> clean = scene(64, 64);
+  const Volume<float> value = noisy(clean, 20.0);
+  PatchSettings s = light(0);
+  const PatchResult blended = restore(value, 20.0, s, 2);
+  REQUIRE(blended.shares.size() == 4);
+  double total = 0, worst = 0;
+  for (const PatchShare& share : blended.shares) {
+    CHECK(share.weight >= 0);
+    total += share.weight;
+  }
+  CHECK(total == Approx(1.0));
+  CHECK(blended.shares[0].side == 6);
+  CHECK_FALSE(blended.shares[0].groups);
+  CHECK(blended.shares[3].side == 8);
+  CHECK(blended.shares[3].groups);
+  // Weights that sum to 1 cannot be worse than the worst of what they blend (convexity).
+  for (const int side : {6, 8}) {
+    s = light(side);
+    worst = std::max(worst, mean_square(restore(value, 20.0, s, 2).moments.mean, clean));
+  }
+  CHECK(mean_square(blended.moments.mean, clean) <= 1.05 * worst);
+}
+
 TEST_CASE("a correlation of zero is white noise up to rounding") {
   const Volume<float> value = noisy(scene(37, 26), 15.0);
   PatchSettings s = light(6);
+  s.quick = true;  // correlated noise is not split, so its restorations are not blended
   const PatchResult white = restore(value, 15.0, s, 1);
   s.noise_correlation = moving_average_model(0.0, 1);
   const PatchResult zero = restore(value, 15.0, s, 1);
@@ -208,12 +238,16 @@ TEST_CASE("draws spread about the mean as the variance says") {
 TEST_CASE("a mixture learned elsewhere is used, and stopping is heard") {
   const Volume<float> value = noisy(scene(30, 24), 10.0);
   const PatchPlane plane{&value, 10.0};
-  const PatchMixture mixture = learn_patch_mixture({&plane, 1}, light(6), kSceneKey, Pool(1));
+  PatchSettings quick = light(6);
+  quick.quick = true;
+  const PatchMixture mixture = learn_patch_mixture({&plane, 1}, quick, kSceneKey, Pool(1));
   PatchSettings s = light(8);
+  s.quick = true;
   const PatchResult r =
       restore_patches(value, 10.0, s, kSceneKey, Pool(1), nullptr, &mixture, nullptr);
-  CHECK(r.patch == 6);
-  CHECK(same_bytes(r.moments.mean, restore(value, 10.0, light(6), 1).moments.mean));
+  REQUIRE(r.shares.size() == 1);
+  CHECK(r.shares.front().side == 6);
+  CHECK(same_bytes(r.moments.mean, restore(value, 10.0, quick, 1).moments.mean));
   int last = -1;
   const auto stop_at_three = [&last](int step, int steps) {
     CHECK(step == last + 1);
@@ -222,7 +256,7 @@ TEST_CASE("a mixture learned elsewhere is used, and stopping is heard") {
     return step == 3;
   };
   CHECK_THROWS_AS(
-      restore_patches(value, 10.0, light(6), kSceneKey, Pool(1), nullptr, nullptr, stop_at_three),
+      restore_patches(value, 10.0, quick, kSceneKey, Pool(1), nullptr, nullptr, stop_at_three),
       Error);
   CHECK(last == 3);
 }

@@ -1,15 +1,16 @@
 """Markdown tables and verdicts for restoration.py, from the results of its run_row and run_speed.
 
-Targets. Noise level given: the mean gain over the best filter of each image at least +1.0 dB in every
-row, no image below -0.1 dB, mean SSIM not below any filter's; nominal 90 % intervals cover .87 to .96 of
+Targets. Noise level given: the mean gain over the best of the four filters for each image (non-local
+means, total variation, wavelet, bilateral) at least +1.0 dB in every row, no image below -0.1 dB, mean SSIM not below any filter's; nominal 90 % intervals cover .87 to .96 of
 all pixels of a row and at least .86 of its strongest edges. Noise level estimated: mean gain at least
 +0.8 dB. Speed on two cores: 40 seconds per megapixel; with --quick 6 seconds and at most 0.4 dB lost;
 at most 200 bytes of memory per pixel.
 """
 import statistics
 
-FAMILIES = ("nlm", "tv", "wavelet", "bilateral")
+FAMILIES = ("nlm", "tv", "wavelet", "bilateral")  # those the targets speak of
 TITLES = ("NLM", "TV", "wavelet", "bilateral")
+WITH_SHIFTED = (*FAMILIES, "shifted")  # and one that is harder to beat
 
 
 def table(header, rows):
@@ -17,16 +18,16 @@ def table(header, rows):
     return "\n".join(lines + ["| " + " | ".join(row) + " |" for row in rows]) + "\n"
 
 
-def best_filter(image):
-    return max(FAMILIES, key=lambda family: image["baselines"][family]["psnr"])
+def best_filter(image, families=FAMILIES):
+    return max(families, key=lambda family: image["baselines"][family]["psnr"])
 
 
-def best_psnr(image):
-    return image["baselines"][best_filter(image)]["psnr"]
+def best_psnr(image, families=FAMILIES):
+    return image["baselines"][best_filter(image, families)]["psnr"]
 
 
-def gain(image):
-    return image["ours"]["psnr"] - best_psnr(image)
+def gain(image, families=FAMILIES):
+    return image["ours"]["psnr"] - best_psnr(image, families)
 
 
 def mean(values):
@@ -44,24 +45,27 @@ def edge_coverage(pictures):
     return covered / sum(image["ours"]["edge_pixels"] for image in pictures)
 
 
-def baseline_means(result, figure):
-    return [mean(i["baselines"][family][figure] for i in result["images"]) for family in FAMILIES]
+def baseline_means(result, figure, families=FAMILIES):
+    return [mean(i["baselines"][family][figure] for i in result["images"]) for family in families]
 
 
 def psnr_table(results, measured):
-    header = ["row", "noisy", *TITLES, "best of each image"]
-    header += ["**ours**", "gain, mean", "of photographs", "min..max", "worst image"] if measured else []
+    header = ["row", "noisy", *TITLES, "shifted wavelet", "best of the four, each image"]
+    header += ["**ours**", "gain, mean", "of photographs", "min..max", "worst image",
+               "gain over shifted wavelets too", "min..max"] if measured else []
     rows = []
     for result in results:
         pictures = result["images"]
         row = [result["row"], f"{mean(i['noisy'] for i in pictures):.2f}"]
-        row += [f"{value:.2f}" for value in baseline_means(result, "psnr")]
+        row += [f"{value:.2f}" for value in baseline_means(result, "psnr", WITH_SHIFTED)]
         row.append(f"{mean(map(best_psnr, pictures)):.2f}")
         if measured:
             gains = [gain(i) for i in pictures]
             row += [f"**{mean(i['ours']['psnr'] for i in pictures):.2f}**", f"{mean(gains):+.2f}",
                     f"{mean(gain(i) for i in pictures if i['photograph']):+.2f}",
                     f"{min(gains):+.2f}..{max(gains):+.2f}", min(pictures, key=gain)["name"]]
+            harder = [gain(i, WITH_SHIFTED) for i in pictures]
+            row += [f"{mean(harder):+.2f}", f"{min(harder):+.2f}..{max(harder):+.2f}"]
         rows.append(row)
     return table(header, rows)
 
@@ -69,9 +73,9 @@ def psnr_table(results, measured):
 def ssim_table(results, measured):
     rows = []
     for result in results:
-        row = [result["row"], *(share(value) for value in baseline_means(result, "ssim"))]
+        row = [result["row"], *(share(value) for value in baseline_means(result, "ssim", WITH_SHIFTED))]
         rows.append(row + ([share(mean(i["ours"]["ssim"] for i in result["images"]))] if measured else []))
-    return table(["row", *TITLES] + (["**ours**"] if measured else []), rows)
+    return table(["row", *TITLES, "shifted wavelet"] + (["**ours**"] if measured else []), rows)
 
 
 def coverage_table(results):
@@ -117,12 +121,12 @@ def tuned_settings(image):
 
 
 def image_table(result, measured):
-    header = ["image", *TITLES, "best SSIM"]
+    header = ["image", *TITLES, "shifted wavelet", "best SSIM"]
     header += ["ours", "gain", "SSIM", "coverage", "edges", "width / s"] if measured else []
     rows = []
     for image in result["images"]:
-        row = [image["name"], *(f"{image['baselines'][family]['psnr']:.2f}" for family in FAMILIES),
-               share(max(image["baselines"][family]["ssim"] for family in FAMILIES))]
+        row = [image["name"], *(f"{image['baselines'][family]['psnr']:.2f}" for family in WITH_SHIFTED),
+               share(max(image["baselines"][family]["ssim"] for family in WITH_SHIFTED))]
         if measured:
             ours = image["ours"]
             row += [f"{ours['psnr']:.2f}", f"{gain(image):+.2f}", share(ours["ssim"]),
@@ -145,7 +149,7 @@ def quality_verdicts(result, estimated):
     worst = min(pictures, key=gain)
     lines.append(verdict(f"{row}, worst image {worst['name']}", gain(worst), "{:+.2f} dB",
                          gain(worst) >= -0.1, "at least -0.1 dB"))
-    ours, theirs = mean(i["ours"]["ssim"] for i in pictures), max(baseline_means(result, "ssim"))
+    ours, theirs = mean(i["ours"]["ssim"] for i in pictures), max(baseline_means(result, "ssim", WITH_SHIFTED))
     lines.append(verdict(f"{row}, mean SSIM", ours, "{:.4f}", ours >= theirs, f"at least {theirs:.4f}"))
     return lines
 
