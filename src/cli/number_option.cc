@@ -38,6 +38,15 @@ std::function<std::string(const std::string&)> whole_number(std::uint64_t lowest
   };
 }
 
+std::function<std::string(const std::string&)> auto_or_whole(std::uint64_t lowest,
+                                                             std::uint64_t highest) {
+  return [lowest, highest](const std::string& text) -> std::string {
+    if (text == "auto" || whole_number(lowest, highest)(text).empty()) return {};
+    return "must be auto or a whole number from " + std::to_string(lowest) + " to " +
+           std::to_string(highest) + ", not '" + text + "'";
+  };
+}
+
 std::string check_coupling(const std::string& text) {
   if (text == "auto" || text == "sampled") return {};
   const auto value = parse_number(text);

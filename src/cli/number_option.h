@@ -19,6 +19,10 @@ std::optional<double> parse_number(const std::string& text);
 std::function<std::string(const std::string&)> whole_number(std::uint64_t lowest,
                                                             std::uint64_t highest);
 
+// auto or a whole number of lowest..highest.
+std::function<std::string(const std::string&)> auto_or_whole(std::uint64_t lowest,
+                                                             std::uint64_t highest);
+
 // auto, sampled or a number from 0 to kLargestCoupling.
 inline constexpr double kLargestCoupling = 5;
 std::string check_coupling(const std::string& text);

@@ -14,6 +14,7 @@ void describe(Archive& archive, RunImage& image) {
   archive("status", image.status);
   archive("sentence", image.sentence);
   archive("converged", image.converged);
+  archive("group", image.group);
   archive("record", image.record);
 }
 

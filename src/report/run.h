@@ -16,6 +16,7 @@ struct RunImage {
   std::string status;      // "done", "skipped" (finished before), "failed", "not reached"
   std::string sentence;    // why it failed; empty otherwise
   bool converged = false;  // of done and skipped images
+  std::string group;       // of the summary (report/field_groups.h)
   std::string record;      // file relative to the output folder; empty if there is none
 };
 

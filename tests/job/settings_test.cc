@@ -22,6 +22,7 @@ TEST_CASE("every setting that changes results changes the digest") {
     return digest(settings) != before;
   };
   CHECK(differs([](auto& s) { s.classes = 3; }));
+  CHECK(differs([](auto& s) { s.classes = kAutoClasses; }));
   CHECK(differs([](auto& s) { s.connectivity = Connectivity::kEight; }));
   CHECK(differs([](auto& s) { s.coupling.mode = CouplingMode::kSampled; }));
   CHECK(differs([](auto& s) { s.shared_variance = true; }));
