@@ -23,6 +23,10 @@ void print_summary(const FolderCounts& counts, const std::string& output, const 
         "%d did not converge: the \"verdict\" in NAME.record.json says what is missing; %s\n",
         counts.not_converged, advice);
   }
+  if (counts.check_failed > 0) {
+    std::printf("%d failed a model check: checks.csv says which, and what it means.\n",
+                counts.check_failed);
+  }
   std::printf("Results are in %s: measurements.csv, summary.csv, run.json and the maps.\n",
               output.c_str());
   if (counts.interrupted) {
@@ -74,7 +78,8 @@ void add_run_options(CLI::App& app, CommonOptions& options) {
   add_whole(app, "--max-pixels", options.run.limits.max_pixels, 1, std::uint64_t{1} << 34,
             "Refuse pages with more pixels");
   app.add_flag("--redo", options.run.redo, "Do again what is finished");
-  app.add_flag("--strict", options.strict, "Exit code 3 if a result did not converge");
+  app.add_flag("--strict", options.strict,
+               "Exit code 3 if a result did not converge or failed a model check");
   app.add_flag("--quiet", options.quiet, "Write nothing but errors to the terminal");
 }
 
@@ -89,7 +94,8 @@ int end_run(const FolderCounts& counts, const CommonOptions& options, const char
   if (!options.quiet) print_summary(counts, options.output, advice);
   if (counts.interrupted) return kExitInterrupted;
   if (counts.failed > 0) return kExitSomeFailed;
-  return options.strict && counts.not_converged > 0 ? kExitNotConverged : kExitAllDone;
+  const bool doubts = counts.not_converged + counts.check_failed > 0;
+  return options.strict && doubts ? kExitNotConverged : kExitAllDone;
 }
 
 }  // namespace stillfield

@@ -8,20 +8,13 @@
 #include <utility>
 
 #include "core/error.h"
+#include "diagnose/number_text.h"
 
 namespace stillfield {
 namespace {
 
 constexpr double kInfinity = std::numeric_limits<double>::infinity();
 constexpr const char* kProbability = "mean label probability";
-
-// Fixed notation whatever the locale: the sentences end up in output files.
-std::string fixed(double value, int decimals) {
-  std::array<char, 400> text;
-  const auto end = std::to_chars(text.data(), text.data() + text.size(), value,
-                                 std::chars_format::fixed, decimals);
-  return {text.data(), end.ptr};
-}
 
 std::string shortest(double value) {
   std::array<char, 32> text;
@@ -40,7 +33,7 @@ void judge_rhat(const NamedSummary& scalar, const ConvergenceTarget& target,
   // Rounded up, so that a value just above the target never reads as equal to it.
   const double shown = std::ceil(rhat * 1e4) / 1e4;
   misses.push_back({scalar.name,
-                    scalar.name + ": the chains disagree, R-hat is " + fixed(shown, 4) +
+                    scalar.name + ": the chains disagree, R-hat is " + fixed_text(shown, 4) +
                         " and should be at most " + shortest(target.max_rhat) + ".",
                     (rhat - 1) / (target.max_rhat - 1)});
 }
@@ -50,7 +43,7 @@ void judge_ess(const NamedSummary& scalar, const char* kind, const char* what, d
   if (ess >= target.min_ess) return;
   misses.push_back({scalar.name,
                     scalar.name + ": too few effective draws for its " + what + ", " + kind +
-                        " ESS is " + fixed(std::floor(ess), 0) + " and should be at least " +
+                        " ESS is " + fixed_text(std::floor(ess), 0) + " and should be at least " +
                         shortest(target.min_ess) + ".",
                     target.min_ess / ess});
 }
@@ -89,8 +82,9 @@ void judge_probability(double mcse, const ConvergenceTarget& target,
   }
   const double shown = std::ceil(mcse * 1e4) / 1e4;
   misses.push_back({kProbability,
-                    std::string(kProbability) + ": its Monte Carlo error is " + fixed(shown, 4) +
-                        " and should be at most " + shortest(target.max_probability_mcse) + ".",
+                    std::string(kProbability) + ": its Monte Carlo error is " +
+                        fixed_text(shown, 4) + " and should be at most " +
+                        shortest(target.max_probability_mcse) + ".",
                     mcse / target.max_probability_mcse});
 }
 

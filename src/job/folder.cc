@@ -10,6 +10,7 @@
 #include "job/output_folder.h"
 #include "job/plan.h"
 #include "job/segment_field.h"
+#include "report/check_table.h"
 #include "report/field_groups.h"
 #include "report/particle_csv.h"
 #include "report/run.h"
@@ -34,9 +35,14 @@ class RunLog {
   void add(const FieldTask& task, const ImageRecord& record, bool before) {
     ++(before ? counts_.skipped : counts_.done);
     if (!record.verdict.converged) ++counts_.not_converged;
+    if (record.assessment.check_failed) ++counts_.check_failed;
     const fs::path file = with_suffix(task.stem, kRecordSuffix);
     list(task, before ? "skipped" : "done");
     summary_.images.back().converged = record.verdict.converged;
+    if (record.command == kSegment) {
+      summary_.images.back().verdict = record.assessment.word;
+      summary_.images.back().reasons = record.assessment.reasons;
+    }
     summary_.images.back().record = file.lexically_relative(run_.output).generic_string();
     records_.push_back(record);
     stems_.push_back(task.stem);
@@ -62,9 +68,11 @@ class RunLog {
     count("failed", counts_.failed);
     count("not_reached", counts_.not_reached);
     count("not_converged", counts_.not_converged);
+    count("check_failed", counts_.check_failed);
     write_if_changed(run_.output / "measurements.csv", measurements_csv(records_));
     write_if_changed(run_.output / "summary.csv", summary_csv(records_, record_groups_));
     if (summary_.command == kSegment) {
+      write_if_changed(run_.output / "checks.csv", checks_csv(records_));
       write_if_changed(run_.output / "particles.csv", particles_of_all());
     }
     write_if_changed(run_.output / "run.json", run_text(summary_));

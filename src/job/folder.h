@@ -1,8 +1,8 @@
 // Folders and files through a whole job, with the tables of the run.
 //
 // Writes   per field what segment_field.h or denoise_field.h says; measurements.csv, summary.csv,
-//          run.json and (segment) particles.csv, also after an interrupt. Fields that are finished
-//          already are left alone.
+//          run.json and (segment) particles.csv and checks.csv, also after an interrupt. Fields that
+//          are finished already are left alone.
 // Errors   of single fields are collected; thrown are those of find_inputs() (image/walk.h),
 //          read_groups() (report/field_groups.h) and prepare_output_folder(), before any work, and
 //          Error(kOutput) for the tables
@@ -29,6 +29,7 @@ struct FolderCounts {
   int failed = 0;
   int not_reached = 0;
   int not_converged = 0;  // of those done or skipped
+  int check_failed = 0;   // likewise
   bool interrupted = false;
 };
 

@@ -21,7 +21,7 @@ namespace stillfield {
 struct LabelSampling {
   std::unique_ptr<Colouring> colouring;        // the others refer to it
   std::unique_ptr<LogPartitionMemo> own_memo;  // unless the run has one
-  LabelProblem problem;
+  LabelPosterior problem;
   std::vector<LabelChain> chains;     // where they stopped (label_draws.h goes on)
   std::vector<BlurredField> blurred;  // one a chain when blur is modelled, else empty
   BlurFacts blur;

@@ -38,7 +38,7 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
   const Extent extent = grey.level.extent();
   run.colouring = std::make_unique<Colouring>(extent, make_neighbourhood(settings.connectivity));
   const Colouring& colouring = *run.colouring;
-  LabelProblem& problem = run.problem;
+  LabelPosterior& problem = run.problem;
   problem.field = observe(colouring, grey);
 
   run.chains = start_chains(

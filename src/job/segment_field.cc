@@ -12,6 +12,7 @@
 #include "job/field_record.h"
 #include "job/label_draws.h"
 #include "job/measured_draws.h"
+#include "job/model_checks.h"
 #include "job/output_folder.h"
 #include "job/restore_blurred.h"
 #include "job/restore_one.h"
@@ -122,8 +123,11 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& asked, const R
   add_choice_sentences(record);
   MeasuredDraws measured(sampling.counts->most_probable().view(), input.pixels.view(),
                          input.usable.view(), input.measure, settings.chains);
-  for_label_draws(settings, kMeasuredDraws, pool, observer, sampling,
-                  [&](const LabelDraw& draw) { measured.record(draw); });
+  PredictiveChecks checks(input.grey, settings.chains, kMeasuredDraws, input.seed);
+  for_label_draws(settings, kMeasuredDraws, pool, observer, sampling, [&](const LabelDraw& draw) {
+    measured.record(draw);
+    checks.show(draw.chain, draw.draw, draw.labels, draw.model.classes);
+  });
   describe_measured(measured.measurements(), input.complete(), record);
   if (settings.replicates > 0) {
     record.bootstrap = bootstrap_measurements(
@@ -135,6 +139,7 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& asked, const R
   const fs::path record_file = with_suffix(task.stem, kRecordSuffix);
   fs::remove(record_file);  // from here to the end there is no finished result
   write_maps(task, sampling, input, record);
+  describe_checks(input.grey, input.usable, sampling, checks, record);
   write_text_atomically(
       with_suffix(task.stem, kParticlesSuffix),
       particles_csv(record.input, input.measure.pixel_size_um, measured.particles()));

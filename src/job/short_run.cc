@@ -49,7 +49,7 @@ ShortRun run_shortly(const GreyLevels& grey, View<const std::uint8_t> usable,
                      const ShortRunSettings& settings, PhiloxKey key, const Pool& pool,
                      WeightPlanes& weights) {
   const Colouring colouring(grey.level.extent(), make_neighbourhood(settings.connectivity));
-  LabelProblem problem;
+  LabelPosterior problem;
   problem.field = observe(colouring, grey);
   problem.prior = default_prior(grey, model.classes);
   LabelChain chain;

@@ -11,6 +11,8 @@
 #include <string>
 #include <vector>
 
+#include "diagnose/assessment.h"
+#include "diagnose/model_check.h"
 #include "diagnose/verdict.h"
 #include "measure/measurement.h"
 #include "report/blur_facts.h"
@@ -124,7 +126,8 @@ struct RunFacts {
 inline constexpr char kSegment[] = "segment";
 inline constexpr char kDenoise[] = "denoise";
 
-// The parts from `grey` to `bootstrap` belong to segment, `restoration` to denoise.
+// The parts from `grey` to `bootstrap` and those of the checks belong to segment, `restoration`
+// to denoise.
 struct ImageRecord {
   std::string command;
   std::string version;  // of the program
@@ -144,6 +147,8 @@ struct ImageRecord {
   BootstrapFacts bootstrap;
   RestorationFacts restoration;
   VerdictFacts verdict;
+  Assessment assessment;
+  std::vector<ModelCheck> checks;
   std::vector<Measurement> measurements;
   std::vector<OutputFile> outputs;
   RunFacts run;

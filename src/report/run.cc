@@ -15,6 +15,8 @@ void describe(Archive& archive, RunImage& image) {
   archive("sentence", image.sentence);
   archive("converged", image.converged);
   archive("group", image.group);
+  archive("verdict", image.verdict);
+  archive("reasons", image.reasons);
   archive("record", image.record);
 }
 

@@ -31,7 +31,7 @@ void count_visits(const Colouring& c, const BlurredField& field, LabelChain& cha
 
 }  // namespace
 
-BlurredField open_blurred_chain(const LabelProblem& problem, const BlurKernel& kernel,
+BlurredField open_blurred_chain(const LabelPosterior& problem, const BlurKernel& kernel,
                                 const LabelChain& chain) {
   const Colouring& colouring = *problem.field.colouring;
   BlurredField field = open_blurred_field(*problem.field.grey, kernel);
@@ -42,7 +42,7 @@ BlurredField open_blurred_chain(const LabelProblem& problem, const BlurKernel& k
   return field;
 }
 
-void advance_blurred_chain(const LabelProblem& problem, int sweeps, const Pool& pool,
+void advance_blurred_chain(const LabelPosterior& problem, int sweeps, const Pool& pool,
                            BlurredField& field, LabelChain& chain) {
   const Colouring& colouring = *problem.field.colouring;
   for (int s = 0; s < sweeps; ++s) {
@@ -61,7 +61,7 @@ void advance_blurred_chain(const LabelProblem& problem, int sweeps, const Pool& 
   refresh_blurred_field(level_classes(*field.grey, chain.model.classes), field);
 }
 
-void draw_blur(const LabelProblem& problem, BlurredField& field, const LabelChain& chain) {
+void draw_blur(const LabelPosterior& problem, BlurredField& field, const LabelChain& chain) {
   RandomStream random(chain.key, Purpose::kBlur, chain.sweeps_done);
   const double scale = kProposals[chain.sweeps_done % std::size(kProposals)];
   const double proposed = field.kernel.sd + scale * random.normal();

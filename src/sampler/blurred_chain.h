@@ -12,18 +12,18 @@
 namespace stillfield {
 
 // A field for the chain's labels and classes, ready to sweep.
-BlurredField open_blurred_chain(const LabelProblem& problem, const BlurKernel& kernel,
+BlurredField open_blurred_chain(const LabelPosterior& problem, const BlurKernel& kernel,
                                 const LabelChain& chain);
 
 // One block: `sweeps` sweeps of the labels (visits are counted when the chain has a visits plane),
 // then the classes and, if the problem says so, the coupling.
-void advance_blurred_chain(const LabelProblem& problem, int sweeps, const Pool& pool,
+void advance_blurred_chain(const LabelPosterior& problem, int sweeps, const Pool& pool,
                            BlurredField& field, LabelChain& chain);
 
 // One Metropolis step of the blur given labels and classes, under a flat prior over
 // [kSmallestBlur, kLargestBlur]; normal proposals of three scales in turn, by the chain's sweep.
 // The field must be fresh; on acceptance it gets the new kernel and is refreshed.
-void draw_blur(const LabelProblem& problem, BlurredField& field, const LabelChain& chain);
+void draw_blur(const LabelPosterior& problem, BlurredField& field, const LabelChain& chain);
 
 }  // namespace stillfield
 

@@ -37,7 +37,7 @@ std::string refusal(const TempFolder& folder, const std::string& name, int class
     for (const auto& entry : fs::directory_iterator(folder / "out")) {
       const std::string left = entry.path().filename().string();
       CHECK((left == "run.json" || left == "measurements.csv" || left == "summary.csv" ||
-             left == "particles.csv"));
+             left == "checks.csv" || left == "particles.csv"));
     }
   }
   return ended.err;

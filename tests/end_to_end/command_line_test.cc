@@ -93,6 +93,26 @@ TEST_CASE("options may stand in a file, and the command line wins") {
             .code == 2);
 }
 
+TEST_CASE("with --strict an image that fails a model check gives exit code 3") {
+  const TempFolder folder;
+  save_png(folder / "a.png", draw_scene({128, 96, 3, 9}));  // of three classes, two are asked for
+  const Arguments arguments = {"segment", (folder / "a.png").string(), "--classes", "2",
+                               "--out",   (folder / "out").string(),   "--quick"};
+  const Ended plain = run_program(arguments);
+  CHECK(plain.code == 0);
+  CHECK_THAT(plain.out, Contains("1 failed a model check"));
+  Arguments strict = arguments;
+  strict.push_back("--strict");
+  CHECK(run_program(strict).code == 3);
+  const auto image = read_json(folder / "out/run.json")["images"][0];
+  CHECK(image["verdict"] != "sound");
+  CHECK_THAT(image["reasons"].dump(), Contains("one class too few"));
+  const auto record = read_json(folder / "out/a.record.json");
+  CHECK(record["assessment"]["check_failed"] == true);
+  CHECK(record["checks"].size() > 6);
+  CHECK(std::filesystem::file_size(folder / "out/checks.csv") > 500);
+}
+
 TEST_CASE("with --strict results that did not converge give exit code 3") {
   const TempFolder folder;
   save_png(folder / "a.png", draw_scene({48, 40, 2, 9}));

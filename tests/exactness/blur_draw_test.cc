@@ -43,7 +43,7 @@ TEST_CASE("blur draws: mean and square follow the posterior") {
 
   TestField start(spec);
   start.set_labels(z);
-  LabelProblem problem;
+  LabelPosterior problem;
   problem.field = observe(start.colouring, start.grey);
   BlurredField field = open_blurred_chain(problem, make_blur_kernel(1.0), start.chain);
   BatchMeans drawn(100), squares(100);

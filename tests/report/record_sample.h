@@ -53,6 +53,10 @@ inline ImageRecord record_sample(const std::string& path = "heat/a, \"b\".tif") 
   record.scalars[1].summary.rhat = std::numeric_limits<double>::infinity();
   record.probability = {0.004, 0.001, 0.05};
   record.verdict = {false, {"It did not converge."}};
+  record.assessment = {kLook, true, {"noise is correlated, very"}};
+  record.checks = {
+      {"noise_correlation", 0, 0.25, -0.01, 0.03, 0.0078, true, true, "noise is correlated, very"},
+      {"class_contrast", 1, 2.5, kUnknown, 0.75, kUnknown, false, false, {}}};
   record.measurements = {area_fraction(1, 0.25, 0.01), area_fraction(2, 0.75, 0.01)};
   record.outputs = {{".labels.tif", 999, std::string(64, 'c')}};
   record.run = {"avx2", 2, 0.1, 2.5, 0.2};

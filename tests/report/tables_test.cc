@@ -3,6 +3,7 @@
 #include <catch2/catch.hpp>
 #include <cstdlib>
 
+#include "report/check_table.h"
 #include "report/csv_reader.h"
 #include "report/record_sample.h"
 #include "report/run.h"
@@ -26,7 +27,7 @@ std::string field(const CsvRows& rows, std::size_t row, const std::string& colum
 std::vector<ImageRecord> fields(const std::vector<double>& fractions) {
   std::vector<ImageRecord> records;
   for (const double fraction : fractions) {
-    records.push_back(record_sample(std::to_string(records.size()) + ".png"));
+    records.push_back(record_sample(std::string("f") + std::to_string(records.size()) + ".png"));
     records.back().measurements = {area_fraction(1, fraction, 0.01),
                                    area_fraction(2, 1 - fraction, 0.01)};
   }
@@ -51,7 +52,23 @@ TEST_CASE("measurements are tidy: a row each, all columns, names quoted") {
   CHECK(number(field(rows, 1, "ess")) == 412.5);
 }
 
+TEST_CASE("checks are tidy: a row each, with the verdict on the image and a state") {
+  const CsvRows rows = read_csv(checks_csv(std::vector<ImageRecord>{record_sample()}));
+  REQUIRE(rows.size() == 3);
+  CHECK(rows[0] == std::vector<std::string>{"image", "page", "verdict", "check", "class", "value",
+                                            "expected", "limit", "p_value", "state", "sentence"});
+  CHECK(field(rows, 1, "verdict") == "look");
+  CHECK(field(rows, 1, "state") == "grave");
+  CHECK(field(rows, 1, "sentence") == "noise is correlated, very");
+  CHECK(number(field(rows, 1, "value")) == 0.25);
+  CHECK(field(rows, 2, "check") == "class_contrast");
+  CHECK(number(field(rows, 2, "class")) == 1);
+  CHECK(field(rows, 2, "p_value").empty());
+  CHECK(field(rows, 2, "state") == "passed");
+}
+
 TEST_CASE("a table of no image has its header") {
+  CHECK(read_csv(checks_csv({})).size() == 1);
   CHECK(read_csv(measurements_csv({})).size() == 1);
   CHECK(read_csv(summary_csv({})).size() == 1);
 }
@@ -86,8 +103,8 @@ TEST_CASE("run.json lists every image in the order of the run") {
   run.command = "segment";
   run.settings = {{"classes", std::uint64_t{2}}};
   run.counts = {{"done", std::uint64_t{1}}, {"failed", std::uint64_t{1}}};
-  run.images = {{"a.png", 1, "done", "", true, "north", "a.record.json"},
-                {"b.png", 1, "failed", "b.png: is empty", false, "", ""}};
+  run.images = {{"a.png", 1, "done", "", true, "north", "sound", {}, "a.record.json"},
+                {"b.png", 1, "failed", "b.png: is empty", false, "", "", {}, ""}};
   CHECK_THAT(run_text(run), Catch::Matchers::Contains("\"status\": \"failed\"") &&
                                 Catch::Matchers::Contains("\"sentence\": \"b.png: is empty\"") &&
                                 Catch::Matchers::Contains("\"done\": 1"));
