@@ -18,11 +18,13 @@ TEST_CASE("version, help and info") {
   CHECK_THAT(help.out, Contains("Exit codes") && Contains("segment") && Contains("Examples"));
   const Ended options = run_program({"segment", "--help"});
   CHECK(options.code == 0);
-  for (const char* name : {"--classes",    "--out",        "--neighbours", "--coupling",
-                           "--variance",   "--chains",     "--seed",       "--threads",
-                           "--max-sweeps", "--quick",      "--redo",       "--strict",
-                           "--quiet",      "--pixel-size", "--min-area",   "--particle-neighbours",
-                           "--mask",       "--replicates", "--no-bootstrap", "--cpu-target", "--max-pixels", "--config"}) {
+  for (const char* name :
+       {"--classes",    "--out",        "--neighbours",   "--coupling",
+        "--variance",   "--chains",     "--seed",         "--threads",
+        "--max-sweeps", "--quick",      "--redo",         "--strict",
+        "--quiet",      "--pixel-size", "--min-area",     "--particle-neighbours",
+        "--mask",       "--replicates", "--no-bootstrap", "--cpu-target",
+        "--max-pixels", "--config"}) {
     CHECK_THAT(options.out, Contains(name));
   }
   const Ended info = run_program({"info"});
@@ -45,7 +47,7 @@ TEST_CASE("wrong usage is exit code 2 with a sentence that names the option") {
   };
   CHECK_THAT(refused({}), Contains("--classes"));
   CHECK_THAT(refused({"--classes", "1"}),
-             Contains("--classes: must be a whole number from 2 to 64"));
+             Contains("--classes: must be auto or a whole number from 2 to 64"));
   CHECK_THAT(refused({"--classes", "65"}), Contains("--classes"));
   CHECK_THAT(refused({"--classes", "2", "--neighbours", "6"}), Contains("--neighbours"));
   CHECK_THAT(refused({"--classes", "2", "--coupling", "strong"}), Contains("--coupling"));

@@ -25,7 +25,7 @@ Volume<T> rounded(const Volume<float>& picture, float highest) {
 Volume<float> draw_scene(const Scene& scene) {
   RandomStream random({20261201, scene.number}, Purpose::kSimulation);
   Volume<std::uint8_t> label(Extent{scene.width, scene.height});
-  const int disks = std::max(2, scene.width * scene.height / 300);
+  const int disks = scene.classes < 2 ? 0 : std::max(2, scene.width * scene.height / 300);
   for (int d = 0; d < disks; ++d) {
     const double cx = random.uniform() * scene.width;
     const double cy = random.uniform() * scene.height;
