@@ -68,6 +68,13 @@ void add_run_options(CLI::App& app, CommonOptions& options) {
                  "on it")
       ->type_name("NAME")
       ->capture_default_str();
+  app.add_option("--group", options.group_file,
+                 "Groups of images for summary.csv, from a table with the columns `image` and "
+                 "`group`; without it the folders are the groups")
+      ->type_name("FILE.csv");
+  app.add_option("--group-column", options.run.group_column, "Column of --group that has the group")
+      ->type_name("NAME")
+      ->capture_default_str();
   add_whole(app, "--max-pixels", options.run.limits.max_pixels, 1, std::uint64_t{1} << 34,
             "Refuse pages with more pixels");
   app.add_flag("--redo", options.run.redo, "Do again what is finished");
@@ -78,6 +85,7 @@ void add_run_options(CLI::App& app, CommonOptions& options) {
 
 void begin_run(CommonOptions& options) {
   options.run.output = options.output;
+  options.run.group_file = options.group_file;
   force_cpu_target(options.cpu_target);
   catch_stop_signals();
 }

@@ -15,6 +15,7 @@ namespace stillfield {
 struct CommonOptions {
   std::vector<std::string> inputs;
   std::string output;
+  std::string group_file;
   std::string cpu_target = "auto";
   bool strict = false;
   bool quiet = false;

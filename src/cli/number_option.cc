@@ -5,6 +5,8 @@
 #include <string_view>
 #include <utility>
 
+#include "model/blur.h"
+
 namespace stillfield {
 namespace {
 
@@ -36,11 +38,27 @@ std::function<std::string(const std::string&)> whole_number(std::uint64_t lowest
   };
 }
 
+std::function<std::string(const std::string&)> auto_or_whole(std::uint64_t lowest,
+                                                             std::uint64_t highest) {
+  return [lowest, highest](const std::string& text) -> std::string {
+    if (text == "auto" || whole_number(lowest, highest)(text).empty()) return {};
+    return "must be auto or a whole number from " + std::to_string(lowest) + " to " +
+           std::to_string(highest) + ", not '" + text + "'";
+  };
+}
+
 std::string check_coupling(const std::string& text) {
   if (text == "auto" || text == "sampled") return {};
   const auto value = parse_number(text);
   if (value && *value >= 0 && *value <= kLargestCoupling) return {};
   return "must be auto, sampled or a number from 0 to 5, not '" + text + "'";
+}
+
+std::string check_blur(const std::string& text) {
+  if (text == "auto" || text == "none") return {};
+  const auto value = parse_number(text);
+  if (value && *value >= kSmallestBlur && *value <= kLargestBlur) return {};
+  return "must be auto, none or a number of pixels from 0.2 to 3, not '" + text + "'";
 }
 
 std::optional<double> parse_length_um(const std::string& text) {

@@ -19,9 +19,16 @@ std::optional<double> parse_number(const std::string& text);
 std::function<std::string(const std::string&)> whole_number(std::uint64_t lowest,
                                                             std::uint64_t highest);
 
+// auto or a whole number of lowest..highest.
+std::function<std::string(const std::string&)> auto_or_whole(std::uint64_t lowest,
+                                                             std::uint64_t highest);
+
 // auto, sampled or a number from 0 to kLargestCoupling.
 inline constexpr double kLargestCoupling = 5;
 std::string check_coupling(const std::string& text);
+
+// auto, none or a number of pixels from 0.2 to 3.
+std::string check_blur(const std::string& text);
 
 // A length with its unit, 320nm, 0.32um (or with a micro sign) or 0.00032mm, in micrometres;
 // greater than 0.

@@ -33,13 +33,16 @@ constexpr char kEpilogue[] =
     "  stillfield segment a.tif b.tif --classes 2 --out results --quick\n";
 
 struct SegmentOptions : CommonOptions {
+  std::string classes;
   std::string neighbours = "4";
   std::string coupling = "auto";
   std::string variance = "own";
+  std::string blur = "none";
   std::string particle_neighbours = "8";
   std::string pixel_size;
   std::string mask;
   bool quick = false;
+  bool no_bootstrap = false;
   SegmentSettings settings;
 };
 
@@ -49,16 +52,28 @@ CouplingSettings coupling_settings(const std::string& text) {
   return {CouplingMode::kFixed, parse_number(text).value()};
 }
 
+BlurSettings blur_settings(const std::string& text) {
+  if (text == "auto") return {BlurMode::kAuto, 0};
+  if (text == "none") return {BlurMode::kNone, 0};
+  return {BlurMode::kGiven, parse_number(text).value()};
+}
+
 int run_segment(SegmentOptions& options) {
   SegmentSettings& settings = options.settings;
+  settings.classes = options.classes == "auto"
+                         ? kAutoClasses
+                         : static_cast<int>(parse_whole(options.classes).value());
   settings.connectivity = options.neighbours == "8" ? Connectivity::kEight : Connectivity::kFour;
   settings.coupling = coupling_settings(options.coupling);
+  settings.blur = blur_settings(options.blur);
   settings.shared_variance = options.variance == "shared";
   settings.particles.connectivity = options.particle_neighbours == "4" ? 4 : 8;
   if (!options.pixel_size.empty()) settings.pixel_size_um = parse_length_um(options.pixel_size);
   settings.mask = options.mask;
   settings.mask_sha256 = mask_digest(settings.mask);
   if (options.quick) settings.target = kQuickTarget;
+  if (options.no_bootstrap) settings.replicates = 0;
+  settings.replicates -= settings.replicates % 2;
   begin_run(options);
   FolderCounts counts;
   {
@@ -70,10 +85,11 @@ int run_segment(SegmentOptions& options) {
 }
 
 void add_model_options(CLI::App& app, SegmentOptions& options) {
-  SegmentSettings& settings = options.settings;
-  add_whole(app, "--classes", settings.classes, 2, 64, "Number of classes")
-      ->required()
-      ->default_str("");
+  app.add_option("--classes", options.classes,
+                 "Number of classes, or auto: 2 to 8, chosen for each image by held-out prediction")
+      ->check(CLI::Validator(auto_or_whole(2, 64), "", ""))
+      ->type_name("auto|2..64")
+      ->required();
   add_choice(app, "--neighbours", options.neighbours, {"4", "8"}, "Neighbours of a pixel");
   app.add_option("--coupling", options.coupling,
                  "How strongly neighbours agree: fitted, drawn (path sampling), or given")
@@ -81,6 +97,12 @@ void add_model_options(CLI::App& app, SegmentOptions& options) {
       ->type_name("auto|sampled|VALUE")
       ->capture_default_str();
   add_choice(app, "--variance", options.variance, {"own", "shared"}, "Noise variance of classes");
+  app.add_option("--blur", options.blur,
+                 "The optics' blur, so that no class lines the border of two others: estimated, "
+                 "left out, or its standard deviation")
+      ->check(CLI::Validator(check_blur, "", ""))
+      ->type_name("auto|none|PIXELS")
+      ->capture_default_str();
 }
 
 void add_sampling_options(CLI::App& app, SegmentOptions& options) {
@@ -92,6 +114,13 @@ void add_sampling_options(CLI::App& app, SegmentOptions& options) {
   app.add_flag("--quick", options.quick,
                "Looser targets: R-hat 1.05 (not 1.01), ESS 100 (400), error of the mean label "
                "probability 0.02 (0.01)");
+}
+
+void add_bootstrap_options(CLI::App& app, SegmentOptions& options) {
+  add_whole(app, "--replicates", options.settings.replicates, 6, 64,
+            "Simulated images that correct the measurements; an odd number counts as one less");
+  app.add_flag("--no-bootstrap", options.no_bootstrap,
+               "Leave the measurements as the posterior has them");
 }
 
 void add_measuring_options(CLI::App& app, SegmentOptions& options) {
@@ -121,6 +150,7 @@ Command add_segment(CLI::App& app) {
   add_inputs_and_output(*segment, *options);
   add_model_options(*segment, *options);
   add_measuring_options(*segment, *options);
+  add_bootstrap_options(*segment, *options);
   add_sampling_options(*segment, *options);
   add_run_options(*segment, *options);
   return {segment, [options] { return run_segment(*options); }};

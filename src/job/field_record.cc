@@ -1,6 +1,7 @@
 #include "job/field_record.h"
 
 #include <algorithm>
+#include <cstdio>
 
 #include "measure/from_trace.h"
 
@@ -39,6 +40,14 @@ ModelFacts describe_model(const LabelSampling& sampling, bool coupling_sampled) 
   return model;
 }
 
+std::string blur_note(const BlurFacts& blur) {
+  char text[160];
+  std::snprintf(text, sizeof text,
+                "blurred by about %.2f pixels (standard deviation); the labels account for it",
+                blur.value);
+  return text;
+}
+
 VerdictFacts describe_verdict(const LabelSampling& sampling, int max_sweeps) {
   VerdictFacts verdict;
   verdict.converged = sampling.verdict.converged;
@@ -68,6 +77,10 @@ void describe_grey(const GreyLevels& grey, ImageRecord& record) {
 void describe_sampling(const LabelSampling& sampling, const SegmentSettings& settings,
                        ImageRecord& record) {
   record.model = describe_model(sampling, settings.coupling.mode == CouplingMode::kSampled);
+  record.blur = sampling.blur;
+  if (sampling.blur.estimated && sampling.blur.modelled) {
+    record.input.notes.push_back(blur_note(sampling.blur));
+  }
   for (const CouplingScore& tried : sampling.coupling_ladder) {
     record.coupling_tried.push_back({tried.beta, tried.score});
   }

@@ -11,6 +11,7 @@
 #include "job/plan.h"
 #include "job/segment_field.h"
 #include "report/check_table.h"
+#include "report/field_groups.h"
 #include "report/particle_csv.h"
 #include "report/run.h"
 #include "report/tables.h"
@@ -24,7 +25,8 @@ namespace fs = std::filesystem;
 // What is known so far; the tables come from here.
 class RunLog {
  public:
-  RunLog(const FolderJob& job, const RunSettings& run) : run_(run) {
+  RunLog(const FolderJob& job, const RunSettings& run, FieldGroups groups)
+      : run_(run), groups_(std::move(groups)) {
     summary_.version = program_version();
     summary_.command = job.command;
     summary_.settings = job.settings;
@@ -44,6 +46,7 @@ class RunLog {
     summary_.images.back().record = file.lexically_relative(run_.output).generic_string();
     records_.push_back(record);
     stems_.push_back(task.stem);
+    record_groups_.push_back(summary_.images.back().group);
   }
   void add_failure(const FieldTask& task, const std::string& sentence) {
     ++counts_.failed;
@@ -67,7 +70,7 @@ class RunLog {
     count("not_converged", counts_.not_converged);
     count("check_failed", counts_.check_failed);
     write_if_changed(run_.output / "measurements.csv", measurements_csv(records_));
-    write_if_changed(run_.output / "summary.csv", summary_csv(records_));
+    write_if_changed(run_.output / "summary.csv", summary_csv(records_, record_groups_));
     if (summary_.command == kSegment) {
       write_if_changed(run_.output / "checks.csv", checks_csv(records_));
       write_if_changed(run_.output / "particles.csv", particles_of_all());
@@ -90,15 +93,25 @@ class RunLog {
     image.image = task.relative.generic_string();
     image.page = task.page + 1;
     image.status = status;
+    image.group = groups_.at(image.image);
     summary_.images.push_back(std::move(image));
   }
 
   const RunSettings& run_;
+  FieldGroups groups_;
   RunSummary summary_;
   FolderCounts counts_;
   std::vector<ImageRecord> records_;
   std::vector<fs::path> stems_;  // of the records
+  std::vector<std::string> record_groups_;
 };
+
+FieldGroups groups_of(const std::vector<InputFile>& files, const RunSettings& run) {
+  std::vector<std::string> images;
+  for (const InputFile& file : files) images.push_back(file.relative.generic_string());
+  return run.group_file.empty() ? group_by_folder(images)
+                                : read_groups(run.group_file, run.group_column, images);
+}
 
 // Records of two commands would bear the same names.
 void refuse_results_of_another_command(const fs::path& output, const std::string& command) {
@@ -113,6 +126,7 @@ void refuse_results_of_another_command(const fs::path& output, const std::string
 FolderCounts run_folder(const std::vector<fs::path>& inputs, const FolderJob& job,
                         const RunSettings& run, JobObserver& observer) {
   const std::vector<InputFile> files = find_inputs(inputs, run.output);
+  FieldGroups groups = groups_of(files, run);
   prepare_output_folder(run.output);
   refuse_results_of_another_command(run.output, job.command);
   const std::vector<PlannedField> plan = plan_fields(files, job.settings, run, observer);
@@ -122,7 +136,7 @@ FolderCounts run_folder(const std::vector<fs::path>& inputs, const FolderJob& jo
   observer.planned(to_do, finished);
 
   const Pool pool(run.threads);
-  RunLog log(job, run);
+  RunLog log(job, run, std::move(groups));
   int number = 0;
   bool stopped = false;
   for (const PlannedField& field : plan) {

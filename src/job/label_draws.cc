@@ -4,6 +4,7 @@
 
 #include "core/error.h"
 #include "job/every_chain.h"
+#include "sampler/blurred_chain.h"
 
 namespace stillfield {
 namespace {
@@ -34,7 +35,12 @@ void for_label_draws(const SegmentSettings& settings, int draws, const Pool& poo
     every_chain.run([&](int c, WeightPlanes& weights, const Pool& inner) {
       LabelChain& chain = sampling.chains[static_cast<std::size_t>(c)];
       for (int block = 0; block < kBlocksBetweenDraws; ++block) {
-        advance_chain(sampling.problem, settings.schedule.sweeps_a_block, inner, weights, chain);
+        if (sampling.blurred.empty()) {
+          advance_chain(sampling.problem, settings.schedule.sweeps_a_block, inner, weights, chain);
+        } else {
+          advance_blurred_chain(sampling.problem, settings.schedule.sweeps_a_block, inner,
+                                sampling.blurred[static_cast<std::size_t>(c)], chain);
+        }
       }
       image_labels(colouring, chain.labels, labels[static_cast<std::size_t>(c)]);
     });

@@ -11,6 +11,8 @@
 #include "model/grey_levels.h"
 #include "posterior/label_counts.h"
 #include "posterior/traces.h"
+#include "report/blur_facts.h"
+#include "sampler/blurred_field.h"
 #include "sampler/coupling_search.h"
 #include "sampler/sweep.h"
 
@@ -19,8 +21,10 @@ namespace stillfield {
 struct LabelSampling {
   std::unique_ptr<Colouring> colouring;        // the others refer to it
   std::unique_ptr<LogPartitionMemo> own_memo;  // unless the run has one
-  LabelProblem problem;
-  std::vector<LabelChain> chains;  // where they stopped (label_draws.h goes on)
+  LabelPosterior problem;
+  std::vector<LabelChain> chains;     // where they stopped (label_draws.h goes on)
+  std::vector<BlurredField> blurred;  // one a chain when blur is modelled, else empty
+  BlurFacts blur;
   std::unique_ptr<LabelCounts> counts;
   std::unique_ptr<Traces> traces;
   LabelPrior prior;  // of the last block; fixed while sampling unless sampled

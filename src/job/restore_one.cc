@@ -5,15 +5,13 @@
 
 #include "core/error.h"
 #include "job/every_chain.h"
-#include "job/trace_summaries.h"
+#include "job/sample_chains.h"
 #include "sampler/path_sampling.h"
 #include "sampler/starts.h"
 #include "sampler/sweep.h"
 
 namespace stillfield {
 namespace {
-
-constexpr int kVisitsLimit = 255;  // visits are counted in bytes
 
 void check_grey_levels(const GreyLevels& grey, int classes) {
   const int distinct = grey.distinct();
@@ -40,7 +38,7 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
   const Extent extent = grey.level.extent();
   run.colouring = std::make_unique<Colouring>(extent, make_neighbourhood(settings.connectivity));
   const Colouring& colouring = *run.colouring;
-  LabelProblem& problem = run.problem;
+  LabelPosterior& problem = run.problem;
   problem.field = observe(colouring, grey);
 
   run.chains = start_chains(
@@ -64,57 +62,21 @@ LabelSampling restore_one(const GreyLevels& grey, const SegmentSettings& setting
                                              schedule.first_part());
 
   EveryChain every_chain(extent, settings.chains, pool);
-  // One block of one chain, and what is kept of it.
-  const auto advance = [&](int c, WeightPlanes& planes, const Pool& inner) {
-    LabelChain& chain = chains[static_cast<std::size_t>(c)];
-    advance_chain(problem, schedule.sweeps_a_block(), inner, planes, chain);
-    if (schedule.stage() != Stage::kAdapting) {
-      run.traces->record(c, chain, colouring.neighbourhood());
-    }
-    // Visits move on when their bytes might overflow, and when the first part of the chain is full.
-    const int block = schedule.sweeps_a_block();
-    const bool part_full = schedule.stage() == Stage::kSampling &&
-                           schedule.sampling_sweeps() + block == schedule.first_part();
-    if (part_full || chain.visits_pending + block > kVisitsLimit) run.counts->take(c, chain);
+  const AdvanceChains advance = [&](const ChainDone& done) {
+    every_chain.run([&](int c, WeightPlanes& planes, const Pool& inner) {
+      advance_chain(problem, schedule.sweeps_a_block(), inner, planes,
+                    chains[static_cast<std::size_t>(c)]);
+      done(c);
+    });
   };
-
-  while (schedule.stage() != Stage::kDone) {
-    if (observer.stop_requested()) throw Error(ErrorKind::kInterrupt, "stopped on request");
-    every_chain.run(advance);
-    schedule.block_done();
-    observer.swept(schedule.stage(), static_cast<int>(chains.front().sweeps_done));
-
-    if (schedule.stage() == Stage::kAdapting) {
-      adaptation.adapt(chains, pool);
-      if (adaptation.settled()) schedule.coupling_settled();
-    } else if (schedule.look_at_warm_up()) {
-      schedule.warm_up_judged(chains_agree(run.traces->all()));
-      if (schedule.stage() == Stage::kSampling) {
-        run.traces->clear();
-        for (LabelChain& chain : chains) {
-          chain.visits = AlignedBuffer<std::uint8_t>(
-              colouring.plane_elements() * static_cast<std::size_t>(settings.classes - 1));
-        }
-      }
-    } else if (schedule.look_at_sampling()) {
-      for (int c = 0; c < settings.chains; ++c) {
-        run.counts->take(c, chains[static_cast<std::size_t>(c)]);
-      }
-      run.probability = run.counts->quality(pool, &problem.field);
-      run.scalars = summarise_traces(run.traces->all());
-      run.verdict = judge_convergence(run.scalars, run.probability.mcse, settings.target);
-      run.counts->merge_parts();
-      schedule.sampling_judged(run.verdict.converged);
-    }
+  while (schedule.stage() == Stage::kAdapting) {
+    advance_block(advance, schedule, observer, run);
+    adaptation.adapt(chains, pool);
+    if (adaptation.settled()) schedule.coupling_settled();
   }
-  for (LabelChain& chain : chains) chain.visits = {};
-  run.prior = chains.front().model.prior;
+  sample_chains(settings, advance, schedule, pool, observer, run);
   run.coupling_ladder = adaptation.choice().ladder;
   run.adapting_sweeps = schedule.adapting_sweeps();
-  run.warming_sweeps = schedule.warming_sweeps();
-  run.sampling_sweeps = schedule.sampling_sweeps();
-  run.warm_up_forced = schedule.warm_up_forced();
-  run.stopped_by_limit = schedule.stopped_by_limit();
   return run;
 }
 

@@ -6,12 +6,15 @@
 
 #include "image/atomic_file.h"
 #include "image/write.h"
+#include "job/bootstrap.h"
+#include "job/choose_classes.h"
 #include "job/field_frame.h"
 #include "job/field_record.h"
 #include "job/label_draws.h"
 #include "job/measured_draws.h"
 #include "job/model_checks.h"
 #include "job/output_folder.h"
+#include "job/restore_blurred.h"
 #include "job/restore_one.h"
 #include "job/segment_input.h"
 #include "report/class_colours.h"
@@ -105,15 +108,19 @@ void write_maps(const FieldTask& task, const LabelSampling& sampling, const Segm
   finished(".entropy.tif");
 }
 
-ImageRecord segment(const FieldTask& task, const SegmentSettings& settings, const RunSettings& run,
+ImageRecord segment(const FieldTask& task, const SegmentSettings& asked, const RunSettings& run,
                     const Pool& pool, JobObserver& observer, LogPartitionMemo& memo) {
   ImageRecord record;
   Stopwatch watch;
-  const SegmentInput input = read_segment_input(task, settings, run.limits, record);
+  SegmentInput input = read_segment_input(task, asked, run.limits, record);
   record.run = {active_cpu_target(), pool.threads(), watch.lap(), 0, 0};
 
+  const SegmentSettings settings = with_chosen_classes(input.grey, asked, input.seed, pool, record);
+  input.measure.classes = settings.classes;
   LabelSampling sampling = restore_one(input.grey, settings, input.seed, pool, observer, &memo);
+  restore_blurred(settings, pool, observer, sampling);
   describe_sampling(sampling, settings, record);
+  add_choice_sentences(record);
   MeasuredDraws measured(sampling.counts->most_probable().view(), input.pixels.view(),
                          input.usable.view(), input.measure, settings.chains);
   PredictiveChecks checks(input.grey, settings.chains, kMeasuredDraws, input.seed);
@@ -122,6 +129,11 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& settings, cons
     checks.show(draw.chain, draw.draw, draw.labels, draw.model.classes);
   });
   describe_measured(measured.measurements(), input.complete(), record);
+  if (settings.replicates > 0) {
+    record.bootstrap = bootstrap_measurements(
+        {input.grey, input.pixels.view(), input.usable.view(), input.measure, settings, input.seed},
+        pool, observer, sampling, record.measurements);
+  }
   record.run.sample_seconds = watch.lap();
 
   const fs::path record_file = with_suffix(task.stem, kRecordSuffix);

@@ -15,6 +15,18 @@ std::string coupling_name(CouplingMode mode) {
   return {};
 }
 
+std::string blur_name(BlurMode mode) {
+  switch (mode) {
+    case BlurMode::kAuto:
+      return "auto";
+    case BlurMode::kNone:
+      return "none";
+    case BlurMode::kGiven:
+      return "given";
+  }
+  return {};
+}
+
 std::uint64_t whole(int value) {
   return static_cast<std::uint64_t>(value);
 }
@@ -22,12 +34,16 @@ std::uint64_t whole(int value) {
 }  // namespace
 
 std::vector<NamedValue> named_settings(const SegmentSettings& settings) {
-  std::vector<NamedValue> list = {{"classes", whole(settings.classes)},
+  std::vector<NamedValue> list = {settings.classes == kAutoClasses
+                                      ? NamedValue{"classes", std::string("auto")}
+                                      : NamedValue{"classes", whole(settings.classes)},
                                   {"neighbours", whole(static_cast<int>(settings.connectivity))},
                                   {"coupling", coupling_name(settings.coupling.mode)}};
   if (settings.coupling.mode == CouplingMode::kFixed) {
     list.push_back({"coupling_value", settings.coupling.value});
   }
+  list.push_back({"blur", blur_name(settings.blur.mode)});
+  if (settings.blur.mode == BlurMode::kGiven) list.push_back({"blur_value", settings.blur.value});
   const std::vector<NamedValue> rest = {
       {"variance", std::string(settings.shared_variance ? "shared" : "own")},
       {"chains", whole(settings.chains)},
@@ -38,7 +54,8 @@ std::vector<NamedValue> named_settings(const SegmentSettings& settings) {
       {"max_sweeps", whole(settings.schedule.max_sweeps)},
       {"max_rhat", settings.target.max_rhat},
       {"min_ess", settings.target.min_ess},
-      {"max_probability_mcse", settings.target.max_probability_mcse}};
+      {"max_probability_mcse", settings.target.max_probability_mcse},
+      {"bootstrap_replicates", whole(settings.replicates)}};
   list.insert(list.end(), rest.begin(), rest.end());
   list.push_back({"particle_neighbours", whole(settings.particles.connectivity)});
   list.push_back({"min_area", static_cast<std::uint64_t>(settings.particles.min_area)});

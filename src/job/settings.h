@@ -18,16 +18,27 @@
 
 namespace stillfield {
 
+// The optics' blur: estimated, left out, or given in pixels (standard deviation).
+enum class BlurMode { kAuto, kNone, kGiven };
+struct BlurSettings {
+  BlurMode mode = BlurMode::kNone;
+  double value = 0.0;  // for kGiven
+};
+
+inline constexpr int kAutoClasses = 0;  // chosen by the data (job/choose_classes.h)
+
 // Settings that change results; all of them stand in the record.
 struct SegmentSettings {
-  int classes = 2;  // 2..64
+  int classes = 2;  // 2..64, or kAutoClasses
   Connectivity connectivity = Connectivity::kFour;
   CouplingSettings coupling;
   bool shared_variance = false;
+  BlurSettings blur;
   int chains = 4;  // 2..16
   std::uint64_t seed = 1;
   ScheduleSettings schedule;
   ConvergenceTarget target;
+  int replicates = 12;  // of the bootstrap (job/bootstrap.h): even, from 6; 0: none
   ParticleSettings particles;
   std::optional<double> pixel_size_um;  // > 0; overrides that of the file
   std::filesystem::path mask;           // file, or folder of files named as the images; 0 = outside
@@ -40,6 +51,8 @@ struct RunSettings {
   int threads = 1;
   bool redo = false;  // do again what is finished
   ReadLimits limits;
+  std::filesystem::path group_file;  // of the summary's groups; empty: by folder
+  std::string group_column = "group";
 };
 
 // All of them under the names of the record.

@@ -2,6 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
+#include <limits>
 #include <numeric>
 #include <string>
 
@@ -65,19 +66,27 @@ GreyHistogram binned(const GreyHistogram& h) {
   return out;
 }
 
-double log_density(const Mixture& m, std::size_t k, double value) {
+double log_scale(const Mixture& m, std::size_t k) {
+  return exact_log(m.proportion[k]) - exact_log(m.classes.sd[k]);
+}
+
+double log_density(const Mixture& m, std::size_t k, double scale, double value) {
   const double d = (value - m.classes.mean[k]) / m.classes.sd[k];
-  return exact_log(m.proportion[k]) - exact_log(m.classes.sd[k]) - 0.5 * d * d;
+  return scale - 0.5 * d * d;
 }
 
 // One step; returns the log likelihood (up to a constant) before it.
 double em_step(const GreyHistogram& h, double least_variance, Mixture& m) {
   const std::size_t classes = m.proportion.size();
-  std::vector<double> weight(classes), sum(classes), square(classes), log_term(classes);
+  std::vector<double> weight(classes), sum(classes), square(classes), log_term(classes),
+      scale(classes);
+  for (std::size_t k = 0; k < classes; ++k) scale[k] = log_scale(m, k);
   const double centre = h.value[h.value.size() / 2];  // keeps the squares small
   double log_likelihood = 0.0, total = 0.0;
   for (std::size_t i = 0; i < h.value.size(); ++i) {
-    for (std::size_t k = 0; k < classes; ++k) log_term[k] = log_density(m, k, h.value[i]);
+    for (std::size_t k = 0; k < classes; ++k) {
+      log_term[k] = log_density(m, k, scale[k], h.value[i]);
+    }
     const double top = *std::max_element(log_term.begin(), log_term.end());
     double z = 0.0;
     for (double& t : log_term) z += t = exact_exp(t - top);
@@ -173,11 +182,12 @@ Mixture fit_mixture(const GreyHistogram& histogram, int classes, bool shared_var
 
 int most_likely_class(const Mixture& mixture, double value) {
   int best = 0;
-  for (std::size_t k = 1; k < mixture.proportion.size(); ++k) {
-    if (log_density(mixture, k, value) >
-        log_density(mixture, static_cast<std::size_t>(best), value)) {
-      best = static_cast<int>(k);
-    }
+  double largest = -std::numeric_limits<double>::infinity();
+  for (std::size_t k = 0; k < mixture.proportion.size(); ++k) {
+    const double density = log_density(mixture, k, log_scale(mixture, k), value);
+    if (density <= largest) continue;
+    largest = density;
+    best = static_cast<int>(k);
   }
   return best;
 }

@@ -29,20 +29,25 @@ namespace stillfield {
 
 // What a random number is for; at most 32 purposes.
 enum class Purpose : std::uint32_t {
-  kLabels = 0,      // one uniform a pixel and sweep
-  kParameters = 1,  // class means, variances, coupling
-  kStart = 2,       // over-dispersed starts
-  kLogZ = 3,        // label sweeps of the path-sampling integral
-  kSimulation = 4,  // synthetic images of generators, tests and studies
-  kHeldOut = 5,     // search for the coupling on held-out pixels
-  kIntensity = 6,   // one normal a pixel and sweep of an intensity field
-  kPairScale = 7,   // auxiliary scales of neighbour differences
-  kTiling = 8,      // patches of a random tiling: c0, c1 = first pixel (sampler/patch_tiling.h)
-  kGroup = 9,       // groups of similar patches: c1 = tile of groups (sampler/patch_groups.h)
-  kRedraw = 10,     // values redrawn between sweeps: missing pixels, impulses, unequal noise
-  kRecheck = 11,    // noise of the recalibration runs
+  kLabels = 0,       // one uniform a pixel and sweep
+  kParameters = 1,   // class means, variances, coupling
+  kStart = 2,        // over-dispersed starts
+  kLogZ = 3,         // label sweeps of the path-sampling integral
+  kSimulation = 4,   // synthetic images of generators, tests and studies
+  kHeldOut = 5,      // search for the coupling on held-out pixels
+  kIntensity = 6,    // one normal a pixel and sweep of an intensity field
+  kPairScale = 7,    // auxiliary scales of neighbour differences
+  kTiling = 8,       // patches of a random tiling: c0, c1 = first pixel (sampler/patch_tiling.h)
+  kGroup = 9,        // groups of similar patches: c1 = tile of groups (sampler/patch_groups.h)
+  kRedraw = 10,      // values redrawn between sweeps: missing pixels, impulses, unequal noise
+  kRecheck = 11,     // noise of the recalibration runs
   kSplitNoise = 12,  // noise that splits an image in two: one normal a pixel
-  kReplicate = 13   // images drawn to check a model: c0, c1 = pixel, block (diagnose/residual_block.h)
+  // Labels seen through blur, one word a pixel: c0 = x >> 2, c1 = y (sampler/blurred_sweep.h).
+  kBlurredLabels = 13,
+  kBlur = 14,      // proposals of the blur
+  kBootstrap = 15,  // noise of simulated images: c0 = place in the row, c2 = row
+  // Images drawn to check a model: c0, c1 = pixel, block (diagnose/residual_block.h).
+  kReplicate = 16
 };
 
 inline constexpr std::uint32_t kMaxSlices = 1u << 24;

@@ -88,6 +88,32 @@ void describe(Archive& archive, ModelFacts& model) {
 }
 
 template <class Archive>
+void describe(Archive& archive, BlurFacts& blur) {
+  archive("sd_px", blur.value);
+  archive("lower90", blur.lower90);
+  archive("upper90", blur.upper90);
+  archive("estimated", blur.estimated);
+  archive("modelled", blur.modelled);
+}
+
+template <class Archive>
+void describe(Archive& archive, ClassesTried& tried) {
+  archive("classes", tried.classes);
+  archive("score", tried.score);
+  archive("below_best", tried.below_best);
+  archive("error", tried.error);
+}
+
+template <class Archive>
+void describe(Archive& archive, ClassChoiceFacts& choice) {
+  archive("used", choice.used);
+  archive("best_explained_by", choice.best_explained_by);
+  archive("runner_up", choice.runner_up);
+  archive("margin", choice.margin);
+  archive("tried", choice.tried);
+}
+
+template <class Archive>
 void describe(Archive& archive, CouplingTried& tried) {
   archive("beta", tried.beta);
   archive("score", tried.score);
@@ -100,6 +126,13 @@ void describe(Archive& archive, ScheduleFacts& schedule) {
   archive("sampling_sweeps", schedule.sampling_sweeps);
   archive("warm_up_forced", schedule.warm_up_forced);
   archive("stopped_by_limit", schedule.stopped_by_limit);
+}
+
+template <class Archive>
+void describe(Archive& archive, BootstrapFacts& bootstrap) {
+  archive("replicates", bootstrap.replicates);
+  archive("corrected_measurements", bootstrap.corrected);
+  archive("blur_px", bootstrap.blur);
 }
 
 template <class Archive>
@@ -210,11 +243,14 @@ void describe(Archive& archive, ImageRecord& record) {
     archive("restoration", record.restoration);
   } else {
     archive("grey_levels", record.grey);
+    archive("class_choice", record.class_choice);
     archive("model", record.model);
+    archive("blur", record.blur);
     archive("coupling_tried", record.coupling_tried);
     archive("schedule", record.schedule);
     archive("scalars", record.scalars);
     archive("probability", record.probability);
+    archive("bootstrap", record.bootstrap);
   }
   archive("verdict", record.verdict);
   if (record.command != kDenoise) {

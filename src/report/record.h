@@ -15,6 +15,7 @@
 #include "diagnose/model_check.h"
 #include "diagnose/verdict.h"
 #include "measure/measurement.h"
+#include "report/blur_facts.h"
 #include "report/named_value.h"
 #include "report/restoration_facts.h"
 
@@ -60,6 +61,21 @@ struct ModelFacts {
   std::vector<ClassFacts> classes;
 };
 
+struct ClassesTried {
+  int classes = 1;
+  double score = 0;       // log predictive density of held-out pixels less a penalty, nats
+  double below_best = 0;  // the best score less this one
+  double error = 0;       // its standard error
+};
+
+struct ClassChoiceFacts {
+  int used = 2;               // number of classes of the result
+  int best_explained_by = 0;  // what --classes auto chose, 1 too; 0 for a number that was given
+  int runner_up = 0;          // best score of the others; 0 if there is none
+  double margin = kUnknown;   // score of the choice less that of the runner-up
+  std::vector<ClassesTried> tried;
+};
+
 struct CouplingTried {
   double beta = 0;
   double score = 0;
@@ -78,6 +94,13 @@ struct ProbabilityFacts {
   double mcse = kUnknown;
   double share_rhat_above_1_05 = kUnknown;  // of the pixels
   double uncertain_share = kUnknown;        // of the pixels: largest probability below 0.9
+};
+
+// Of the parametric bootstrap of the measurements.
+struct BootstrapFacts {
+  int replicates = 0;  // 0: not done
+  int corrected = 0;   // measurements; the others were left as they were
+  double blur = 0;     // of the simulated images, standard deviation in pixels
 };
 
 struct VerdictFacts {
@@ -103,8 +126,8 @@ struct RunFacts {
 inline constexpr char kSegment[] = "segment";
 inline constexpr char kDenoise[] = "denoise";
 
-// The parts from `grey` to `probability` and those of the checks belong to segment, `restoration`
-// to denoise.
+// The parts from `grey` to `bootstrap` and those of the checks belong to segment, `restoration` to
+// denoise.
 struct ImageRecord {
   std::string command;
   std::string version;  // of the program
@@ -114,11 +137,14 @@ struct ImageRecord {
   GreyFacts grey;
   std::vector<NamedValue> settings;
   std::string image_seed;  // hexadecimal: JSON readers may round 64-bit integers
+  ClassChoiceFacts class_choice;
   ModelFacts model;
+  BlurFacts blur;
   std::vector<CouplingTried> coupling_tried;
   ScheduleFacts schedule;
   std::vector<NamedSummary> scalars;
   ProbabilityFacts probability;
+  BootstrapFacts bootstrap;
   RestorationFacts restoration;
   VerdictFacts verdict;
   Assessment assessment;

@@ -16,6 +16,7 @@ void describe(Archive& archive, RunImage& image) {
   archive("converged", image.converged);
   archive("verdict", image.verdict);
   archive("reasons", image.reasons);
+  archive("group", image.group);
   archive("record", image.record);
 }
 

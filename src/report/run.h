@@ -18,7 +18,8 @@ struct RunImage {
   bool converged = false;  // of done and skipped images
   std::string verdict;     // "sound", "look", "doubtful"; empty where nothing was checked
   std::vector<std::string> reasons;
-  std::string record;  // file relative to the output folder; empty if there is none
+  std::string group;       // of the summary (report/field_groups.h)
+  std::string record;      // file relative to the output folder; empty if there is none
 };
 
 struct RunSummary {

@@ -1,21 +1,25 @@
 #include "report/tables.h"
 
+#include <algorithm>
 #include <vector>
 
 #include "measure/folder_statistics.h"
 #include "report/csv.h"
+#include "report/field_groups.h"
 
 namespace stillfield {
 namespace {
 
 constexpr double kUsualAccuracy = 10;  // percent, the customary aim of ASTM E562
 
+using Records = std::vector<const ImageRecord*>;
+
 // Measurements of the same quantity together, in the order they are first met.
-std::vector<std::vector<Measurement>> grouped(std::span<const ImageRecord> records) {
+std::vector<std::vector<Measurement>> alike_together(const Records& records) {
   std::vector<std::vector<Measurement>> groups;
-  for (const ImageRecord& record : records) {
+  for (const ImageRecord* record : records) {
     std::size_t likely = 0;  // records list their measurements in the same order
-    for (const Measurement& m : record.measurements) {
+    for (const Measurement& m : record->measurements) {
       const auto alike = [&m](const std::vector<Measurement>& group) {
         const Measurement& g = group.front();
         return g.name == m.name && g.label == m.label && g.unit == m.unit;
@@ -28,6 +32,50 @@ std::vector<std::vector<Measurement>> grouped(std::span<const ImageRecord> recor
     }
   }
   return groups;
+}
+
+struct FieldGroup {
+  std::string name;
+  Records records;
+};
+
+// All fields, then each group, unless there is one alone.
+std::vector<FieldGroup> blocks_of(std::span<const ImageRecord> records,
+                                  std::span<const std::string> groups) {
+  std::vector<FieldGroup> blocks = {{kAllFields, {}}};
+  for (const ImageRecord& record : records) blocks.front().records.push_back(&record);
+  if (groups.empty()) return blocks;
+  for (std::size_t i = 0; i < records.size(); ++i) {
+    const auto named = [&](const FieldGroup& block) { return block.name == groups[i]; };
+    auto at = std::find_if(blocks.begin() + 1, blocks.end(), named);
+    if (at == blocks.end()) at = blocks.insert(at, {groups[i], {}});
+    at->records.push_back(&records[i]);
+  }
+  if (blocks.size() == 2) blocks.pop_back();
+  return blocks;
+}
+
+void add_block(const FieldGroup& block, CsvTable& table) {
+  for (const std::vector<Measurement>& fields : alike_together(block.records)) {
+    const FolderStatistics f = folder_statistics(fields);
+    table.start_row();
+    table.add(block.name);
+    table.add(std::int64_t{f.label});
+    table.add(f.name);
+    table.add(f.unit);
+    table.add(f.fields);
+    table.add(f.left_out);
+    for (const double value :
+         {f.mean, f.s, f.ci95, f.lower95, f.upper95, f.relative_accuracy, f.within_field_sd}) {
+      table.add(value);
+    }
+    table.add(f.basis);
+    if (const auto further = further_fields(f, kUsualAccuracy)) {
+      table.add(*further);
+    } else {
+      table.add(kUnknown);
+    }
+  }
 }
 
 }  // namespace
@@ -53,29 +101,11 @@ std::string measurements_csv(std::span<const ImageRecord> records) {
   return table.text();
 }
 
-std::string summary_csv(std::span<const ImageRecord> records) {
+std::string summary_csv(std::span<const ImageRecord> records, std::span<const std::string> groups) {
   CsvTable table(
-      "class,measurement,unit,n,left_out,mean,s,ci95,lower95,upper95,"
+      "group,class,measurement,unit,n,left_out,mean,s,ci95,lower95,upper95,"
       "relative_accuracy_percent,within_field_sd,basis,further_fields_for_10_percent");
-  for (const std::vector<Measurement>& group : grouped(records)) {
-    const FolderStatistics f = folder_statistics(group);
-    table.start_row();
-    table.add(std::int64_t{f.label});
-    table.add(f.name);
-    table.add(f.unit);
-    table.add(f.fields);
-    table.add(f.left_out);
-    for (const double value :
-         {f.mean, f.s, f.ci95, f.lower95, f.upper95, f.relative_accuracy, f.within_field_sd}) {
-      table.add(value);
-    }
-    table.add(f.basis);
-    if (const auto further = further_fields(f, kUsualAccuracy)) {
-      table.add(*further);
-    } else {
-      table.add(kUnknown);
-    }
-  }
+  for (const FieldGroup& block : blocks_of(records, groups)) add_block(block, table);
   return table.text();
 }
 

@@ -6,6 +6,7 @@
 #include <memory>
 
 #include "core/elementary.h"
+#include "sampler/held_out.h"
 #include "sampler/neighbour_sample.h"
 #include "sampler/path_sampling.h"
 #include "sampler/sweep.h"
@@ -25,15 +26,6 @@ constexpr int kSampledPixels = 8192;  // for alpha, a chain and block
 // Common practice, no source; of the order of the standard error of a difference on 128^2 fields.
 constexpr double kScoreNoise = 12.0;
 
-// The held-out pixels of one field. P(z_s = k | neighbours) is averaged over the counted sweeps:
-// far less noisy than the share of sweeps with label k (Rao-Blackwell).
-struct HeldOut {
-  std::vector<double> value;
-  std::vector<std::size_t> neighbour;  // [pixel * neighbours + i]: label bytes
-  std::vector<double> weight;          // [i], the same for all pixels
-  std::vector<double> probability;     // [pixel * classes + k]: sums over the counted sweeps
-};
-
 // One chain's part of the search: a field with some pixels held out, and a chain of its own.
 struct SearchField {
   GreyLevels grey;
@@ -51,43 +43,6 @@ Offset window_corner(const Extent& e, int c, int width, int height) {
     return std::clamp(centre - window / 2, 0, size - window) / 4 * 4;
   };
   return {place(e.width, width, c & 1), place(e.height, height, c >> 1 & 1), 0};
-}
-
-void hold_out(SearchField& f, int fold) {
-  const Colouring& c = *f.colouring;
-  HeldOut& held = f.held_out;
-  for (const NeighbourRing& ring : c.neighbourhood().rings) {
-    held.weight.insert(held.weight.end(), ring.neighbours.size(), ring.weight);
-  }
-  const auto hold = [&](int x, int y, int z) {
-    const Site s = c.site(x, y, z);
-    const LabelBand band = c.band(s.colour, s.slice);
-    const std::size_t at = c.label_row(s.colour, s.slice, s.row) + c.byte_of(s.column);
-    for (int r = 0; r < band.ring_count; ++r) {
-      const Ring& ring = band.rings[static_cast<std::size_t>(r)];
-      for (int i = 0; i < ring.neighbours; ++i) {
-        held.neighbour.push_back(at + ring.offset[s.row & 1][i]);
-      }
-    }
-  };
-  const Extent e = f.grey.level.extent();
-  for (int z = 0; z < e.depth; ++z) {
-    for (int y = 0; y < e.height; ++y) {
-      for (int x = 0; x < e.width; ++x) {
-        std::uint16_t& level = f.grey.level.at(x, y, z);
-        if (level == f.grey.missing()) continue;
-        const std::uint32_t w =
-            philox4x32({static_cast<std::uint32_t>(x), static_cast<std::uint32_t>(y),
-                        static_cast<std::uint32_t>(z), counter_word3(Purpose::kHeldOut, 0, 0)},
-                       f.chain.key)[0];
-        if (w % kFolds != static_cast<std::uint32_t>(fold) % kFolds) continue;
-        hold(x, y, z);
-        held.value.push_back(f.grey.value(level));
-        level = f.grey.missing();
-      }
-    }
-  }
-  held.probability.resize(held.value.size() * f.chain.model.classes.mean.size());
 }
 
 // Fills `f` in place: its observed field refers to its grey levels and colouring.
@@ -122,7 +77,8 @@ void open_search_field(const ObservedField& field, const LabelChain& chain, int 
   f.chain.model = chain.model;
   f.chain.labels = guarded_labels(*f.colouring);
   scatter_labels(*f.colouring, labels.view(), f.chain.labels);
-  hold_out(f, c);
+  f.held_out = hold_out(*f.colouring, f.chain.key, static_cast<std::uint32_t>(c) % kFolds, kFolds,
+                        f.chain.model.size(), f.grey);
   f.observed = observe(*f.colouring, f.grey);
 }
 
@@ -132,44 +88,6 @@ void advance(SearchField& f, const GaussianPrior& prior, const Pool& pool) {
   total_labels(f.observed, pool, f.chain);
   RandomStream random(f.chain.key, Purpose::kHeldOut, f.chain.sweeps_done);
   draw_gaussian_classes(f.grey, f.chain.totals.classes, prior, random, f.chain.model.classes);
-}
-
-// Adds P(z_s = k | neighbours) of the current labels.
-void predict_held_out(SearchField& f) {
-  HeldOut& held = f.held_out;
-  const LabelPrior& prior = f.chain.model.prior;
-  const std::size_t classes = prior.alpha.size();
-  const std::size_t neighbours = held.weight.size();
-  std::vector<double> p(classes);
-  for (std::size_t s = 0; s < held.value.size(); ++s) {
-    p = prior.alpha;
-    for (std::size_t i = 0; i < neighbours; ++i) {
-      const std::uint8_t k = f.chain.labels[held.neighbour[s * neighbours + i]];
-      if (k < classes) p[k] += prior.beta * held.weight[i];
-    }
-    const double top = *std::max_element(p.begin(), p.end());
-    double sum = 0.0;
-    for (double& v : p) sum += v = exact_exp(v - top);
-    for (std::size_t k = 0; k < classes; ++k) held.probability[s * classes + k] += p[k] / sum;
-  }
-}
-
-// Sum of the log predictive densities; the probabilities are emptied for the next coupling.
-double score_held_out(SearchField& f, const GaussianClasses& model) {
-  HeldOut& held = f.held_out;
-  const std::size_t classes = model.mean.size();
-  double sum = 0.0;
-  for (std::size_t s = 0; s < held.value.size(); ++s) {
-    double density = 0.0;
-    for (std::size_t k = 0; k < classes; ++k) {
-      const double d = (held.value[s] - model.mean[k]) / model.sd[k];
-      const double p = held.probability[s * classes + k] / kCountingBlocks;
-      density += p * exact_exp(-0.5 * d * d) / model.sd[k];
-    }
-    sum += exact_log(std::max(density, 1e-300));
-  }
-  std::fill(held.probability.begin(), held.probability.end(), 0.0);
-  return sum;
 }
 
 // Mean of beta and alpha over the ladder, each rung weighted by exp((score - best) / kScoreNoise).
@@ -231,13 +149,13 @@ CouplingChoice search_coupling(const ObservedField& field, const GaussianPrior& 
       GaussianClasses mean = f.chain.model.classes;
       for (int block = 0; block < kCountingBlocks; ++block) {
         advance(f, prior, serial);
-        predict_held_out(f);
+        predict_held_out(f.chain, f.held_out);
         for (std::size_t k = 0; k < mean.mean.size(); ++k) {
           mean.mean[k] += (f.chain.model.classes.mean[k] - mean.mean[k]) / (block + 1);
           mean.sd[k] += (f.chain.model.classes.sd[k] - mean.sd[k]) / (block + 1);
         }
       }
-      score[i] = score_held_out(f, mean);
+      for (const double l : take_log_densities(mean, f.held_out)) score[i] += l;
     });
     double sum = 0.0;
     for (const double s : score) sum += s;

@@ -164,8 +164,8 @@ void total_labels(const ObservedField& field, const Pool& pool, LabelChain& chai
   }
 }
 
-void advance_chain(const LabelProblem& problem, int sweeps, const Pool& pool, WeightPlanes& weights,
-                   LabelChain& chain) {
+void advance_chain(const LabelPosterior& problem, int sweeps, const Pool& pool,
+                   WeightPlanes& weights, LabelChain& chain) {
   const Colouring& colouring = *problem.field.colouring;
   prepare_weights(problem.field, chain.model, pool, weights);
   sweep_labels(colouring, weights, sweeps, Purpose::kLabels, pool, chain);

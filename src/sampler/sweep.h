@@ -29,15 +29,15 @@ void sweep_labels(const Colouring& colouring, const WeightPlanes& weights, int s
 void total_labels(const ObservedField& field, const Pool& pool, LabelChain& chain);
 
 // The posterior of one field: what all chains share.
-struct LabelProblem {
+struct LabelPosterior {
   ObservedField field;
   GaussianPrior prior;
   const LogPartition* log_partition = nullptr;  // null: the coupling is not drawn
 };
 
 // One block of one chain: labels given the parameters, then parameters given the labels.
-void advance_chain(const LabelProblem& problem, int sweeps, const Pool& pool, WeightPlanes& weights,
-                   LabelChain& chain);
+void advance_chain(const LabelPosterior& problem, int sweeps, const Pool& pool,
+                   WeightPlanes& weights, LabelChain& chain);
 
 }  // namespace stillfield
 

@@ -14,9 +14,27 @@ TEST_CASE("whole numbers are taken within their range and nothing else") {
   }
 }
 
+TEST_CASE("a number of classes may be left to the data") {
+  const auto check = auto_or_whole(2, 64);
+  for (const char* good : {"auto", "2", "64"}) CHECK(check(good).empty());
+  for (const char* bad : {"Auto", "1", "65", "", "2.5"}) {
+    CAPTURE(bad);
+    CHECK(check(bad) ==
+          "must be auto or a whole number from 2 to 64, not '" + std::string(bad) + "'");
+  }
+}
+
 TEST_CASE("seeds use all 64 bits") {
   CHECK(parse_whole("18446744073709551615") == ~std::uint64_t{0});
   CHECK_FALSE(parse_whole("18446744073709551616"));
+}
+
+TEST_CASE("a blur is auto, none or a number in range") {
+  for (const char* good : {"auto", "none", "0.2", "0.85", "3"}) CHECK(check_blur(good).empty());
+  for (const char* bad : {"", "None", "0", "-1", "3.01", "nan", "inf", "1px"}) {
+    CAPTURE(bad);
+    CHECK_FALSE(check_blur(bad).empty());
+  }
 }
 
 TEST_CASE("a coupling is auto, sampled or a number in range") {

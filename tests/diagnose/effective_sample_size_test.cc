@@ -41,6 +41,27 @@ TEST_CASE("AR(1) chains have (1 - rho) / (1 + rho) effective draws each") {
   CHECK(mean_of(share) == Approx((1 - rho) / (1 + rho)).epsilon(0.05));
 }
 
+TEST_CASE("AR(1) theory holds at a stated false-alarm level") {
+  // 200 runs. ESS: its mean lies within 3.29 of its standard errors of n m (1 - rho) / (1 + rho),
+  // give or take 2 % for the bias of a finite chain: false alarm below .001. MCSE: the true mean is
+  // 0, so mean / MCSE is standard normal, and the runs with |mean / MCSE| > 1.96 are
+  // Binomial(200, .05): outside 1..22 with probability .0002 (binomial sums).
+  TestRandom random(27);
+  const double rho = GENERATE(0.5, 0.9);
+  const double n = 2000, m = 4, runs = 200;
+  std::vector<double> share;
+  int far = 0;
+  for (int run = 0; run < runs; ++run) {
+    const Draws draws = autoregressive_draws(random, 2000, 4, rho);
+    share.push_back(ess_mean(draws) / (n * m * (1 - rho) / (1 + rho)));
+    far += std::fabs(mean_of(draws.values())) > 1.96 * mcse_mean(draws) ? 1 : 0;
+  }
+  CAPTURE(rho, mean_of(share), far);
+  CHECK(std::fabs(mean_of(share) - 1) < 0.02 + 3.29 * std::sqrt(variance_of(share) / runs));
+  CHECK(far >= 1);
+  CHECK(far <= 22);
+}
+
 TEST_CASE("the standard error of the mean is the scatter of the mean") {
   // Closed form: m chains of n draws of AR(1) with unit innovations have
   // Var(mean) = sigma^2 / (m n^2) (n + 2 sum_{k<n} (n - k) rho^k), sigma^2 = 1 / (1 - rho^2).

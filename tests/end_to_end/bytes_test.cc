@@ -91,6 +91,10 @@ TEST_CASE("the coupling drawn by path sampling: same bytes everywhere") {
   check_labels(2, {"--coupling", "sampled", "--max-sweeps", "600"});
 }
 
+TEST_CASE("labels seen through blur: same bytes everywhere") {
+  check_labels(2, {"--blur", "0.8", "--max-sweeps", "600"});
+}
+
 TEST_CASE("restored intensities, every prior and kind of noise: same bytes everywhere") {
   const auto save = [](const fs::path& in) {
     save_png(in / "grey8.png", draw_scene({64, 48, 3, 1, 40, 60, 15}));

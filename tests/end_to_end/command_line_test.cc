@@ -22,7 +22,7 @@ TEST_CASE("version, help and info") {
                            "--variance",   "--chains",     "--seed",       "--threads",
                            "--max-sweeps", "--quick",      "--redo",       "--strict",
                            "--quiet",      "--pixel-size", "--min-area",   "--particle-neighbours",
-                           "--mask",       "--cpu-target", "--max-pixels", "--config"}) {
+                           "--mask",       "--replicates", "--no-bootstrap", "--cpu-target", "--max-pixels", "--config"}) {
     CHECK_THAT(options.out, Contains(name));
   }
   const Ended info = run_program({"info"});

@@ -70,6 +70,44 @@ TEST_CASE("maps agree with each other and with the record") {
   CHECK(preview.pixels.extent() == labels.pixels.extent());
 }
 
+TEST_CASE("the number of classes may be left to the data, and groups of images summed up apart") {
+  const TempFolder folder;
+  save_png(folder / "in/x/a.png", draw_scene({96, 80, 3, 4}));
+  save_png(folder / "in/y/flat.png", draw_scene({64, 48, 1, 5}));
+  const auto segmented = [&](const fs::path& out, const std::vector<std::string>& more) {
+    std::vector<std::string> words = {
+        "segment", (folder / "in").string(), "--classes", "auto", "--out", out.string(), "--quick"};
+    words.insert(words.end(), more.begin(), more.end());
+    return run_program(words);
+  };
+  REQUIRE(segmented(folder / "out", {}).code == 0);
+  const auto record = read_json(folder / "out/x/a.record.json");
+  CHECK(record["settings"]["classes"] == "auto");
+  CHECK(record["class_choice"]["used"] == 3);
+  CHECK(record["class_choice"]["best_explained_by"] == 3);
+  CHECK(record["class_choice"]["tried"].size() == 8);
+  CHECK(record["class_choice"]["runner_up"].is_number());
+  CHECK(record["model"]["classes"].size() == 3);
+  CHECK(count_pages(folder / "out/x/a.probability.tif") == 3);
+  const auto flat = read_json(folder / "out/y/flat.record.json");
+  CHECK(flat["class_choice"]["used"] == 2);
+  CHECK(flat["class_choice"]["best_explained_by"] == 1);
+  CHECK_THAT(flat["verdict"]["sentences"].dump(), Contains("One class explains the image"));
+
+  const CsvRows by_folder = read_csv(get(folder / "out/summary.csv"));
+  CHECK(by_folder.at(1).at(0) == "(all)");
+  CHECK(by_folder.back().at(0) == "y");
+  put(folder / "groups.csv", "image,heat\nflat.png,7\n");
+  const std::vector<std::string> grouped = {"--group", (folder / "groups.csv").string(),
+                                            "--group-column", "heat"};
+  REQUIRE(segmented(folder / "out", grouped).code == 0);
+  CHECK(read_csv(get(folder / "out/summary.csv")).back().at(0) == "7");
+  put(folder / "groups.csv", "image,heat\nb.png,7\n");
+  const Ended wrong = segmented(folder / "out", grouped);
+  CHECK(wrong.code != 0);
+  CHECK_THAT(wrong.err, Contains("groups.csv: line 2: names `b.png`"));
+}
+
 TEST_CASE("the record holds settings, digests, diagnostics, verdict and cautions") {
   const TempFolder folder;
   save_tiff16(folder / "in/a.tif", draw_scene({64, 48, 2, 4, 1000, 400, 120}));

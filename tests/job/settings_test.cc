@@ -22,9 +22,14 @@ TEST_CASE("every setting that changes results changes the digest") {
     return digest(settings) != before;
   };
   CHECK(differs([](auto& s) { s.classes = 3; }));
+  CHECK(differs([](auto& s) { s.classes = kAutoClasses; }));
   CHECK(differs([](auto& s) { s.connectivity = Connectivity::kEight; }));
   CHECK(differs([](auto& s) { s.coupling.mode = CouplingMode::kSampled; }));
   CHECK(differs([](auto& s) { s.shared_variance = true; }));
+  CHECK(differs([](auto& s) {
+    s.blur.mode = s.blur.mode == BlurMode::kAuto ? BlurMode::kNone : BlurMode::kAuto;
+  }));
+  CHECK(differs([](auto& s) { s.blur = {BlurMode::kGiven, 0.8}; }));
   CHECK(differs([](auto& s) { s.chains = 5; }));
   CHECK(differs([](auto& s) { s.seed = 2; }));
   CHECK(differs([](auto& s) { s.schedule.sweeps_a_block = 8; }));

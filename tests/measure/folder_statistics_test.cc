@@ -49,6 +49,30 @@ TEST_CASE("folder statistics by hand") {
   CHECK(further_fields(f, 30) == 0);
 }
 
+TEST_CASE("folder statistics of a point count as ASTM E562 practises it") {
+  // Worked by hand with the formulas of ASTM E562 (from memory; the counts are invented). A grid of
+  // P = 100 points on n = 10 fields; points in the phase, with half a point for one on a border:
+  // 8 10.5 9 12 7.5 11 9.5 10 8.5 14, so P_p = .08 .105 ... .14.
+  // Sum 100, mean 10 points. Deviations -2 .5 -1 2 -2.5 1 -.5 0 -1.5 4, squares 4 .25 1 4 6.25 1 .25
+  // 0 2.25 16, sum 35, s = sqrt(35 / 9) = 1.972027 points. t(0.975, 9) = 2.262157 (NIST/SEMATECH
+  // e-Handbook of Statistical Methods, 1.3.6.7.2, prints 2.262): 95 % CI = 2.262157 * 1.972027 /
+  // sqrt 10 = 1.410703 points, %RA = 14.10703. Fields for 10 %: t s / sqrt n <= 1 point, n >=
+  // 3.888889 t^2. t(16) = 2.119905: n = 17, 17.4767 > 17. t(17) = 2.109816: n = 18, 17.3107 <= 18.
+  // Eight more. Each field by itself: binomial sd sqrt(.1 * .9 / 100) = .03.
+  std::vector<Measurement> fields;
+  for (const double points : {8.0, 10.5, 9.0, 12.0, 7.5, 11.0, 9.5, 10.0, 8.5, 14.0}) {
+    fields.push_back(field(points / 100, 0.03));
+  }
+  const FolderStatistics f = folder_statistics(fields);
+  CHECK(f.mean == Approx(0.1).epsilon(1e-12));
+  CHECK(f.s == Approx(0.01972027).epsilon(1e-6));
+  CHECK(f.standard_uncertainty == Approx(0.006236096).epsilon(1e-6));
+  CHECK(f.ci95 == Approx(0.01410703).epsilon(1e-6));
+  CHECK(f.relative_accuracy == Approx(14.10703).epsilon(1e-6));
+  CHECK(f.within_field_sd == Approx(0.03));
+  CHECK(further_fields(f) == 8);
+}
+
 TEST_CASE("the uncertainty within fields is not counted twice") {
   const std::vector<Measurement> sharp = {field(1, 0), field(2, 0), field(3, 0)};
   const std::vector<Measurement> blurred = {field(1, 9), field(2, 9), field(3, 9)};

@@ -43,8 +43,10 @@ inline ImageRecord record_sample(const std::string& path = "heat/a, \"b\".tif") 
                      {"flag", true}};
   record.image_seed = "0xfedcba9876543210";
   TraceSummary summary{0.25, 0.01, 0.23, 0.27, 0.22, 0.28, 0.0005, 1.002, 500, 430};
+  record.class_choice = {2, 1, 3, -4.5, {{1, -900.5, 2.5, 1.25}, {2, -898, 0, 0}}};
   record.model = {
       1.25, kUnknown, kUnknown, kUnknown, {{1, 0, summary, summary}, {2, -0.3, summary, summary}}};
+  record.blur = {0.8, 0.7, 0.9, true, true};
   record.coupling_tried = {{1.0, -100.5}, {1.25, -99.75}};
   record.schedule = {240, 96, 144, false, true};
   record.scalars = {{"area_fraction of class 1", summary}, {"equal_neighbours", {}}};

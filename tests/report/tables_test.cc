@@ -27,7 +27,7 @@ std::string field(const CsvRows& rows, std::size_t row, const std::string& colum
 std::vector<ImageRecord> fields(const std::vector<double>& fractions) {
   std::vector<ImageRecord> records;
   for (const double fraction : fractions) {
-    records.push_back(record_sample(std::string("f") + std::to_string(records.size()) + ".png"));
+    records.push_back(record_sample(std::to_string(records.size()) + ".png"));
     records.back().measurements = {area_fraction(1, fraction, 0.01),
                                    area_fraction(2, 1 - fraction, 0.01)};
   }
@@ -103,9 +103,33 @@ TEST_CASE("run.json lists every image in the order of the run") {
   run.command = "segment";
   run.settings = {{"classes", std::uint64_t{2}}};
   run.counts = {{"done", std::uint64_t{1}}, {"failed", std::uint64_t{1}}};
-  run.images = {{"a.png", 1, "done", "", true, "sound", {}, "a.record.json"},
-                {"b.png", 1, "failed", "b.png: is empty", false, "", {}, ""}};
+  run.images = {{"a.png", 1, "done", "", true, "sound", {}, "north", "a.record.json"},
+                {"b.png", 1, "failed", "b.png: is empty", false, "", {}, "", ""}};
   CHECK_THAT(run_text(run), Catch::Matchers::Contains("\"status\": \"failed\"") &&
                                 Catch::Matchers::Contains("\"sentence\": \"b.png: is empty\"") &&
                                 Catch::Matchers::Contains("\"done\": 1"));
+}
+
+// By hand: north .2 .4, mean .3, s .1 sqrt 2; south .6 alone; all three mean .4, s .2.
+TEST_CASE("the summary has a block for all fields and one for each group") {
+  const std::vector<std::string> groups = {"north", "south", "north"};
+  const CsvRows rows = read_csv(summary_csv(fields({0.2, 0.6, 0.4}), groups));
+  REQUIRE(rows.size() == 7);
+  CHECK(rows[0][0] == "group");
+  const std::vector<std::string> names = {"(all)", "(all)", "north", "north", "south", "south"};
+  for (std::size_t i = 0; i < names.size(); ++i) CHECK(field(rows, i + 1, "group") == names[i]);
+  CHECK(number(field(rows, 1, "mean")) == Approx(0.4));
+  CHECK(number(field(rows, 1, "s")) == Approx(0.2));
+  CHECK(field(rows, 3, "n") == "2");
+  CHECK(number(field(rows, 3, "mean")) == Approx(0.3));
+  CHECK(number(field(rows, 3, "s")) == Approx(0.141421).epsilon(1e-5));
+  CHECK(number(field(rows, 3, "within_field_sd")) == Approx(0.01));
+  CHECK(field(rows, 5, "n") == "1");
+  CHECK(field(rows, 5, "basis") == "one field: posterior only");
+  CHECK(number(field(rows, 6, "mean")) == Approx(0.4));
+}
+
+TEST_CASE("one group alone has no block of its own") {
+  const std::vector<std::string> groups = {"north", "north"};
+  CHECK(read_csv(summary_csv(fields({0.2, 0.6}), groups)).size() == 3);
 }

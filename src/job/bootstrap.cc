@@ -1,0 +1,239 @@
+#include "job/bootstrap.h"
+
+#include <algorithm>
+#include <cmath>
+#include <limits>
+#include <utility>
+
+#include "core/error.h"
+#include "diagnose/moments.h"
+#include "job/edge_blur.h"
+#include "job/every_chain.h"
+#include "job/label_draws.h"
+#include "job/short_run.h"
+#include "measure/bootstrap_interval.h"
+#include "measure/label_cleaning.h"
+#include "measure/one_particle.h"
+#include "model/label_scene.h"
+
+namespace stillfield {
+namespace {
+
+constexpr std::uint32_t kFirstKey = 0x1000;  // chain numbers of the short runs
+constexpr int kDrawsAChain = 8;              // for the posterior scatter of cleaned draws
+constexpr int kLargeReplicates = 8;
+// Share of a correction that is its own standard uncertainty, squared: docs/trust.md has the table
+// that decided.
+constexpr double kFractionBiasShare = 0.5;
+constexpr double kShapeBiasShare = 1.0;
+
+using Labels = Volume<std::uint8_t>;
+using Values = std::vector<double>;
+
+// Posterior means of the classes; the coupling and class field as frozen.
+LabelModel mean_model(const LabelSampling& sampling) {
+  LabelModel model = sampling.chains.front().model;
+  model.prior = sampling.prior;
+  const std::vector<Trace>& traces = sampling.traces->all();
+  for (std::size_t i = 0; i < traces.size(); ++i) {
+    const double mean = sampling.scalars[i].summary.mean;
+    const auto k = static_cast<std::size_t>(std::max(traces[i].label, 1) - 1);
+    if (traces[i].name == "class_mean") model.classes.mean[k] = mean;
+    if (traces[i].name == "class_sd") model.classes.sd[k] = mean;
+    if (traces[i].name == "coupling") model.prior.beta = mean;
+  }
+  return model;
+}
+
+ShortRunSettings short_run_settings(const SegmentSettings& settings, std::int64_t pixels) {
+  ShortRunSettings run;
+  run.connectivity = settings.connectivity;
+  run.fit_class_field = settings.coupling.mode == CouplingMode::kAuto;
+  run.sweeps_a_block = settings.schedule.sweeps_a_block;
+  if (pixels > kWholeRuns) {
+    run.settling = 40;
+    run.counted = 60;
+  }
+  return run;
+}
+
+Volume<float> grey_values(const GreyLevels& grey) {
+  Volume<float> plane(grey.level.extent());
+  for (int y = 0; y < plane.height(); ++y) {
+    for (int x = 0; x < plane.width(); ++x) {
+      const std::uint16_t level = grey.level.at(x, y);
+      plane.at(x, y) = level == grey.missing() ? std::numeric_limits<float>::quiet_NaN()
+                                               : static_cast<float>(grey.value(level));
+    }
+  }
+  return plane;
+}
+
+// Everything the replicates share.
+struct Setting {
+  const BootstrapInput& input;
+  std::vector<MeasureKey> keys;
+  LabelModel model;
+  ShortRunSettings run;
+  double blur = 0;
+  GaussianClasses scene;           // means and noise of the simulated images
+  std::vector<double> least_area;  // of a clear component
+
+  Values measure(View<const std::uint8_t> labels, View<const float> pixels) const {
+    return measure_labels(labels, pixels, input.usable, input.measure);
+  }
+  Labels cleaned(View<const std::uint8_t> labels) const {
+    return without_specks(labels, least_area);
+  }
+  Values statistic(const ShortRun& result, View<const float> pixels) const {
+    Values values = measure(cleaned(result.labels.view()).view(), pixels);
+    for (std::size_t i = 0; i < keys.size(); ++i) {
+      if (keys[i].name == "area_fraction") {
+        values[i] = result.share[static_cast<std::size_t>(keys[i].label - 1)];
+      }
+    }
+    return values;
+  }
+};
+
+// Smoothed draws: some of them truths, and what is measured on all of them once cleaned.
+struct SmoothedDraws {
+  std::vector<Labels> truths;
+  std::vector<Values> measured;  // [draw]
+};
+
+SmoothedDraws smoothed_draws(const Setting& setting, int truths, const Pool& pool,
+                             JobObserver& observer, LabelSampling& sampling) {
+  const int chains = static_cast<int>(sampling.chains.size());
+  SmoothedDraws all;
+  all.truths.resize(static_cast<std::size_t>(truths));
+  all.measured.resize(static_cast<std::size_t>(chains * kDrawsAChain));
+  // Truths come from as many chains as there are, then from draws as far apart as there are.
+  const int rounds = (truths + chains - 1) / chains;
+  for_label_draws(
+      setting.input.settings, kDrawsAChain, pool, observer, sampling, [&](const LabelDraw& draw) {
+        Labels smooth = majority_labels(draw.labels, setting.model.size());
+        const auto at = static_cast<std::size_t>(draw.draw * chains + draw.chain);
+        all.measured[at] =
+            setting.measure(setting.cleaned(smooth.view()).view(), setting.input.pixels);
+        for (int round = 0; round < rounds; ++round) {
+          const int truth = round * chains + draw.chain;
+          if (draw.draw == kDrawsAChain - 1 - round * kDrawsAChain / rounds && truth < truths) {
+            all.truths[static_cast<std::size_t>(truth)] = std::move(smooth);
+          }
+        }
+      });
+  return all;
+}
+
+// T(y*) - m(z*) of one replicate.
+Values errors_of(const Setting& setting, View<const std::uint8_t> truth, int number,
+                 WeightPlanes& weights, const Pool& pool) {
+  const PhiloxKey key =
+      chain_key(setting.input.image_seed, kFirstKey + static_cast<std::uint32_t>(number));
+  const GreyLevels simulated =
+      simulate_scene(setting.input.grey, truth, setting.blur, setting.scene, key);
+  const ShortRun again = run_shortly(simulated, setting.input.usable, truth, setting.model,
+                                     setting.run, key, pool, weights);
+  const Volume<float> pixels = grey_values(simulated);
+  Values errors = setting.statistic(again, pixels.view());
+  const Values truths = setting.measure(truth, pixels.view());
+  for (std::size_t i = 0; i < errors.size(); ++i) errors[i] -= truths[i];
+  return errors;
+}
+
+double variance_over(const std::vector<Values>& draws, std::size_t key) {
+  Values finite;
+  for (const Values& v : draws) {
+    if (std::isfinite(v[key])) finite.push_back(v[key]);
+  }
+  return finite.size() < 2 ? 0.0 : variance_of(finite);
+}
+
+bool correct(const CorrectedValue& value, Measurement& m) {
+  if (!std::isfinite(value.estimate)) return false;
+  m.estimate = value.estimate;
+  m.sd = value.sd;
+  m.lower90 = value.lower90;
+  m.upper90 = value.upper90;
+  m.lower95 = value.lower95;
+  m.upper95 = value.upper95;
+  return true;
+}
+
+}  // namespace
+
+BootstrapFacts bootstrap_measurements(const BootstrapInput& input, const Pool& pool,
+                                      JobObserver& observer, LabelSampling& sampling,
+                                      std::vector<Measurement>& measurements) {
+  const Extent extent = input.grey.level.extent();
+  Setting setting{input,
+                  measure_keys(input.measure),
+                  mean_model(sampling),
+                  short_run_settings(input.settings, extent.sites()),
+                  0.0,
+                  {},
+                  {}};
+  const int asked = input.settings.replicates;
+  const int each = (extent.sites() > kWholeRuns ? std::min(asked, kLargeReplicates) : asked) / 2;
+  const auto stop = [&] {
+    if (observer.stop_requested()) throw Error(ErrorKind::kInterrupt, "stopped on request");
+  };
+
+  const Labels found = sampling.counts->most_probable();
+  setting.blur =
+      blur_from_edges(input.grey, found.view(), setting.model, setting.run, input.image_seed, pool);
+  stop();
+  setting.scene = setting.blur > 0
+                      ? fit_scene(input.grey, found.view(), setting.blur, setting.model.classes)
+                      : setting.model.classes;
+  setting.least_area = least_clear_areas(setting.scene.mean, setting.scene.sd);
+  const Labels smooth = setting.cleaned(found.view());
+  const SmoothedDraws draws = smoothed_draws(setting, each, pool, observer, sampling);
+
+  // Run 0 is of the image itself.
+  ShortRun base;
+  std::vector<std::vector<Values>> errors(2, std::vector<Values>(static_cast<std::size_t>(each)));
+  EveryChain every(extent, 1 + 2 * each, pool);
+  every.run([&](int r, WeightPlanes& weights, const Pool& inner) {
+    if (observer.stop_requested()) return;
+    if (r == 0) {
+      base = run_shortly(input.grey, input.usable, found.view(), setting.model, setting.run,
+                         chain_key(input.image_seed, kFirstKey), inner, weights);
+      return;
+    }
+    const auto i = static_cast<std::size_t>((r - 1) / 2);
+    const bool drawn = r % 2 == 0;
+    errors[drawn ? 1 : 0][i] =
+        errors_of(setting, drawn ? draws.truths[i].view() : smooth.view(), r, weights, inner);
+  });
+  stop();
+
+  const Values value = setting.statistic(base, input.pixels);
+  const Values floor = one_particle_variances(setting.cleaned(base.labels.view()).view(),
+                                              input.usable, input.measure);
+  BootstrapFacts facts{2 * each, 0, setting.blur};
+  for (Measurement& m : measurements) {
+    const auto key =
+        std::find_if(setting.keys.begin(), setting.keys.end(),
+                     [&](const MeasureKey& k) { return k.name == m.name && k.label == m.label; });
+    if (key == setting.keys.end() || !std::isfinite(m.estimate)) continue;
+    const auto i = static_cast<std::size_t>(key - setting.keys.begin());
+    const bool fraction = m.name == "area_fraction";
+    BootstrapErrors bootstrap;
+    bootstrap.value = value[i];
+    for (const std::vector<Values>& kind : errors) {
+      Values& list = bootstrap.errors.emplace_back();
+      for (const Values& e : kind) list.push_back(e[i]);
+    }
+    bootstrap.posterior_variance = fraction ? m.sd * m.sd : variance_over(draws.measured, i);
+    bootstrap.bias_share = fraction ? kFractionBiasShare : kShapeBiasShare;
+    bootstrap.floor_variance = floor[i];
+    if (m.name != "mean_intensity") bootstrap.lowest = 0;
+    if (fraction) bootstrap.highest = 1;
+    facts.corrected += correct(correct_value(bootstrap), m) ? 1 : 0;
+  }
+  return facts;
+}
+
+}  // namespace stillfield
