@@ -96,6 +96,14 @@ struct Setting {
   }
 };
 
+// The blur that was modelled; without one, what the borders show.
+double simulated_blur(const Setting& setting, const LabelSampling& sampling,
+                      View<const std::uint8_t> found, const Pool& pool) {
+  if (sampling.blur.modelled) return sampling.blur.value;
+  return blur_from_edges(setting.input.grey, found, setting.model, setting.run,
+                         setting.input.image_seed, pool);
+}
+
 // Smoothed draws: some of them truths, and what is measured on all of them once cleaned.
 struct SmoothedDraws {
   std::vector<Labels> truths;
@@ -181,8 +189,7 @@ BootstrapFacts bootstrap_measurements(const BootstrapInput& input, const Pool& p
   };
 
   const Labels found = sampling.counts->most_probable();
-  setting.blur =
-      blur_from_edges(input.grey, found.view(), setting.model, setting.run, input.image_seed, pool);
+  setting.blur = simulated_blur(setting, sampling, found.view(), pool);
   stop();
   setting.scene = setting.blur > 0
                       ? fit_scene(input.grey, found.view(), setting.blur, setting.model.classes)

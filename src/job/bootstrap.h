@@ -2,12 +2,12 @@
 // what it did to the image.
 //
 // Why      posterior intervals count the scatter of the labels under the fitted field, not the
-// error
-//          of the field itself; on real shapes they are far too narrow (docs/trust.md)
+//          error of the field itself; on real shapes they are far too narrow (docs/trust.md)
 // Truths   half of the replicates: the most probable labels without specks; half: draws from the
 //          posterior, smoothed by a 3 x 3 majority (measure/label_cleaning.h). The first are
 //          smoother than the scene, the second rougher
-// Images   class means and noise as fitted, blurred as the image's borders show (job/edge_blur.h)
+// Images   class means and noise as fitted, blurred as the sampling modelled it or, where it
+//          modelled none, as the borders show (job/edge_blur.h)
 // Value    T of a short run (job/short_run.h) of an image from given labels: area_fraction is the
 //          mean over its sweeps, all else is measured on its most probable labels without specks
 // Interval measure/bootstrap_interval.h, with a floor of one doubtful particle

@@ -44,10 +44,10 @@ enum class Purpose : std::uint32_t {
   kSplitNoise = 12,  // noise that splits an image in two: one normal a pixel
   // Labels seen through blur, one word a pixel: c0 = x >> 2, c1 = y (sampler/blurred_sweep.h).
   kBlurredLabels = 13,
-  kBlur = 14,      // proposals of the blur
+  kBlur = 14,       // proposals of the blur
   kBootstrap = 15,  // noise of simulated images: c0 = place in the row, c2 = row
-  // Images drawn to check a model: c0, c1 = pixel, block (diagnose/residual_block.h).
-  kReplicate = 16
+  kReplicate = 16   // images drawn to check a model: c0, c1 = pixel, block
+                    // (diagnose/residual_block.h)
 };
 
 inline constexpr std::uint32_t kMaxSlices = 1u << 24;

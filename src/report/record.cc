@@ -8,6 +8,7 @@
 #include "image/file_bytes.h"
 #include "report/check_archive.h"
 #include "report/json_archive.h"
+#include "report/restoration_archive.h"
 #include "report/versions.h"
 
 namespace stillfield {
@@ -164,52 +165,6 @@ void describe(Archive& archive, Measurement& m) {
   archive("ess", m.ess);
   archive("plain_estimate", m.plain_estimate);
   archive("defined_share", m.defined_share);
-}
-
-template <class Archive>
-void describe(Archive& archive, NoiseFacts& noise) {
-  archive("kind", noise.kind);
-  archive("sd", noise.sd);
-  archive("gain", noise.gain);
-  archive("variance", noise.variance);
-  archive("offset", noise.offset);
-  archive("middle_grey", noise.middle_grey);
-  archive("middle_sd", noise.middle_sd);
-  archive("middle_sd_lower90", noise.middle_sd_lower90);
-  archive("middle_sd_upper90", noise.middle_sd_upper90);
-  archive("origin", noise.origin);
-  archive("impulse_share", noise.impulse_share);
-  archive("neighbour_correlation", noise.neighbour_correlation);
-  archive("correlation_p_value", noise.correlation_p_value);
-}
-
-template <class Archive>
-void describe(Archive& archive, BlendFacts& blend) {
-  archive("patch", blend.patch);
-  archive("components", blend.components);
-  archive("stage", blend.stage);
-  archive("weight", blend.weight);
-}
-
-template <class Archive>
-void describe(Archive& archive, ChannelFacts& channel) {
-  archive("channel", channel.channel);
-  archive("noise", channel.noise);
-  archive("observed_pixels", channel.observed);
-  archive("missing_pixels", channel.missing);
-  archive("saturated_pixels", channel.saturated);
-  archive("mean_sd", channel.mean_sd);
-  archive("sd_factor", channel.sd_factor);
-  archive("blend", channel.blend);
-  archive("scalars", channel.scalars);
-}
-
-template <class Archive>
-void describe(Archive& archive, RestorationFacts& restoration) {
-  archive("prior", restoration.prior);
-  archive("warming_sweeps", restoration.warming_sweeps);
-  archive("sampling_sweeps", restoration.sampling_sweeps);
-  archive("channels", restoration.channels);
 }
 
 template <class Archive>

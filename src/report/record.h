@@ -126,8 +126,8 @@ struct RunFacts {
 inline constexpr char kSegment[] = "segment";
 inline constexpr char kDenoise[] = "denoise";
 
-// The parts from `grey` to `bootstrap` and those of the checks belong to segment, `restoration` to
-// denoise.
+// The parts from `grey` to `bootstrap` and those of the checks belong to segment, `restoration`
+// to denoise.
 struct ImageRecord {
   std::string command;
   std::string version;  // of the program

@@ -14,9 +14,9 @@ void describe(Archive& archive, RunImage& image) {
   archive("status", image.status);
   archive("sentence", image.sentence);
   archive("converged", image.converged);
+  archive("group", image.group);
   archive("verdict", image.verdict);
   archive("reasons", image.reasons);
-  archive("group", image.group);
   archive("record", image.record);
 }
 

@@ -16,10 +16,10 @@ struct RunImage {
   std::string status;      // "done", "skipped" (finished before), "failed", "not reached"
   std::string sentence;    // why it failed; empty otherwise
   bool converged = false;  // of done and skipped images
+  std::string group;       // of the summary (report/field_groups.h)
   std::string verdict;     // "sound", "look", "doubtful"; empty where nothing was checked
   std::vector<std::string> reasons;
-  std::string group;       // of the summary (report/field_groups.h)
-  std::string record;      // file relative to the output folder; empty if there is none
+  std::string record;  // file relative to the output folder; empty if there is none
 };
 
 struct RunSummary {

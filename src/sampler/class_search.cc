@@ -4,6 +4,7 @@
 #include <array>
 #include <cmath>
 #include <functional>
+#include <limits>
 
 #include "core/elementary.h"
 #include "sampler/class_trial.h"
@@ -16,6 +17,7 @@ namespace {
 constexpr double kCoupling = 1.5;
 constexpr std::array<int, 2> kRadii{1, 2};  // of the squares that starts are averaged over
 constexpr std::uint32_t kParts = 8;         // the first judges the starts, the others K
+constexpr int kPatience = 2;                // numbers of classes without a better score
 // Below this size one image cannot keep two threads busy: trials run side by side instead.
 constexpr std::int64_t kRowParallelPixels = 320 * 320;
 // Chain numbers of the trials, far above those of the sampler's chains.
@@ -98,6 +100,10 @@ double penalty(int classes, bool shared_variance, std::size_t pixels) {
   return std::max(0.5 * parameters * exact_log(n), kLeastGain * n * classes);
 }
 
+double score_of(const std::vector<double>& log_density, int classes, bool shared_variance) {
+  return sum_of(log_density) - penalty(classes, shared_variance, log_density.size());
+}
+
 }  // namespace
 
 ClassSearch choose_by_scores(const std::vector<std::vector<double>>& log_density,
@@ -106,8 +112,7 @@ ClassSearch choose_by_scores(const std::vector<std::vector<double>>& log_density
   std::size_t best = 0;
   for (std::size_t i = 0; i < log_density.size(); ++i) {
     const int classes = static_cast<int>(i) + 1;
-    const double score =
-        sum_of(log_density[i]) - penalty(classes, shared_variance, log_density[i].size());
+    const double score = score_of(log_density[i], classes, shared_variance);
     search.tried.push_back({classes, score, 0.0, 0.0});
     if (score > search.tried[best].score) best = i;
   }
@@ -151,6 +156,8 @@ ClassSearch search_classes(const GreyLevels& grey, const Neighbourhood& neighbou
 
   std::vector<std::vector<double>> log_density;
   LabelStart best;
+  double best_score = -std::numeric_limits<double>::infinity();
+  int best_classes = 1;
   for (int classes = 1; classes <= std::min(most, grey.distinct()); ++classes) {
     const std::vector<LabelStart> starts = starts_for(grey, classes, shared_variance, best);
     const auto key = [&](std::uint32_t first, int i) {
@@ -183,7 +190,13 @@ ClassSearch search_classes(const GreyLevels& grey, const Neighbourhood& neighbou
     for (const ClassTrial& trial : judged) {
       all.insert(all.end(), trial.log_density.begin(), trial.log_density.end());
     }
+    const double score = score_of(all, classes, shared_variance);
     log_density.push_back(std::move(all));
+    if (score > best_score) {
+      best_score = score;
+      best_classes = classes;
+    }
+    if (classes - best_classes >= kPatience) break;
   }
   return choose_by_scores(log_density, shared_variance);
 }

@@ -16,6 +16,7 @@
 //          the best goes on and is judged on the seven other parts, the same for every K. Starts:
 //          mixtures of the image averaged over small squares (model/smoothed_start.h), and the
 //          result for K - 1 with one class split in two. The coupling is fixed.
+//          The search ends when two numbers in a row have not scored better.
 // Bytes    the same for any number of threads and any CPU target
 #ifndef STILLFIELD_SAMPLER_CLASS_SEARCH_H_
 #define STILLFIELD_SAMPLER_CLASS_SEARCH_H_

@@ -85,7 +85,7 @@ TEST_CASE("the number of classes may be left to the data, and groups of images s
   CHECK(record["settings"]["classes"] == "auto");
   CHECK(record["class_choice"]["used"] == 3);
   CHECK(record["class_choice"]["best_explained_by"] == 3);
-  CHECK(record["class_choice"]["tried"].size() == 8);
+  CHECK(record["class_choice"]["tried"].size() == 5);
   CHECK(record["class_choice"]["runner_up"].is_number());
   CHECK(record["model"]["classes"].size() == 3);
   CHECK(count_pages(folder / "out/x/a.probability.tif") == 3);

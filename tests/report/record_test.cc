@@ -33,11 +33,11 @@ TEST_CASE("keys have a fixed order, and what differs between equal runs is in on
   std::vector<std::string> keys;
   for (const auto& item : json.items()) keys.push_back(item.key());
   CHECK(keys == std::vector<std::string>{
-                    "format",          "program",     "command",  "version",        "libraries",
-                    "settings_digest", "input",       "settings", "image_seed",     "grey_levels",
-                    "class_choice",    "model",       "blur",     "coupling_tried", "schedule",
-                    "scalars",         "probability", "verdict", "assessment", "checks",  "measurements",   "outputs",
-                    "cautions",        "run"});
+                    "format",          "program",      "command",   "version",        "libraries",
+                    "settings_digest", "input",        "settings",  "image_seed",     "grey_levels",
+                    "class_choice",    "model",        "blur",      "coupling_tried", "schedule",
+                    "scalars",         "probability",  "bootstrap", "verdict",        "assessment",
+                    "checks",          "measurements", "outputs",   "cautions",       "run"});
   ImageRecord other = record_sample();
   other.run = {"scalar", 4, 9, 9, 9};
   ordered_json other_json = ordered_json::parse(record_text(other));

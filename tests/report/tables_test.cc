@@ -27,7 +27,7 @@ std::string field(const CsvRows& rows, std::size_t row, const std::string& colum
 std::vector<ImageRecord> fields(const std::vector<double>& fractions) {
   std::vector<ImageRecord> records;
   for (const double fraction : fractions) {
-    records.push_back(record_sample(std::to_string(records.size()) + ".png"));
+    records.push_back(record_sample(std::string("f") + std::to_string(records.size()) + ".png"));
     records.back().measurements = {area_fraction(1, fraction, 0.01),
                                    area_fraction(2, 1 - fraction, 0.01)};
   }
@@ -103,8 +103,8 @@ TEST_CASE("run.json lists every image in the order of the run") {
   run.command = "segment";
   run.settings = {{"classes", std::uint64_t{2}}};
   run.counts = {{"done", std::uint64_t{1}}, {"failed", std::uint64_t{1}}};
-  run.images = {{"a.png", 1, "done", "", true, "sound", {}, "north", "a.record.json"},
-                {"b.png", 1, "failed", "b.png: is empty", false, "", {}, "", ""}};
+  run.images = {{"a.png", 1, "done", "", true, "north", "sound", {}, "a.record.json"},
+                {"b.png", 1, "failed", "b.png: is empty", false, "", "", {}, ""}};
   CHECK_THAT(run_text(run), Catch::Matchers::Contains("\"status\": \"failed\"") &&
                                 Catch::Matchers::Contains("\"sentence\": \"b.png: is empty\"") &&
                                 Catch::Matchers::Contains("\"done\": 1"));

@@ -17,6 +17,7 @@
 #include "job/bootstrap.h"
 #include "job/label_draws.h"
 #include "job/measured_draws.h"
+#include "job/restore_blurred.h"
 #include "job/restore_one.h"
 #include "study/shapes.h"
 
@@ -94,6 +95,7 @@ void study_image(const Options& o, study::Family family, double sigma, double bl
 
   JobObserver observer;
   LabelSampling sampling = restore_one(grey, o.settings, seed, pool, observer);
+  restore_blurred(o.settings, pool, observer, sampling);
   const Volume<std::uint8_t> found = sampling.counts->most_probable();
   MeasuredDraws draws(found.view(), image.view(), {}, measure, o.settings.chains);
   for_label_draws(o.settings, kMeasuredDraws, pool, observer, sampling,
