@@ -33,6 +33,7 @@ ImageRecord segment_image(const study::CheckedImage& image, const fs::path& fold
   write_tiff(task.file, pixels.view(), TiffOptions{});
   SegmentSettings settings;
   settings.classes = image.asked_classes;
+  settings.replicates = 0;  // the bootstrap changes measurements, not checks
   if (!full) {
     settings.target = {1.05, 100, 0.02};
     settings.schedule.max_sweeps = kQuickSweeps;
