@@ -15,7 +15,9 @@ namespace {
 constexpr int kQuickTilings = 12;
 constexpr int kUpdates = 4;
 constexpr int kQuickUpdates = 2;
+// Runs that are only judged are cut short: the weights hardly notice.
 constexpr int kJudgedTilings = 12;
+constexpr int kJudgedPasses = 1;
 constexpr std::array<int, 2> kSides{6, 8};
 
 double plane_mean(const Volume<float>& v) {
@@ -50,6 +52,11 @@ class Steps {
   const PatchProgress& progress_;
   int steps_;
   int done_ = 0;
+};
+
+struct RunLength {
+  int tilings, passes;
+  int steps() const { return tilings + passes; }
 };
 
 // A patch size with its settings and mixture.
@@ -91,8 +98,9 @@ class PatchRestoration {
   }
 
   PatchResult run(const PatchProgress& progress) {
-    const int judging = judged_ ? std::min(tilings_, kJudgedTilings) : 0;
-    const int side_steps = 1 + tilings_ + passes_ + (judged_ ? judging + passes_ : 0);
+    const RunLength whole{tilings_, passes_};
+    const RunLength judging{std::min(tilings_, kJudgedTilings), std::min(passes_, kJudgedPasses)};
+    const int side_steps = 1 + whole.steps() + (judged_ ? judging.steps() : 0);
     Steps steps(progress, side_steps * static_cast<int>(sides_.size()));
     PatchResult result;
     std::vector<IntensityMoments> restorations;
@@ -101,7 +109,7 @@ class PatchRestoration {
       steps.next();
       learn(value_, noise_sd_, side);
       PatchRun run(value_, tables(side, noise_sd_), key_, pool_, redraw_);
-      restore(side, run, tilings_, steps, [&](bool groups) {
+      restore(side, run, whole, steps, [&](bool groups) {
         if (!judged_ && !groups && passes_ > 0) return;
         const IntensityMoments& m = run.moments();
         restorations.push_back({copy(m.mean), copy(m.variance)});
@@ -138,20 +146,20 @@ class PatchRestoration {
 
   // All steps of one run; `kept` is told when the tilings are done, and when the groups are.
   template <class Kept>
-  void restore(const Side& side, PatchRun& run, int tilings, Steps& steps, const Kept& kept) {
-    for (int t = 0; t < tilings; ++t) {
+  void restore(const Side& side, PatchRun& run, RunLength length, Steps& steps, const Kept& kept) {
+    for (int t = 0; t < length.tilings; ++t) {
       steps.next();
       run.tiling(sweep_++);
     }
     kept(false);
-    for (int pass = 0; pass < passes_; ++pass) {
+    for (int pass = 0; pass < length.passes; ++pass) {
       steps.next();
       run.groups(sweep_++, static_cast<std::uint32_t>(pass), side.group_pass());
     }
-    if (passes_ > 0) kept(true);
+    if (length.passes > 0) kept(true);
   }
 
-  std::vector<double> judge(const Volume<float>& usable, int tilings, Steps& steps) {
+  std::vector<double> judge(const Volume<float>& usable, RunLength length, Steps& steps) {
     const SplitNoise split = split_noise(usable, noise_sd_, key_, pool_);
     std::vector<Volume<float>> restorations;
     for (const Side& side : sides_) {
@@ -162,7 +170,7 @@ class PatchRestoration {
       if (learned_) anew.mixture = side.mixture;
       learn(split.restored_from, split.noise_sd, anew);
       PatchRun run(split.restored_from, tables(anew, split.noise_sd), key_, pool_, nullptr);
-      restore(side, run, tilings, steps,
+      restore(side, run, length, steps,
               [&](bool) { restorations.push_back(copy(run.moments().mean)); });
     }
     return blend_weights(restorations, split, value_, usable);
