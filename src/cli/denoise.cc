@@ -8,7 +8,7 @@
 #include "cli/noise_option.h"
 #include "cli/progress.h"
 #include "core/error.h"
-#include "job/mask.h"
+#include "image/digest.h"
 #include "report/camera_file.h"
 
 namespace stillfield {
@@ -83,8 +83,8 @@ void complete_settings(DenoiseOptions& options) {
   }
   if (!options.saturation.empty()) settings.saturation = parse_number(options.saturation);
   settings.mask = options.mask;
-  settings.mask_sha256 = mask_digest(settings.mask);
   settings.learn_from = options.learn_from;
+  settings.learn_from_sha256 = sha256_of_tree(settings.learn_from);
   settings.correlated_noise = options.correlation == "estimate";
   settings.connectivity = options.neighbours == "8" ? Connectivity::kEight : Connectivity::kFour;
   settings.float_output = options.depth == "float";

@@ -5,7 +5,6 @@
 
 #include "cli/common_options.h"
 #include "cli/progress.h"
-#include "job/mask.h"
 
 namespace stillfield {
 namespace {
@@ -70,7 +69,6 @@ int run_segment(SegmentOptions& options) {
   settings.particles.connectivity = options.particle_neighbours == "4" ? 4 : 8;
   if (!options.pixel_size.empty()) settings.pixel_size_um = parse_length_um(options.pixel_size);
   settings.mask = options.mask;
-  settings.mask_sha256 = mask_digest(settings.mask);
   if (options.quick) settings.target = kQuickTarget;
   if (options.no_bootstrap) settings.replicates = 0;
   settings.replicates -= settings.replicates % 2;

@@ -41,6 +41,15 @@ std::vector<std::uint64_t> page_offsets(const std::filesystem::path& file, TiffH
   return offsets;
 }
 
+void go_to_page(const std::filesystem::path& file, int page, TiffHandle& tiff) {
+  const auto offsets = page_offsets(file, tiff);
+  check_page(file, page, static_cast<int>(offsets.size()));
+  if (TIFFSetSubDirectory(tiff.get(), offsets[static_cast<std::size_t>(page)]) != 1) {
+    throw_input(file, "page " + std::to_string(page + 1) + " of the TIFF cannot be read (" +
+                          tiff.first_error() + ")" + kCopyAgain);
+  }
+}
+
 // Turns the decoded rows of blocks into pixels of a field.
 class PixelWriter {
  public:
@@ -176,15 +185,17 @@ int count_tiff_pages(const std::filesystem::path& file) {
   return static_cast<int>(page_offsets(file, tiff).size());
 }
 
+PageShape tiff_page_shape(const std::filesystem::path& file, int page, const ReadLimits& limits) {
+  TiffHandle tiff = TiffHandle::open(file);
+  go_to_page(file, page, tiff);
+  const TiffLayout layout = tiff_layout(file, tiff, limits);
+  return {layout.width, layout.height, layout.colour ? 3 : 1, layout.format.bits};
+}
+
 Field read_tiff_page(const std::filesystem::path& file, int page, const ReadLimits& limits,
                      ColourMode colour) {
   TiffHandle tiff = TiffHandle::open(file);
-  const auto offsets = page_offsets(file, tiff);
-  check_page(file, page, static_cast<int>(offsets.size()));
-  if (TIFFSetSubDirectory(tiff.get(), offsets[static_cast<std::size_t>(page)]) != 1) {
-    throw_input(file, "page " + std::to_string(page + 1) + " of the TIFF cannot be read (" +
-                          tiff.first_error() + ")" + kCopyAgain);
-  }
+  go_to_page(file, page, tiff);
   const TiffLayout layout = tiff_layout(file, tiff, limits);
   tiff.forget_messages();
 

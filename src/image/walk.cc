@@ -5,6 +5,7 @@
 #include <string_view>
 
 #include "core/error.h"
+#include "core/utf8.h"
 #include "image/output_names.h"
 
 namespace stillfield {
@@ -55,13 +56,26 @@ std::vector<fs::path> sorted_entries(const fs::path& folder) {
   return entries;
 }
 
+// Byte order of the names as tables show them.
+bool comes_before(const InputFile& a, const InputFile& b) {
+  const std::string& left = a.relative.native();
+  const std::string& right = b.relative.native();
+  const std::string left_name = utf8_name(left);
+  const std::string right_name = utf8_name(right);
+  return left_name != right_name ? left_name < right_name : left < right;
+}
+
 class Walker {
  public:
   explicit Walker(const fs::path& output_folder)
       : output_folder_(output_folder.empty() ? fs::path() : real_path(output_folder)) {}
 
+  void start_input(int number) { input_ = number; }
+
   void add_file(const fs::path& path, const fs::path& relative) {
-    if (files_seen_.insert(real_path(path)).second) files_.push_back({path, relative, {}});
+    if (files_seen_.insert(real_path(path)).second) {
+      files_.push_back({path, relative, {}, input_, {}});
+    }
   }
 
   // `prefix` is where the folder's mirror starts below the output folder.
@@ -74,11 +88,9 @@ class Walker {
     if (folders_seen_.contains(real)) return;
     const std::size_t images_before = images_met_;
     const std::size_t first = files_.size();
-    walk(folder, real, prefix);
-    std::sort(files_.begin() + static_cast<std::ptrdiff_t>(first), files_.end(),
-              [](const InputFile& a, const InputFile& b) {
-                return a.relative.generic_string() < b.relative.generic_string();
-              });
+    folders_seen_.insert(real);
+    walk(real, prefix, sorted_entries(folder));
+    std::sort(files_.begin() + static_cast<std::ptrdiff_t>(first), files_.end(), comes_before);
     if (images_met_ == images_before) {
       throw_path(ErrorKind::kInput, folder,
                  "no image in this folder or below it; files ending in" + known_extensions() +
@@ -92,9 +104,8 @@ class Walker {
   }
 
  private:
-  void walk(const fs::path& folder, const fs::path& real, const fs::path& relative) {
-    if (!folders_seen_.insert(real).second) return;
-    for (const auto& entry : sorted_entries(folder)) {
+  void walk(const fs::path& real, const fs::path& relative, const std::vector<fs::path>& entries) {
+    for (const auto& entry : entries) {
       if (is_hidden(entry)) continue;
       std::error_code ignored;
       if (fs::is_directory(entry, ignored)) {
@@ -110,10 +121,20 @@ class Walker {
     const fs::path real = real_path(folder);
     const bool leads_back = is_within(real_parent, real);
     const bool is_output = !output_folder_.empty() && real == output_folder_;
-    if (!leads_back && !is_output) walk(folder, real, relative);
+    if (leads_back || is_output || !folders_seen_.insert(real).second) return;
+    std::vector<fs::path> entries;
+    try {
+      entries = sorted_entries(folder);
+    } catch (const Error& error) {
+      ++images_met_;  // there may be some
+      files_.push_back({folder, relative, {}, input_, error.what()});
+      return;
+    }
+    walk(real, relative, entries);
   }
 
   fs::path output_folder_;
+  int input_ = 0;
   std::vector<InputFile> files_;
   std::set<fs::path> files_seen_;    // canonical
   std::set<fs::path> folders_seen_;  // canonical
@@ -157,7 +178,9 @@ std::vector<InputFile> find_inputs(const std::vector<fs::path>& inputs,
   Walker walker(output_folder);
   std::set<std::string> names;
   std::set<fs::path> mirrored;
+  int number = 0;
   for (const auto& input : inputs) {
+    walker.start_input(number++);
     if (!fs::is_directory(input)) {
       walker.add_file(input, input.filename());
     } else if (mirrored.insert(real_path(input)).second) {
@@ -165,6 +188,14 @@ std::vector<InputFile> find_inputs(const std::vector<fs::path>& inputs,
     }
   }
   return walker.take();
+}
+
+std::vector<InputFile> find_all_inputs(const std::vector<fs::path>& inputs) {
+  std::vector<InputFile> files = find_inputs(inputs, {});
+  for (const InputFile& file : files) {
+    if (!file.failure.empty()) throw Error(ErrorKind::kInput, file.failure);
+  }
+  return files;
 }
 
 }  // namespace stillfield

@@ -11,6 +11,7 @@
 #include "job/output_folder.h"
 #include "job/preview.h"
 #include "job/restore_plane.h"
+#include "job/unfinished_result.h"
 #include "simd/target.h"
 
 namespace stillfield {
@@ -158,7 +159,7 @@ ImageRecord denoise(const FieldTask& task, const DenoiseSettings& settings, cons
   record.run.sample_seconds = watch.lap();
 
   const fs::path record_file = with_suffix(task.stem, kRecordSuffix);
-  fs::remove(record_file);  // from here to the end there is no finished result
+  const UnfinishedResult unfinished(task.stem, record);
   TiffOptions options;
   options.pixel_size_um = field.pixel_size_um;
   write_maps(task, planes, field.format, settings, options, record);
