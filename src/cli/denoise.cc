@@ -6,7 +6,6 @@
 
 #include "cli/common_options.h"
 #include "cli/noise_option.h"
-#include "cli/progress.h"
 #include "core/error.h"
 #include "image/digest.h"
 #include "report/camera_file.h"
@@ -92,15 +91,12 @@ void complete_settings(DenoiseOptions& options) {
 
 int run_denoise(DenoiseOptions& options) {
   complete_settings(options);
-  begin_run(options);
-  FolderCounts counts;
-  {
-    Progress progress(options.quiet, options.settings.max_sweeps);
-    counts = denoise_folder({options.inputs.begin(), options.inputs.end()}, options.settings,
-                            options.run, progress);
-  }
-  return end_run(counts, options,
-                 "a larger\n--max-sweeps may help with the priors edges and smooth.");
+  return run_command(options, options.settings.max_sweeps,
+                     "a larger\n--max-sweeps may help with the priors edges and smooth.",
+                     [&](JobObserver& observer) {
+                       return denoise_folder({options.inputs.begin(), options.inputs.end()},
+                                             options.settings, options.run, observer);
+                     });
 }
 
 std::string check_finite(const std::string& text) {
