@@ -2,7 +2,9 @@
 
 #include <algorithm>
 #include <set>
+#include <string>
 #include <string_view>
+#include <unordered_set>
 
 #include "core/error.h"
 #include "core/utf8.h"
@@ -41,18 +43,19 @@ bool is_within(const fs::path& inner, const fs::path& outer) {
   return std::mismatch(outer.begin(), outer.end(), inner.begin(), inner.end()).first == outer.end();
 }
 
-std::vector<fs::path> sorted_entries(const fs::path& folder) {
+std::vector<fs::directory_entry> sorted_entries(const fs::path& folder) {
   std::error_code error;
-  std::vector<fs::path> entries;
+  std::vector<fs::directory_entry> entries;
   fs::directory_iterator it(folder, error);
-  for (; !error && it != fs::directory_iterator(); it.increment(error))
-    entries.push_back(it->path());
+  for (; !error && it != fs::directory_iterator(); it.increment(error)) entries.push_back(*it);
   if (error) {
     throw_path(ErrorKind::kInput, folder,
                "the folder cannot be listed (" + error.message() + "); change its access rights");
   }
   std::sort(entries.begin(), entries.end(),
-            [](const fs::path& a, const fs::path& b) { return a.native() < b.native(); });
+            [](const fs::directory_entry& a, const fs::directory_entry& b) {
+              return a.path().native() < b.path().native();
+            });
   return entries;
 }
 
@@ -73,9 +76,7 @@ class Walker {
   void start_input(int number) { input_ = number; }
 
   void add_file(const fs::path& path, const fs::path& relative) {
-    if (files_seen_.insert(real_path(path)).second) {
-      files_.push_back({path, relative, {}, input_, {}});
-    }
+    add_real_file(path, relative, real_path(path));
   }
 
   // `prefix` is where the folder's mirror starts below the output folder.
@@ -104,15 +105,24 @@ class Walker {
   }
 
  private:
-  void walk(const fs::path& real, const fs::path& relative, const std::vector<fs::path>& entries) {
-    for (const auto& entry : entries) {
-      if (is_hidden(entry)) continue;
+  void add_real_file(const fs::path& path, const fs::path& relative, const fs::path& real) {
+    if (!files_seen_.insert(real.native()).second) return;
+    files_.push_back({path, relative, {}, input_, {}});
+  }
+
+  void walk(const fs::path& real, const fs::path& relative,
+            const std::vector<fs::directory_entry>& entries) {
+    for (const fs::directory_entry& entry : entries) {
+      const fs::path& path = entry.path();
+      if (is_hidden(path)) continue;
+      const fs::path below = relative / path.filename();
       std::error_code ignored;
-      if (fs::is_directory(entry, ignored)) {
-        walk_inner(entry, real, relative / entry.filename());
-      } else if (has_image_extension(entry)) {
+      if (entry.is_directory(ignored)) {
+        walk_inner(path, real, below);
+      } else if (has_image_extension(path)) {
         ++images_met_;
-        add_file(entry, relative / entry.filename());
+        const bool link = entry.is_symlink(ignored);
+        add_real_file(path, below, link ? real_path(path) : real / path.filename());
       }
     }
   }
@@ -122,7 +132,7 @@ class Walker {
     const bool leads_back = is_within(real_parent, real);
     const bool is_output = !output_folder_.empty() && real == output_folder_;
     if (leads_back || is_output || !folders_seen_.insert(real).second) return;
-    std::vector<fs::path> entries;
+    std::vector<fs::directory_entry> entries;
     try {
       entries = sorted_entries(folder);
     } catch (const Error& error) {
@@ -136,9 +146,9 @@ class Walker {
   fs::path output_folder_;
   int input_ = 0;
   std::vector<InputFile> files_;
-  std::set<fs::path> files_seen_;    // canonical
-  std::set<fs::path> folders_seen_;  // canonical
-  std::size_t images_met_ = 0;       // in folders, duplicates too
+  std::unordered_set<std::string> files_seen_;  // canonical
+  std::set<fs::path> folders_seen_;             // canonical
+  std::size_t images_met_ = 0;                  // in folders, duplicates too
 };
 
 // Own name of a folder, made unique among those handed out before.
