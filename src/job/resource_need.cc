@@ -4,11 +4,16 @@
 #include <cmath>
 #include <fstream>
 #include <limits>
+#include <optional>
+
+#include "job/choose_classes.h"
 
 namespace stillfield {
 namespace {
 
-constexpr double kProgramBytes = 40e6;
+constexpr double kProgramBytes = 66e6;
+constexpr double kMargin = 1.05;
+constexpr double kBlurBytes = 24;  // of each chain, beside the rest
 
 // The number behind `name` in a file of lines "name: number kB".
 std::optional<std::int64_t> kilobytes_in(const char* file, const std::string& name) {
@@ -26,20 +31,47 @@ std::optional<std::int64_t> number_in(const char* file) {
   return stream >> value ? std::optional(value) : std::nullopt;  // "max": no limit
 }
 
-}  // namespace
-
-ResourceNeed need_of(const PageShape& shape, const SegmentSettings& settings, int threads) {
-  const double classes = settings.classes == kAutoClasses ? 8 : settings.classes;
-  const double chains = settings.chains;
-  const double at_once = std::min(chains, static_cast<double>(threads));
+ResourceNeed need(const PageShape& shape, double bytes_a_pixel, double seconds_a_megapixel,
+                  int threads) {
   const auto pixels = static_cast<double>(shape.pixels());
-  const double a_pixel = 16 + chains * (2 + 3 * classes) + 4 * classes * (at_once + 1);
-  return {kProgramBytes + pixels * a_pixel, pixels * 1e-5};
+  return {kProgramBytes + kMargin * bytes_a_pixel * pixels,
+          seconds_a_megapixel * pixels * 1e-6 / std::min(threads, 8)};
 }
 
-ResourceNeed need_of(const PageShape& shape, const DenoiseSettings& /*settings*/, int /*threads*/) {
-  const auto pixels = static_cast<double>(shape.pixels());
-  return {kProgramBytes + pixels * 100 * shape.channels, pixels * 1e-5};
+}  // namespace
+
+// Bytes a pixel: what every run has; each chain's labels and visits; weights and maps of the
+// classes; what measuring takes in each thread that has a chain; the simulated images.
+ResourceNeed need_of(const PageShape& shape, const SegmentSettings& settings, int threads) {
+  const double classes = settings.classes == kAutoClasses ? kMostAutoClasses : settings.classes;
+  const double chains = settings.chains;
+  const double at_once = std::min(chains, static_cast<double>(threads));
+  double a_pixel = 26 + chains * (4 + 3 * classes) + 10.5 * classes + 44 * (at_once - 1);
+  if (settings.replicates > 0) a_pixel += 16 * classes;
+  if (settings.blur.mode != BlurMode::kNone) a_pixel += chains * kBlurBytes;
+
+  const bool quick = settings.target.min_ess < ConvergenceTarget{}.min_ess;
+  double seconds = (2 + 6.5 * classes) * chains / 4 * (quick ? 1.2 : 2.5);
+  if (settings.replicates > 0) seconds *= 1.5;
+  if (settings.blur.mode != BlurMode::kNone) seconds *= 8;
+  return need(shape, a_pixel, seconds, threads);
+}
+
+ResourceNeed need_of(const PageShape& shape, const DenoiseSettings& settings, int threads) {
+  const bool patches = settings.prior == PriorChoice::kPatches;
+  double a_pixel = 0;
+  double seconds = 0;
+  if (patches) {
+    a_pixel = settings.quick ? 80 + 8 * std::min(threads, 4) : 165;
+    seconds = settings.quick ? 6.5 : 46;
+  } else {
+    a_pixel = 36 + 40 * settings.chains;
+    seconds = 2.5 * settings.chains * (settings.quick ? 1 : 2);
+  }
+  const double channels = shape.channels;
+  a_pixel += 30 * (channels - 1) + 5.5 * settings.samples * channels;
+  seconds *= channels * (settings.recheck ? 3 : 1);
+  return need(shape, a_pixel, seconds, threads);
 }
 
 std::int64_t available_memory() {
