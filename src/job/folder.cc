@@ -66,7 +66,7 @@ class FieldLoop {
         run_(run),
         observer_(observer),
         results_(results),
-        pool_(run.threads),
+        pool_(run.threads, [this] { return observer_.stop_requested(); }),
         memory_(run.memory > 0 ? run.memory : available_memory()) {}
 
   // `further`: how many files come after this one.
@@ -186,7 +186,8 @@ FolderCounts denoise_folder(const std::vector<fs::path>& inputs, const DenoiseSe
     return denoise_field(task, own(task), run, pool, observer, mixture ? &*mixture : nullptr);
   };
   if (settings.prior == PriorChoice::kPatches && !settings.learn_from.empty() && !run.dry_run) {
-    mixture = learn_patches(settings, run.limits, Pool(run.threads), observer);
+    mixture = learn_patches(settings, run.limits,
+                            Pool(run.threads, [&] { return observer.stop_requested(); }), observer);
   }
   return run_folder(inputs, job, run, observer);
 }

@@ -13,7 +13,7 @@ namespace {
 
 constexpr double kProgramBytes = 66e6;
 constexpr double kMargin = 1.05;
-constexpr double kBlurBytes = 24;  // of each chain, beside the rest
+constexpr double kBlurBytes = 30;  // of each chain, beside the rest
 
 // The number behind `name` in a file of lines "name: number kB".
 std::optional<std::int64_t> kilobytes_in(const char* file, const std::string& name) {
