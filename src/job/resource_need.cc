@@ -11,7 +11,7 @@
 namespace stillfield {
 namespace {
 
-constexpr double kProgramBytes = 66e6;
+constexpr double kProgramBytes = 70e6;
 constexpr double kMargin = 1.05;
 constexpr double kBlurBytes = 30;  // of each chain, beside the rest
 
