@@ -133,9 +133,9 @@ const std::set<std::string>& standard_headers() {
 // POSIX.1-2017 headers that a portable command-line program may need.
 const std::set<std::string>& posix_headers() {
   static const std::set<std::string> list = {
-      "dirent.h",   "errno.h",        "fcntl.h",    "pthread.h",  "signal.h",    "sys/ioctl.h",
-      "sys/mman.h", "sys/resource.h", "sys/stat.h", "sys/time.h", "sys/types.h", "sys/utsname.h",
-      "sys/wait.h", "termios.h",      "time.h",     "unistd.h"};
+      "dirent.h",      "errno.h",    "fcntl.h",        "pthread.h",  "signal.h",   "sys/file.h",
+      "sys/ioctl.h",   "sys/mman.h", "sys/resource.h", "sys/stat.h", "sys/time.h", "sys/types.h",
+      "sys/utsname.h", "sys/wait.h", "termios.h",      "time.h",     "unistd.h"};
   return list;
 }
 
