@@ -6,7 +6,6 @@
 namespace stillfield {
 namespace {
 
-constexpr double kUmPerInch = 25400;
 constexpr double kSquare = 1e-4;
 
 // Within a pixel an inch, since files hold rounded values (28 a centimetre, 2835 a metre).

@@ -14,6 +14,10 @@
 
 namespace stillfield {
 
+inline constexpr double kUmPerInch = 25400;
+inline constexpr double kUmPerCentimetre = 1e4;
+inline constexpr double kUmPerMetre = 1e6;
+
 enum class PixelSizeSource { kUnknown, kOption, kOme, kResolution };
 
 struct PixelSize {

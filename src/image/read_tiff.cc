@@ -19,6 +19,19 @@ namespace {
 constexpr double kLargestExactInteger = 16777216;  // 2^24, for float
 constexpr std::size_t kEveryPage = std::numeric_limits<std::size_t>::max();
 
+// What stands for 1 of 255 in a colour map: 257 by the standard, 256 or 1 by some writers.
+double palette_unit(const std::uint16_t* const table[3], std::size_t entries) {
+  bool all_multiples = true;
+  bool all_small = true;
+  for (int c = 0; c < 3; ++c) {
+    for (std::size_t i = 0; i < entries; ++i) {
+      all_multiples &= table[c][i] % 256 == 0;
+      all_small &= table[c][i] < 256;
+    }
+  }
+  return all_small ? 1 : all_multiples ? 256 : 257;
+}
+
 // Turns the decoded rows of blocks into pixels of a field.
 class PixelWriter {
  public:
@@ -28,8 +41,10 @@ class PixelWriter {
     if (!layout.palette) return;
     std::uint16_t* table[3] = {};
     if (TIFFGetField(tiff, TIFFTAG_COLORMAP, &table[0], &table[1], &table[2]) != 1) return;
-    for (int i = 0; i < 1 << layout.format.bits; ++i) {
-      palette_.push_back(luminance(table[0][i] / 257.0, table[1][i] / 257.0, table[2][i] / 257.0));
+    const std::size_t entries = std::size_t{1} << layout.format.bits;
+    const double unit = palette_unit(table, entries);
+    for (std::size_t i = 0; i < entries; ++i) {
+      palette_.push_back(luminance(table[0][i] / unit, table[1][i] / unit, table[2][i] / unit));
     }
   }
 

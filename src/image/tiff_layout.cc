@@ -175,8 +175,8 @@ PixelSize tiff_pixel_size(TIFF* tiff) {
   if (TIFFGetField(tiff, TIFFTAG_XRESOLUTION, &x) != 1) return {};
   if (TIFFGetField(tiff, TIFFTAG_YRESOLUTION, &y) != 1) return {};
   const auto unit = tag<std::uint16_t>(tiff, TIFFTAG_RESOLUTIONUNIT, RESUNIT_INCH);
-  const double um_per_unit = unit == RESUNIT_INCH         ? 25400.0
-                             : unit == RESUNIT_CENTIMETER ? 10000.0
+  const double um_per_unit = unit == RESUNIT_INCH         ? kUmPerInch
+                             : unit == RESUNIT_CENTIMETER ? kUmPerCentimetre
                                                           : 0;
   return pixel_size_from_resolution(x, y, um_per_unit);
 }
