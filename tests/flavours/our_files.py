@@ -44,7 +44,7 @@ def make_inputs(folder):
                                "PhysicalSizeZ": 2.0,
                                "Channel": {"Name": ["nuclei & <walls>", "\u00b5-tubules"]}})
     for page in (1, 2):
-        inputs[f"stack.ome.page{page}"] = "u2", (SIDE, SIDE), True
+        inputs[f"stack.ome.page00{page}"] = "u2", (SIDE, SIDE), True
     return inputs
 
 
@@ -104,7 +104,7 @@ def check_ome(file, names):
         problems.append(f"{file.name}: elements {root.tag} {image.tag} {pixels.tag}")
     if tags != ["Channel"] * len(names) + ["TiffData"] * pages:
         problems.append(f"{file.name}: Pixels holds {tags}")
-    # Required by the schema 2016-06 (from memory), beside what must come back.
+    # Required by the schema 2016-06 (elements Image and Pixels), beside what must come back.
     if image.get("ID") != "Image:0" or pixels.get("ID") != "Pixels:0":
         problems.append(f"{file.name}: no ID")
     wanted = {"SizeX": str(SIDE), "SizeY": str(SIDE), "SizeZ": "1", "SizeC": str(len(names)),
@@ -154,7 +154,7 @@ def check(program, stillfield, folder):
     expected = len(inputs) * (5 + 3)  # restored, sd, bounds, draws; labels, probability, entropy
     if len(files) != expected:
         problems.append(f"{len(files)} files were written, not {expected}")
-    record = json.loads((out / "denoise" / "stack.ome.page2.record.json").read_text())["input"]
+    record = json.loads((out / "denoise" / "stack.ome.page002.record.json").read_text())["input"]
     if (record["pixel_size_um"], record["pixel_size_from"]) != (0.5, "OME metadata"):
         problems.append(f"the record has {record}")
     if record["plane"] != "z 1 of 1, channel 2 of 2 (\u00b5-tubules), time 1 of 1":
