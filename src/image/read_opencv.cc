@@ -4,6 +4,7 @@
 #include <opencv2/core/utils/logger.hpp>
 #include <opencv2/imgcodecs.hpp>
 
+#include "image/decode_jpeg.h"
 #include "image/luminance.h"
 #include "image/raster_header.h"
 
@@ -72,14 +73,15 @@ Field read_opencv(const std::filesystem::path& file, FileType type, const ReadLi
   std::vector<std::byte> bytes = read_whole(file);
   const ReadLimits tighter{std::min(limits.max_pixels, kMaxPixels)};
   const RasterHeader header = check(file, type, tighter, bytes);
-  const cv::Mat mat = decode(file, bytes, decoding_of(type, header));
+  Field field;
+  const cv::Mat mat = type == FileType::kJpeg ? decode_jpeg(file, bytes, header, field.notes)
+                                              : decode(file, bytes, decoding_of(type, header));
   const bool known_layout = (mat.depth() == CV_8U || mat.depth() == CV_16U) &&
                             (mat.channels() == 1 || mat.channels() >= 3);
   if (mat.cols != header.width || mat.rows != header.height || !known_layout) {
     throw_input(file, std::string("the picture is not what its header claims") + kCopyAgain);
   }
 
-  Field field;
   field.pixels = Volume<float>({mat.cols, mat.rows});
   field.format = {SampleKind::kUnsigned, header.palette ? 8 : header.bits};
   const bool colour_palette = header.palette && mat.channels() >= 3;

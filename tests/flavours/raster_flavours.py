@@ -8,7 +8,7 @@ from PIL import Image
 from cases import Case, Refusal, run
 from tiff_flavours import HEIGHT, WIDTH, colour, grey
 
-MAXVALS = [1, 2, 5, 77, 100, 127, 200, 254, 255, 256, 1000, 4095, 10000, 65534, 65535]
+MAXVALS = [1, 2, 77, 100, 255, 256, 1000, 4095, 65534, 65535]
 
 
 def netpbm_samples(file, reader=None):
