@@ -130,9 +130,11 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& asked, const R
   });
   describe_measured(measured.measurements(), input.complete(), record);
   if (settings.replicates > 0) {
-    record.bootstrap = bootstrap_measurements(
+    Bootstrap bootstrap = run_bootstrap(
         {input.grey, input.pixels.view(), input.usable.view(), input.measure, settings, input.seed},
-        pool, observer, sampling, record.measurements);
+        pool, observer, record.measurements, sampling);
+    correct_measurements(bootstrap, record.measurements);
+    record.bootstrap = bootstrap.facts;
   }
   record.run.sample_seconds = watch.lap();
 
