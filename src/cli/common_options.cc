@@ -77,6 +77,8 @@ void add_run_options(CLI::App& app, CommonOptions& options) {
       ->capture_default_str();
   add_whole(app, "--max-pixels", options.run.limits.max_pixels, 1, std::uint64_t{1} << 34,
             "Refuse pages with more pixels");
+  add_whole(app, "--max-pages", options.run.limits.max_pages, 1, std::uint64_t{1} << 20,
+            "Refuse files with more pages");
   app.add_flag("--redo", options.run.redo, "Do again what is finished");
   app.add_flag("--strict", options.strict,
                "Exit code 3 if a result did not converge or failed a model check");

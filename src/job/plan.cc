@@ -10,7 +10,7 @@ namespace {
 
 void plan_file(const InputFile& file, const std::vector<NamedValue>& settings,
                const RunSettings& run, std::vector<PlannedField>& plan) {
-  const int pages = count_pages(file.path);
+  const int pages = count_pages(file.path, run.limits);
   std::string sha256 = pages > 1 ? sha256_of_file(file.path) : "";
   for (int page = 0; page < pages; ++page) {
     const auto stem = run.output / output_stem(file, page, pages);

@@ -38,6 +38,8 @@ void describe(Archive& archive, InputFacts& input) {
   archive("samples", input.samples);
   archive("channels", input.channels);
   archive("pixel_size_um", input.pixel_size_um);
+  archive("pixel_size_from", input.pixel_size_from);
+  archive("plane", input.plane);
   archive("notes", input.notes);
 }
 

@@ -35,6 +35,8 @@ struct InputFacts {
   int channels = 1;
   double pixel_size_um = kUnknown;
   std::vector<std::string> notes;  // of the reader and of the grey levels
+  std::string pixel_size_from;     // "option", "OME metadata", "resolution tags"; empty: unknown
+  std::string plane;               // "z 3 of 12, channel 1 of 2, time 1 of 1"; empty without OME
 };
 
 struct GreyFacts {

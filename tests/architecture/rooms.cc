@@ -20,6 +20,8 @@ const std::vector<ThirdParty>& third_parties() {
       {"Eigen/", {"model", "sampler", "diagnose"}},
       {"opencv2/", {"measure", "image"}},
       {"tiff", {"image"}},
+      {"jpeglib", {"image"}},
+      {"jerror", {"image"}},
       {"openssl/", {"image"}},
       {"pugixml", {"image"}},
       {"nlohmann/", {"report"}},
