@@ -4,6 +4,7 @@
 #include <cstdio>
 #include <thread>
 
+#include "cli/progress.h"
 #include "cli/signals.h"
 #include "core/error.h"
 #include "simd/target.h"
@@ -11,7 +12,20 @@
 namespace stillfield {
 namespace {
 
-void print_summary(const FolderCounts& counts, const std::string& output, const char* advice) {
+std::string check_shard(const std::string& text) {
+  return parse_shard(text) ? "" : "must be I/N with I from 1 to N, such as 2/5, not '" + text + "'";
+}
+
+void print_dry_run(const FolderCounts& counts) {
+  std::printf("%d to do, %d finished before, %d that would fail; nothing was written.\n",
+              counts.done, counts.skipped, counts.failed);
+  if (counts.done == 0) return;
+  std::printf("Estimated time: %s, %s.\n", duration_text(counts.seconds_to_do).c_str(),
+              counts.skipped > 0 ? "at the speed of the images finished before"
+                                 : "a rough figure that knows neither the images nor the machine");
+}
+
+void print_summary(const FolderCounts& counts, const CommonOptions& options, const char* advice) {
   const int all = counts.done + counts.skipped + counts.failed + counts.not_reached;
   std::printf("%d %s: %d done", all, all == 1 ? "image" : "images", counts.done);
   if (counts.skipped > 0) std::printf(", %d finished before", counts.skipped);
@@ -27,8 +41,13 @@ void print_summary(const FolderCounts& counts, const std::string& output, const 
     std::printf("%d failed a model check: checks.csv says which, and what it means.\n",
                 counts.check_failed);
   }
-  std::printf("Results are in %s: measurements.csv, summary.csv, run.json and the maps.\n",
-              output.c_str());
+  if (options.run.shard) {
+    std::printf("This was part %s; when all have ended: stillfield report %s\n",
+                options.shard.c_str(), options.output.c_str());
+  } else {
+    std::printf("Results are in %s: measurements.csv, summary.csv, run.json and the maps.\n",
+                options.output.c_str());
+  }
   if (counts.interrupted) {
     std::printf("Stopped on request; the same command again continues where this one ended.\n");
   }
@@ -79,25 +98,57 @@ void add_run_options(CLI::App& app, CommonOptions& options) {
             "Refuse pages with more pixels");
   add_whole(app, "--max-pages", options.run.limits.max_pages, 1, std::uint64_t{1} << 20,
             "Refuse files with more pages");
+  app.add_option("--memory", options.memory,
+                 "Refuse images that need more than this, say 4GB or 500MB; otherwise all that is "
+                 "free when the run begins")
+      ->check(CLI::Validator(check_memory, "", ""))
+      ->type_name("SIZE");
+  app.add_option("--shard", options.shard,
+                 "Do part I of N of the images, chosen by their names; parts may run at the same "
+                 "time, on one machine or several. Then: stillfield report DIR")
+      ->check(CLI::Validator(check_shard, "", ""))
+      ->type_name("I/N");
+  app.add_option("--log", options.log, "Add a line with the time to this file for each event")
+      ->type_name("FILE");
+  app.add_flag("--dry-run", options.run.dry_run,
+               "List what would be done, and an estimate of the time; write nothing");
   app.add_flag("--redo", options.run.redo, "Do again what is finished");
   app.add_flag("--strict", options.strict,
                "Exit code 3 if a result did not converge or failed a model check");
   app.add_flag("--quiet", options.quiet, "Write nothing but errors to the terminal");
 }
 
-void begin_run(CommonOptions& options) {
+int run_command(CommonOptions& options, int max_sweeps, const char* advice,
+                const FolderCommand& command) {
   options.run.output = options.output;
   options.run.group_file = options.group_file;
+  options.run.shard = parse_shard(options.shard);
+  options.run.memory = parse_memory(options.memory).value_or(0);
   force_cpu_target(options.cpu_target);
   catch_stop_signals();
-}
-
-int end_run(const FolderCounts& counts, const CommonOptions& options, const char* advice) {
-  if (!options.quiet) print_summary(counts, options.output, advice);
+  const bool dry = options.run.dry_run;
+  FolderCounts counts;
+  {
+    Progress progress(options.quiet, max_sweeps, dry ? std::string() : options.log);
+    progress.log().line("run into " + options.output +
+                        (options.run.shard ? ", part " + options.shard : std::string()));
+    try {
+      counts = command(progress);
+    } catch (const Error& error) {
+      progress.log().line(std::string("run ended: ") + error.what());
+      throw;
+    }
+    progress.log().line("run ended: " + std::to_string(counts.done) + " done, " +
+                        std::to_string(counts.skipped) + " finished before, " +
+                        std::to_string(counts.failed) + " failed, " +
+                        std::to_string(counts.not_reached) + " not reached");
+  }
+  if (!options.quiet && dry) print_dry_run(counts);
+  if (!options.quiet && !dry) print_summary(counts, options, advice);
   if (counts.interrupted) return kExitInterrupted;
   if (counts.failed > 0) return kExitSomeFailed;
   const bool doubts = counts.not_converged + counts.check_failed > 0;
-  return options.strict && doubts ? kExitNotConverged : kExitAllDone;
+  return options.strict && doubts && !dry ? kExitNotConverged : kExitAllDone;
 }
 
 }  // namespace stillfield

@@ -4,6 +4,7 @@
 
 #include <CLI/CLI.hpp>
 #include <cstdint>
+#include <functional>
 #include <string>
 #include <vector>
 
@@ -17,6 +18,9 @@ struct CommonOptions {
   std::string output;
   std::string group_file;
   std::string cpu_target = "auto";
+  std::string shard;
+  std::string memory;
+  std::string log;
   bool strict = false;
   bool quiet = false;
   RunSettings run;
@@ -38,11 +42,12 @@ CLI::Option* add_choice(CLI::App& app, const char* name, std::string& value,
 void add_inputs_and_output(CLI::App& app, CommonOptions& options);
 void add_run_options(CLI::App& app, CommonOptions& options);
 
-// Sets the folder for results and the CPU target, and catches the signals that stop a run.
-void begin_run(CommonOptions& options);
-
-// What came out, and the exit code.
-int end_run(const FolderCounts& counts, const CommonOptions& options, const char* advice);
+// Runs a command on its folder: sets folder and CPU target, catches the signals that stop a run,
+// shows progress and keeps the log; says what came out and returns the exit code. `advice`: what
+// may help images that did not converge.
+using FolderCommand = std::function<FolderCounts(JobObserver& observer)>;
+int run_command(CommonOptions& options, int max_sweeps, const char* advice,
+                const FolderCommand& command);
 
 }  // namespace stillfield
 

@@ -6,9 +6,8 @@
 
 #include "cli/common_options.h"
 #include "cli/noise_option.h"
-#include "cli/progress.h"
 #include "core/error.h"
-#include "job/mask.h"
+#include "image/digest.h"
 #include "report/camera_file.h"
 
 namespace stillfield {
@@ -83,8 +82,8 @@ void complete_settings(DenoiseOptions& options) {
   }
   if (!options.saturation.empty()) settings.saturation = parse_number(options.saturation);
   settings.mask = options.mask;
-  settings.mask_sha256 = mask_digest(settings.mask);
   settings.learn_from = options.learn_from;
+  settings.learn_from_sha256 = sha256_of_tree(settings.learn_from);
   settings.correlated_noise = options.correlation == "estimate";
   settings.connectivity = options.neighbours == "8" ? Connectivity::kEight : Connectivity::kFour;
   settings.float_output = options.depth == "float";
@@ -92,15 +91,12 @@ void complete_settings(DenoiseOptions& options) {
 
 int run_denoise(DenoiseOptions& options) {
   complete_settings(options);
-  begin_run(options);
-  FolderCounts counts;
-  {
-    Progress progress(options.quiet, options.settings.max_sweeps);
-    counts = denoise_folder({options.inputs.begin(), options.inputs.end()}, options.settings,
-                            options.run, progress);
-  }
-  return end_run(counts, options,
-                 "a larger\n--max-sweeps may help with the priors edges and smooth.");
+  return run_command(options, options.settings.max_sweeps,
+                     "a larger\n--max-sweeps may help with the priors edges and smooth.",
+                     [&](JobObserver& observer) {
+                       return denoise_folder({options.inputs.begin(), options.inputs.end()},
+                                             options.settings, options.run, observer);
+                     });
 }
 
 std::string check_finite(const std::string& text) {

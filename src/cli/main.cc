@@ -7,6 +7,8 @@
 #include "cli/camera.h"
 #include "cli/denoise.h"
 #include "cli/info.h"
+#include "cli/printable.h"
+#include "cli/report.h"
 #include "cli/score.h"
 #include "cli/segment.h"
 #include "core/error.h"
@@ -41,7 +43,7 @@ int exit_code(ErrorKind kind) {
 }
 
 int complain(const char* sentence, int code) {
-  std::fprintf(stderr, "stillfield: %s\n", sentence);
+  std::fprintf(stderr, "stillfield: %s\n", printable(sentence).c_str());
   return code;
 }
 
@@ -55,7 +57,7 @@ int run(int argc, char** argv) {
   app.require_subcommand(0, 1);
   app.footer(kEpilogue);
   const std::vector<Command> commands = {add_segment(app), add_denoise(app), add_camera(app),
-                                         add_score(app), add_info(app)};
+                                         add_score(app),   add_report(app),  add_info(app)};
   try {
     app.parse(argc, argv);
   } catch (const CLI::Success& request) {  // --help, --version
@@ -69,7 +71,7 @@ int run(int argc, char** argv) {
     if (command.options->parsed()) return command.run();
   }
   return complain(
-      "a command is needed: segment, denoise, camera, score or info (stillfield --help)",
+      "a command is needed: segment, denoise, camera, score, report or info (stillfield --help)",
       kExitBadUsage);
 }
 

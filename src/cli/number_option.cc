@@ -80,4 +80,24 @@ std::string check_length(const std::string& text) {
          text + "'";
 }
 
+std::optional<std::int64_t> parse_memory(const std::string& text) {
+  constexpr double kLeast = 1e6;
+  constexpr double kMost = 1e18;
+  constexpr std::pair<std::string_view, double> kUnits[] = {
+      {"MB", 1e6}, {"GB", 1e9}, {"TB", 1e12}, {"MiB", 1048576.0}, {"GiB", 1073741824.0}};
+  for (const auto& [unit, bytes] : kUnits) {
+    if (!text.ends_with(unit)) continue;
+    const auto value = parse_number(text.substr(0, text.size() - unit.size()));
+    const double all = value.value_or(0) * bytes;
+    if (!(all >= kLeast && all <= kMost)) return std::nullopt;
+    return static_cast<std::int64_t>(all);
+  }
+  return std::nullopt;
+}
+
+std::string check_memory(const std::string& text) {
+  if (parse_memory(text)) return {};
+  return "must be an amount of memory with its unit, such as 4GB or 500MB, not '" + text + "'";
+}
+
 }  // namespace stillfield

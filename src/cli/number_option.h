@@ -35,6 +35,11 @@ std::string check_blur(const std::string& text);
 std::optional<double> parse_length_um(const std::string& text);
 std::string check_length(const std::string& text);
 
+// An amount of memory with its unit, 4GB, 1.5GB, 500MB (10^9 and 10^6 bytes; GiB and MiB too), in
+// bytes; at least a megabyte.
+std::optional<std::int64_t> parse_memory(const std::string& text);
+std::string check_memory(const std::string& text);
+
 }  // namespace stillfield
 
 #endif  // STILLFIELD_CLI_NUMBER_OPTION_H_

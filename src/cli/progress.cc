@@ -7,7 +7,9 @@
 #include <cmath>
 #include <cstdio>
 
+#include "cli/printable.h"
 #include "cli/signals.h"
+#include "job/resource_need.h"
 
 namespace stillfield {
 namespace {
@@ -39,17 +41,29 @@ const char* stage_text(Stage stage) {
   return "";
 }
 
+std::string seconds_text(double seconds) {
+  char text[32];
+  std::snprintf(text, sizeof text, "%.1f s", seconds);
+  return text;
+}
+
 bool continues_character(char c) {
   return (static_cast<unsigned char>(c) & 0xC0) == 0x80;
 }
 
 }  // namespace
 
-Progress::Progress(bool quiet, int max_sweeps)
-    : visible_(!quiet && ::isatty(STDERR_FILENO) == 1), max_sweeps_(max_sweeps) {}
+Progress::Progress(bool quiet, int max_sweeps, const std::string& log_file)
+    : log_(log_file),
+      quiet_(quiet),
+      visible_(!quiet && ::isatty(STDERR_FILENO) == 1),
+      max_sweeps_(max_sweeps) {}
 
 Progress::~Progress() {
   clear();
+  if (log_.failed()) {
+    std::fprintf(stderr, "stillfield: lines of the log could not be written; free some space\n");
+  }
 }
 
 void Progress::field_started(int number, int of, const std::string& name) {
@@ -58,6 +72,7 @@ void Progress::field_started(int number, int of, const std::string& name) {
   adapting_sweeps_ = 0;
   name_ = name;
   field_start_ = Clock::now();
+  log_.line("begin " + std::to_string(number + 1) + " of " + std::to_string(of) + ": " + name);
   draw("reading");
 }
 
@@ -80,14 +95,29 @@ bool Progress::due() const {
   return seconds_between(last_drawn_, Clock::now()) >= kRedrawSeconds;
 }
 
-void Progress::field_finished(const std::string& /*name*/, bool /*converged*/) {
+void Progress::field_finished(const std::string& name, bool converged) {
+  const double seconds = seconds_between(field_start_, Clock::now());
   ++finished_;
-  finished_seconds_ += seconds_between(field_start_, Clock::now());
+  finished_seconds_ += seconds;
+  log_.line("done in " + seconds_text(seconds) + ": " + name +
+            (converged ? "" : " (did not converge)"));
 }
 
 void Progress::field_failed(const std::string& /*name*/, const std::string& sentence) {
   clear();
-  std::fprintf(stderr, "stillfield: %s\n", sentence.c_str());
+  std::fprintf(stderr, "stillfield: %s\n", printable(sentence).c_str());
+  log_.line("failed: " + sentence);
+}
+
+void Progress::listed(const ListedField& field) {
+  if (quiet_) return;
+  std::string size;
+  if (field.width > 0) {
+    size = " (" + std::to_string(field.width) + " x " + std::to_string(field.height) + ", " +
+           memory_text(field.bytes) + " of memory)";
+  }
+  std::printf("%s%s: %s\n", printable(field.name).c_str(), size.c_str(),
+              printable(field.state).c_str());
 }
 
 bool Progress::stop_requested() const {
@@ -139,11 +169,7 @@ std::string duration_text(double seconds) {
 }
 
 std::string shortened(const std::string& name, std::size_t width) {
-  std::string text = name;
-  for (char& c : text) {
-    const auto u = static_cast<unsigned char>(c);
-    if (u < 0x20 || u == 0x7F) c = '?';
-  }
+  const std::string text = printable(name);
   const auto starts = static_cast<std::size_t>(
       std::count_if(text.begin(), text.end(), [](char c) { return !continues_character(c); }));
   if (starts <= width) return text;

@@ -1,20 +1,22 @@
 // One line on the terminal that says where the run is; and the sentences of failed files.
 //
 // The line goes to the error stream and is redrawn in place, at most ten times a second. Without a
-// terminal, or when asked to be quiet, only failures are written.
+// terminal, or when asked to be quiet, only failures are written. What begins, ends and fails also
+// goes to the log.
 #ifndef STILLFIELD_CLI_PROGRESS_H_
 #define STILLFIELD_CLI_PROGRESS_H_
 
 #include <chrono>
 #include <string>
 
+#include "cli/log_file.h"
 #include "job/observer.h"
 
 namespace stillfield {
 
 class Progress : public JobObserver {
  public:
-  Progress(bool quiet, int max_sweeps);
+  Progress(bool quiet, int max_sweeps, const std::string& log_file = {});
   ~Progress() override;
   Progress(const Progress&) = delete;
   Progress& operator=(const Progress&) = delete;
@@ -24,7 +26,10 @@ class Progress : public JobObserver {
   void stepped(int step, int steps) override;
   void field_finished(const std::string& name, bool converged) override;
   void field_failed(const std::string& name, const std::string& sentence) override;
+  void listed(const ListedField& field) override;
   bool stop_requested() const override;
+
+  LogFile& log() { return log_; }
 
  private:
   using Clock = std::chrono::steady_clock;
@@ -34,6 +39,8 @@ class Progress : public JobObserver {
   bool due() const;
   std::string time_left(int sweeps) const;
 
+  LogFile log_;
+  bool quiet_;
   bool visible_;
   bool drawn_ = false;
   int max_sweeps_;

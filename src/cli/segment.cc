@@ -4,8 +4,6 @@
 #include <string>
 
 #include "cli/common_options.h"
-#include "cli/progress.h"
-#include "job/mask.h"
 
 namespace stillfield {
 namespace {
@@ -70,18 +68,14 @@ int run_segment(SegmentOptions& options) {
   settings.particles.connectivity = options.particle_neighbours == "4" ? 4 : 8;
   if (!options.pixel_size.empty()) settings.pixel_size_um = parse_length_um(options.pixel_size);
   settings.mask = options.mask;
-  settings.mask_sha256 = mask_digest(settings.mask);
   if (options.quick) settings.target = kQuickTarget;
   if (options.no_bootstrap) settings.replicates = 0;
   settings.replicates -= settings.replicates % 2;
-  begin_run(options);
-  FolderCounts counts;
-  {
-    Progress progress(options.quiet, settings.schedule.max_sweeps);
-    counts = segment_folder({options.inputs.begin(), options.inputs.end()}, settings, options.run,
-                            progress);
-  }
-  return end_run(counts, options, "a larger\n--max-sweeps may help.");
+  return run_command(options, settings.schedule.max_sweeps, "a larger\n--max-sweeps may help.",
+                     [&](JobObserver& observer) {
+                       return segment_folder({options.inputs.begin(), options.inputs.end()},
+                                             settings, options.run, observer);
+                     });
 }
 
 void add_model_options(CLI::App& app, SegmentOptions& options) {

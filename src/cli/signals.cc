@@ -2,6 +2,8 @@
 
 #include <signal.h>
 
+#include <initializer_list>
+
 namespace stillfield {
 namespace {
 
@@ -22,8 +24,14 @@ void catch_stop_signals() {
   action.sa_handler = on_stop_signal;
   action.sa_flags = SA_RESTART;
   sigemptyset(&action.sa_mask);
-  sigaction(SIGINT, &action, nullptr);
   sigaction(SIGTERM, &action, nullptr);
+  for (const int number : {SIGINT, SIGHUP}) {
+    struct sigaction before {};
+    sigaction(number, nullptr, &before);
+    if (before.sa_handler != SIG_IGN) sigaction(number, &action, nullptr);  // nohup, background
+  }
+  signal(SIGXFSZ, SIG_IGN);  // a file that may not grow further is an error with a sentence
+  signal(SIGPIPE, SIG_IGN);  // and so is a terminal that has gone
 }
 
 bool stop_signalled() {

@@ -1,10 +1,12 @@
-// Ctrl-C and termination requests: the first asks to stop in order, the second ends the process.
+// Ctrl-C, termination requests and hang-ups: the first asks to stop in order, the second ends the
+// process.
 #ifndef STILLFIELD_CLI_SIGNALS_H_
 #define STILLFIELD_CLI_SIGNALS_H_
 
 namespace stillfield {
 
-// From now on SIGINT and SIGTERM set a flag.
+// From now on SIGINT, SIGTERM and SIGHUP set a flag, unless the caller had SIGINT or SIGHUP ignored
+// (nohup); files that reach a limit of size and closed pipes no longer end the process.
 void catch_stop_signals();
 
 bool stop_signalled();

@@ -2,8 +2,10 @@
 
 #include <openssl/evp.h>
 
+#include <algorithm>
 #include <memory>
 #include <new>
+#include <span>
 #include <vector>
 
 #include "image/file_bytes.h"
@@ -54,6 +56,22 @@ std::string sha256_of_file(const std::filesystem::path& path) {
   Sha256 sha;
   while (const std::size_t got = input.read(buffer)) sha.add(Bytes(buffer).first(got));
   return sha.hex();
+}
+
+std::string sha256_of_tree(const std::filesystem::path& path) {
+  namespace fs = std::filesystem;
+  if (fs::is_regular_file(path)) return sha256_of_file(path);
+  if (!fs::is_directory(path)) return {};
+  std::vector<fs::path> files;
+  for (const auto& entry : fs::recursive_directory_iterator(path)) {
+    if (entry.is_regular_file() && fs::file_size(entry.path()) > 0) files.push_back(entry.path());
+  }
+  std::sort(files.begin(), files.end());
+  std::string list;
+  for (const fs::path& file : files) {
+    list += file.lexically_relative(path).generic_string() + '\0' + sha256_of_file(file) + '\n';
+  }
+  return sha256_hex(std::as_bytes(std::span(list)));
 }
 
 }  // namespace stillfield

@@ -34,7 +34,9 @@ std::optional<std::string> name_before_page(const std::string& name) {
 
 void assign_output_names(std::vector<InputFile>& files) {
   std::map<std::string, int> uses;
-  for (const auto& file : files) ++uses[plain_name(file)];
+  for (const auto& file : files) {
+    if (file.failure.empty()) ++uses[plain_name(file)];
+  }
 
   const auto clashes = [&uses](const std::string& name) {
     const auto before_page = name_before_page(name);
@@ -43,12 +45,13 @@ void assign_output_names(std::vector<InputFile>& files) {
   // Names without a clash come first, so that no other file can take them.
   std::set<std::string> taken;
   for (auto& file : files) {
+    if (!file.failure.empty()) continue;
     const std::string name = plain_name(file);
     file.output = clashes(name) ? std::filesystem::path() : std::filesystem::path(name);
     if (!file.output.empty()) taken.insert(name);
   }
   for (auto& file : files) {
-    if (!file.output.empty()) continue;
+    if (!file.output.empty() || !file.failure.empty()) continue;
     const std::string whole = file.relative.generic_string();
     std::string name = whole;
     for (int n = 2; !taken.insert(name).second; ++n) name = whole + "-" + std::to_string(n);

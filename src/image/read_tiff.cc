@@ -32,6 +32,19 @@ double palette_unit(const std::uint16_t* const table[3], std::size_t entries) {
   return all_small ? 1 : all_multiples ? 256 : 257;
 }
 
+TiffPagePlace go_to_page(const std::filesystem::path& file, int page, const ReadLimits& limits,
+                         TiffHandle& tiff) {
+  const auto pages =
+      tiff_pages(file, tiff, limits, page < 0 ? kEveryPage : static_cast<std::size_t>(page) + 1);
+  check_page(file, page, static_cast<int>(pages.size()));
+  const TiffPagePlace& place = pages[static_cast<std::size_t>(page)];
+  if (TIFFSetSubDirectory(tiff.get(), place.offset) != 1) {
+    throw_input(file, "page " + std::to_string(page + 1) + " of the TIFF cannot be read (" +
+                          tiff.first_error() + ")" + kCopyAgain);
+  }
+  return place;
+}
+
 // Turns the decoded rows of blocks into pixels of a field.
 class PixelWriter {
  public:
@@ -201,18 +214,18 @@ std::vector<OmeImage> read_tiff_ome(const std::filesystem::path& file, const Rea
   return std::move(ome.images);
 }
 
+PageShape tiff_page_shape(const std::filesystem::path& file, int page, const ReadLimits& limits) {
+  TiffHandle tiff = TiffHandle::open(file);
+  go_to_page(file, page, limits, tiff);
+  const TiffLayout layout = tiff_layout(file, tiff, limits);
+  return {layout.width, layout.height, layout.colour ? 3 : 1, layout.format.bits};
+}
+
 Field read_tiff_page(const std::filesystem::path& file, int page, const ReadLimits& limits,
                      ColourMode colour) {
   TiffHandle tiff = TiffHandle::open(file);
   const OmeFile ome = tiff_ome(file, tiff, limits);
-  const auto pages =
-      tiff_pages(file, tiff, limits, page < 0 ? kEveryPage : static_cast<std::size_t>(page) + 1);
-  check_page(file, page, static_cast<int>(pages.size()));
-  const TiffPagePlace& place = pages[static_cast<std::size_t>(page)];
-  if (TIFFSetSubDirectory(tiff.get(), place.offset) != 1) {
-    throw_input(file, "page " + std::to_string(page + 1) + " of the TIFF cannot be read (" +
-                          tiff.first_error() + ")" + kCopyAgain);
-  }
+  const TiffPagePlace place = go_to_page(file, page, limits, tiff);
   const TiffLayout layout = tiff_layout(file, tiff, limits);
   tiff.forget_messages();
 

@@ -2,6 +2,7 @@
 #ifndef STILLFIELD_IMAGE_READ_TIFF_H_
 #define STILLFIELD_IMAGE_READ_TIFF_H_
 
+#include "image/page_shape.h"
 #include "image/read.h"
 
 namespace stillfield {
@@ -9,6 +10,8 @@ namespace stillfield {
 int count_tiff_pages(const std::filesystem::path& file, const ReadLimits& limits);
 
 std::vector<OmeImage> read_tiff_ome(const std::filesystem::path& file, const ReadLimits& limits);
+
+PageShape tiff_page_shape(const std::filesystem::path& file, int page, const ReadLimits& limits);
 
 Field read_tiff_page(const std::filesystem::path& file, int page, const ReadLimits& limits,
                      ColourMode colour);

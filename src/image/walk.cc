@@ -2,9 +2,12 @@
 
 #include <algorithm>
 #include <set>
+#include <string>
 #include <string_view>
+#include <unordered_set>
 
 #include "core/error.h"
+#include "core/utf8.h"
 #include "image/output_names.h"
 
 namespace stillfield {
@@ -40,19 +43,29 @@ bool is_within(const fs::path& inner, const fs::path& outer) {
   return std::mismatch(outer.begin(), outer.end(), inner.begin(), inner.end()).first == outer.end();
 }
 
-std::vector<fs::path> sorted_entries(const fs::path& folder) {
+std::vector<fs::directory_entry> sorted_entries(const fs::path& folder) {
   std::error_code error;
-  std::vector<fs::path> entries;
+  std::vector<fs::directory_entry> entries;
   fs::directory_iterator it(folder, error);
-  for (; !error && it != fs::directory_iterator(); it.increment(error))
-    entries.push_back(it->path());
+  for (; !error && it != fs::directory_iterator(); it.increment(error)) entries.push_back(*it);
   if (error) {
     throw_path(ErrorKind::kInput, folder,
                "the folder cannot be listed (" + error.message() + "); change its access rights");
   }
   std::sort(entries.begin(), entries.end(),
-            [](const fs::path& a, const fs::path& b) { return a.native() < b.native(); });
+            [](const fs::directory_entry& a, const fs::directory_entry& b) {
+              return a.path().native() < b.path().native();
+            });
   return entries;
+}
+
+// Byte order of the names as tables show them.
+bool comes_before(const InputFile& a, const InputFile& b) {
+  const std::string& left = a.relative.native();
+  const std::string& right = b.relative.native();
+  const std::string left_name = utf8_name(left);
+  const std::string right_name = utf8_name(right);
+  return left_name != right_name ? left_name < right_name : left < right;
 }
 
 class Walker {
@@ -60,8 +73,10 @@ class Walker {
   explicit Walker(const fs::path& output_folder)
       : output_folder_(output_folder.empty() ? fs::path() : real_path(output_folder)) {}
 
+  void start_input(int number) { input_ = number; }
+
   void add_file(const fs::path& path, const fs::path& relative) {
-    if (files_seen_.insert(real_path(path)).second) files_.push_back({path, relative, {}});
+    add_real_file(path, relative, real_path(path));
   }
 
   // `prefix` is where the folder's mirror starts below the output folder.
@@ -74,11 +89,9 @@ class Walker {
     if (folders_seen_.contains(real)) return;
     const std::size_t images_before = images_met_;
     const std::size_t first = files_.size();
-    walk(folder, real, prefix);
-    std::sort(files_.begin() + static_cast<std::ptrdiff_t>(first), files_.end(),
-              [](const InputFile& a, const InputFile& b) {
-                return a.relative.generic_string() < b.relative.generic_string();
-              });
+    folders_seen_.insert(real);
+    walk(real, prefix, sorted_entries(folder));
+    std::sort(files_.begin() + static_cast<std::ptrdiff_t>(first), files_.end(), comes_before);
     if (images_met_ == images_before) {
       throw_path(ErrorKind::kInput, folder,
                  "no image in this folder or below it; files ending in" + known_extensions() +
@@ -92,16 +105,24 @@ class Walker {
   }
 
  private:
-  void walk(const fs::path& folder, const fs::path& real, const fs::path& relative) {
-    if (!folders_seen_.insert(real).second) return;
-    for (const auto& entry : sorted_entries(folder)) {
-      if (is_hidden(entry)) continue;
+  void add_real_file(const fs::path& path, const fs::path& relative, const fs::path& real) {
+    if (!files_seen_.insert(real.native()).second) return;
+    files_.push_back({path, relative, {}, input_, {}});
+  }
+
+  void walk(const fs::path& real, const fs::path& relative,
+            const std::vector<fs::directory_entry>& entries) {
+    for (const fs::directory_entry& entry : entries) {
+      const fs::path& path = entry.path();
+      if (is_hidden(path)) continue;
+      const fs::path below = relative / path.filename();
       std::error_code ignored;
-      if (fs::is_directory(entry, ignored)) {
-        walk_inner(entry, real, relative / entry.filename());
-      } else if (has_image_extension(entry)) {
+      if (entry.is_directory(ignored)) {
+        walk_inner(path, real, below);
+      } else if (has_image_extension(path)) {
         ++images_met_;
-        add_file(entry, relative / entry.filename());
+        const bool link = entry.is_symlink(ignored);
+        add_real_file(path, below, link ? real_path(path) : real / path.filename());
       }
     }
   }
@@ -110,14 +131,24 @@ class Walker {
     const fs::path real = real_path(folder);
     const bool leads_back = is_within(real_parent, real);
     const bool is_output = !output_folder_.empty() && real == output_folder_;
-    if (!leads_back && !is_output) walk(folder, real, relative);
+    if (leads_back || is_output || !folders_seen_.insert(real).second) return;
+    std::vector<fs::directory_entry> entries;
+    try {
+      entries = sorted_entries(folder);
+    } catch (const Error& error) {
+      ++images_met_;  // there may be some
+      files_.push_back({folder, relative, {}, input_, error.what()});
+      return;
+    }
+    walk(real, relative, entries);
   }
 
   fs::path output_folder_;
+  int input_ = 0;
   std::vector<InputFile> files_;
-  std::set<fs::path> files_seen_;    // canonical
-  std::set<fs::path> folders_seen_;  // canonical
-  std::size_t images_met_ = 0;       // in folders, duplicates too
+  std::unordered_set<std::string> files_seen_;  // canonical
+  std::set<fs::path> folders_seen_;             // canonical
+  std::size_t images_met_ = 0;                  // in folders, duplicates too
 };
 
 // Own name of a folder, made unique among those handed out before.
@@ -157,7 +188,9 @@ std::vector<InputFile> find_inputs(const std::vector<fs::path>& inputs,
   Walker walker(output_folder);
   std::set<std::string> names;
   std::set<fs::path> mirrored;
+  int number = 0;
   for (const auto& input : inputs) {
+    walker.start_input(number++);
     if (!fs::is_directory(input)) {
       walker.add_file(input, input.filename());
     } else if (mirrored.insert(real_path(input)).second) {
@@ -165,6 +198,14 @@ std::vector<InputFile> find_inputs(const std::vector<fs::path>& inputs,
     }
   }
   return walker.take();
+}
+
+std::vector<InputFile> find_all_inputs(const std::vector<fs::path>& inputs) {
+  std::vector<InputFile> files = find_inputs(inputs, {});
+  for (const InputFile& file : files) {
+    if (!file.failure.empty()) throw Error(ErrorKind::kInput, file.failure);
+  }
+  return files;
 }
 
 }  // namespace stillfield

@@ -40,7 +40,7 @@ void require_folder(const fs::path& folder) {
 std::vector<Frames> flat_levels(const fs::path& folder) {
   std::map<std::string, Frames> levels;
   bool folders = false;
-  const std::vector<InputFile> files = find_inputs({folder}, {});
+  const std::vector<InputFile> files = find_all_inputs({folder});
   for (const InputFile& file : files) folders = folders || file.relative.has_parent_path();
   for (const InputFile& file : files) {
     const std::string name = folders ? file.relative.parent_path().generic_string()
@@ -116,7 +116,7 @@ CameraFacts measure_camera(const fs::path& dark, const fs::path& flat, const fs:
   require_folder(dark);
   require_folder(flat);
   std::vector<fs::path> dark_files;
-  for (const InputFile& file : find_inputs({dark}, {})) dark_files.push_back(file.path);
+  for (const InputFile& file : find_all_inputs({dark})) dark_files.push_back(file.path);
   std::vector<Frames> levels = flat_levels(flat);
   const bool exposures = number_levels(levels);
 

@@ -12,6 +12,7 @@
 #include "job/output_folder.h"
 #include "job/preview.h"
 #include "job/restore_plane.h"
+#include "job/unfinished_result.h"
 #include "simd/target.h"
 
 namespace stillfield {
@@ -129,7 +130,7 @@ ImageRecord denoise(const FieldTask& task, const DenoiseSettings& settings, cons
   record.run.sample_seconds = watch.lap();
 
   const fs::path record_file = with_suffix(task.stem, kRecordSuffix);
-  fs::remove(record_file);  // from here to the end there is no finished result
+  const UnfinishedResult unfinished(task.stem, record);
   write_maps(task, planes, field.format, settings, map_options(field), record);
   record.run.write_seconds = watch.lap();
   write_record(record_file, record);

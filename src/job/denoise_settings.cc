@@ -61,10 +61,11 @@ std::vector<NamedValue> named_settings(const DenoiseSettings& settings) {
   if (settings.saturation) list.push_back({"saturation", *settings.saturation});
   if (!settings.mask.empty()) {
     list.push_back({"mask", settings.mask.generic_string()});
-    list.push_back({"mask_sha256", settings.mask_sha256});
+    if (!settings.mask_sha256.empty()) list.push_back({"mask_sha256", settings.mask_sha256});
   }
   if (!settings.learn_from.empty()) {
     list.push_back({"learn_from", settings.learn_from.generic_string()});
+    list.push_back({"learn_from_sha256", settings.learn_from_sha256});
   }
   const bool patches = settings.prior == PriorChoice::kPatches;
   if (patches) {

@@ -37,8 +37,9 @@ struct DenoiseSettings {
   double impulse_share = 0;          // kShare: the share to start from
   std::optional<double> saturation;  // grey values from here on are saturated
   std::filesystem::path mask;        // file, or folder of files named as the images; 0 = not used
-  std::string mask_sha256;           // of all that `mask` holds (job/mask.h)
+  std::string mask_sha256;           // of the mask of the image at hand (job/mask.h)
   std::filesystem::path learn_from;  // file or folder of like images for the patch mixture
+  std::string learn_from_sha256;     // of all that `learn_from` holds
   bool correlated_noise = false;     // model a short-range covariance of the noise
   bool recheck = false;              // scale the intervals by restoring re-noised results
   Connectivity connectivity = Connectivity::kFour;  // edges, smooth

@@ -29,8 +29,9 @@ std::string sample_name(const SampleFormat& format) {
 
 InputFacts describe_input(const FieldTask& task, const Field& field) {
   InputFacts input;
-  input.path = task.relative.generic_string();
+  input.path = task.name_in_tables();
   input.sha256 = task.sha256.empty() ? sha256_of_file(task.file) : task.sha256;
+  if (task.stamp.bytes >= 0) check_unchanged(task.file, task.stamp);
   input.bytes = static_cast<std::int64_t>(fs::file_size(task.file));
   input.page = task.page + 1;
   input.pages = task.pages;

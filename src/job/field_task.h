@@ -5,6 +5,9 @@
 #include <filesystem>
 #include <string>
 
+#include "core/utf8.h"
+#include "image/file_stamp.h"
+
 namespace stillfield {
 
 struct FieldTask {
@@ -14,6 +17,10 @@ struct FieldTask {
   int pages = 1;
   std::filesystem::path stem;  // NAME of NAME.labels.tif, in the output folder
   std::string sha256;          // of the file; empty if it has not been needed yet
+  int input = 0;               // which of the inputs it was found in, from 0
+  FileStamp stamp;             // of the file before it was first read
+
+  std::string name_in_tables() const { return utf8_name(relative.generic_string()); }
 
   // For sentences and progress: "FILE", or "FILE, page 3".
   std::string name() const {

@@ -20,7 +20,7 @@ struct LikePage {
 
 std::vector<LikePage> like_pages(const std::filesystem::path& from) {
   std::vector<LikePage> all;
-  for (const InputFile& input : find_inputs({from}, {})) {
+  for (const InputFile& input : find_all_inputs({from})) {
     const int pages = count_pages(input.path);
     for (int page = 0; page < pages; ++page) all.push_back({input.path, page});
   }

@@ -2,8 +2,7 @@
 
 #include <algorithm>
 #include <cmath>
-#include <span>
-#include <vector>
+#include <utility>
 
 #include "core/error.h"
 #include "image/digest.h"
@@ -61,19 +60,13 @@ Volume<std::uint8_t> read_mask(const fs::path& mask, const FieldTask& task, cons
   return usable;
 }
 
-std::string mask_digest(const fs::path& mask) {
-  if (fs::is_regular_file(mask)) return sha256_of_file(mask);
-  if (!fs::is_directory(mask)) return {};
-  std::vector<fs::path> files;
-  for (const auto& entry : fs::recursive_directory_iterator(mask)) {
-    if (entry.is_regular_file() && fs::file_size(entry.path()) > 0) files.push_back(entry.path());
-  }
-  std::sort(files.begin(), files.end());
-  std::string list;
-  for (const fs::path& file : files) {
-    list += file.lexically_relative(mask).generic_string() + '\0' + sha256_of_file(file) + '\n';
-  }
-  return sha256_hex(std::as_bytes(std::span(list)));
+MaskDigest::MaskDigest(fs::path mask) : mask_(std::move(mask)) {
+  if (!mask_.empty() && !fs::is_directory(mask_)) of_file_ = sha256_of_tree(mask_);
+}
+
+std::string MaskDigest::of(const FieldTask& task) const {
+  if (mask_.empty() || !of_file_.empty()) return of_file_;
+  return sha256_of_file(mask_file(mask_, task));
 }
 
 }  // namespace stillfield

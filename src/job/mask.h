@@ -19,9 +19,17 @@ namespace stillfield {
 Volume<std::uint8_t> read_mask(const std::filesystem::path& mask, const FieldTask& task,
                                const Extent& extent, const ReadLimits& limits);
 
-// SHA-256 of a mask file; of a folder, over the names and contents of all its files; empty for an
-// empty path or one where nothing is. Throws Error(kInput) for what cannot be read.
-std::string mask_digest(const std::filesystem::path& mask);
+// SHA-256 of the mask of a field, so that a changed mask does its image again and no other; of one
+// file for all it is taken once. Throws Error(kInput) as read_mask() does.
+class MaskDigest {
+ public:
+  explicit MaskDigest(std::filesystem::path mask);
+  std::string of(const FieldTask& task) const;
+
+ private:
+  std::filesystem::path mask_;
+  std::string of_file_;  // empty for a folder
+};
 
 }  // namespace stillfield
 

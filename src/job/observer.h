@@ -2,19 +2,27 @@
 #ifndef STILLFIELD_JOB_OBSERVER_H_
 #define STILLFIELD_JOB_OBSERVER_H_
 
+#include <cstdint>
 #include <string>
 
 #include "sampler/schedule.h"
 
 namespace stillfield {
 
+struct ListedField {
+  std::string name;
+  std::string state;  // "to do", "finished before", or the sentence that says why it would fail
+  std::int64_t width = 0;
+  std::int64_t height = 0;
+  double bytes = 0;  // of memory it needs
+};
+
 class JobObserver {
  public:
   virtual ~JobObserver() = default;
 
-  // What is to be done is known: fields to do, and fields found finished.
-  virtual void planned(int /*to_do*/, int /*finished*/) {}
-  // A field (one page of a file) begins: its number from 0 among those to do, and its name.
+  // A field (one page of a file) begins: its number from 0 among those of the run, of which there
+  // are `of` as far as is known (pages of files to come count as one), and its name.
   virtual void field_started(int /*number*/, int /*of*/, const std::string& /*name*/) {}
   // Every chain has made `sweeps` sweeps in all.
   virtual void swept(Stage /*stage*/, int /*sweeps*/) {}
@@ -22,6 +30,9 @@ class JobObserver {
   virtual void stepped(int /*step*/, int /*steps*/) {}
   virtual void field_finished(const std::string& /*name*/, bool /*converged*/) {}
   virtual void field_failed(const std::string& /*name*/, const std::string& /*sentence*/) {}
+
+  // Of a dry run: what would be done with a field.
+  virtual void listed(const ListedField& /*field*/) {}
 
   // Asked between blocks of sweeps and between fields.
   virtual bool stop_requested() const { return false; }

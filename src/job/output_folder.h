@@ -4,6 +4,7 @@
 
 #include <filesystem>
 #include <string>
+#include <vector>
 
 namespace stillfield {
 
@@ -16,6 +17,15 @@ void write_if_changed(const std::filesystem::path& file, const std::string& text
 
 // "a/b" and ".labels.tif" -> "a/b.labels.tif"; dots in b stay.
 std::filesystem::path with_suffix(std::filesystem::path stem, const std::string& suffix);
+
+// Stems of all records below `folder`, in byte order.
+std::vector<std::filesystem::path> record_stems(const std::filesystem::path& folder);
+
+// Run files of shards in the folder, in the order of their numbers.
+std::vector<std::filesystem::path> shard_files(const std::filesystem::path& folder);
+
+// After a run of all images they say nothing any more.
+void remove_shard_files(const std::filesystem::path& folder);
 
 }  // namespace stillfield
 

@@ -1,14 +1,14 @@
-// What a run has to do: every page of every input, finished ones found, unreadable ones named.
+// What there is to do for a file: every page, finished ones found.
 #ifndef STILLFIELD_JOB_PLAN_H_
 #define STILLFIELD_JOB_PLAN_H_
 
+#include <functional>
 #include <optional>
 #include <string>
 #include <vector>
 
 #include "image/walk.h"
 #include "job/field_task.h"
-#include "job/observer.h"
 #include "job/settings.h"
 #include "report/record.h"
 
@@ -20,11 +20,16 @@ struct PlannedField {
   std::string failure;                  // why the file cannot be opened; empty if it can
 };
 
-// In the order of the files. Throws Error(kInterrupt) when the observer asks to stop. Files are
-// digested where they have several pages or a record stands already.
-std::vector<PlannedField> plan_fields(const std::vector<InputFile>& files,
-                                      const std::vector<NamedValue>& settings,
-                                      const RunSettings& run, const JobObserver& observer);
+// Settings that change the results of a field.
+using SettingsOf = std::function<std::vector<NamedValue>(const FieldTask& task)>;
+
+// How to know that the image of a record is still the same: by the digest of the file, or (in a
+// hurry) not at all.
+enum class Look { kAtContent, kAtRecord };
+
+// The file is digested where it has several pages or a record stands already.
+std::vector<PlannedField> plan_file(const InputFile& file, const SettingsOf& settings_of,
+                                    const RunSettings& run, Look look = Look::kAtContent);
 
 }  // namespace stillfield
 

@@ -14,8 +14,7 @@ bool has_record(const fs::path& stem) {
   return fs::is_regular_file(with_suffix(stem, kRecordSuffix), ignored);
 }
 
-std::optional<ImageRecord> finished_record(const fs::path& stem,
-                                           const std::string& settings_digest) {
+std::optional<ImageRecord> finished_record(const fs::path& stem, const DigestFor& settings_digest) {
   if (!has_record(stem)) return std::nullopt;
   try {
     ImageRecord record = read_record(with_suffix(stem, kRecordSuffix));
@@ -24,7 +23,8 @@ std::optional<ImageRecord> finished_record(const fs::path& stem,
       const auto size = fs::file_size(with_suffix(stem, output.suffix), error);
       return !error && size == static_cast<std::uintmax_t>(output.bytes);
     };
-    const bool complete = record.settings_digest == settings_digest && !record.outputs.empty() &&
+    const bool complete = record.settings_digest == settings_digest(record) &&
+                          !record.outputs.empty() &&
                           std::all_of(record.outputs.begin(), record.outputs.end(), is_there);
     return complete ? std::optional(std::move(record)) : std::nullopt;
   } catch (const Error&) {

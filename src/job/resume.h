@@ -3,6 +3,7 @@
 #define STILLFIELD_JOB_RESUME_H_
 
 #include <filesystem>
+#include <functional>
 #include <optional>
 #include <string>
 
@@ -13,10 +14,11 @@ namespace stillfield {
 // Whether a record stands at `stem`, whatever it says.
 bool has_record(const std::filesystem::path& stem);
 
-// The record at `stem` if it was made by this version of the program from the same input with the
-// same settings, and all its files stand beside it with the size it states.
+// The record at `stem` if it bears the digest it should (of program version, input and settings),
+// and all its files stand beside it with the size it states.
+using DigestFor = std::function<std::string(const ImageRecord&)>;
 std::optional<ImageRecord> finished_record(const std::filesystem::path& stem,
-                                           const std::string& settings_digest);
+                                           const DigestFor& settings_digest);
 
 }  // namespace stillfield
 

@@ -20,20 +20,6 @@ void require_folder(const fs::path& folder) {
               folder.string() + ": there is no such folder; check the spelling of the path");
 }
 
-// Stems of all records below `folder`, in byte order.
-std::vector<fs::path> record_stems(const fs::path& folder) {
-  const std::string suffix = kRecordSuffix;
-  std::vector<fs::path> stems;
-  for (const auto& entry : fs::recursive_directory_iterator(folder)) {
-    const std::string name = entry.path().string();
-    if (name.size() <= suffix.size() || !entry.is_regular_file()) continue;
-    if (name.compare(name.size() - suffix.size(), suffix.size(), suffix) != 0) continue;
-    stems.emplace_back(name.substr(0, name.size() - suffix.size()));
-  }
-  std::sort(stems.begin(), stems.end());
-  return stems;
-}
-
 fs::path truth_file(const fs::path& truth, const std::string& relative) {
   const fs::path exact = truth / relative;
   if (fs::is_regular_file(exact)) return exact;

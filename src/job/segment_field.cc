@@ -17,6 +17,7 @@
 #include "job/restore_blurred.h"
 #include "job/restore_one.h"
 #include "job/segment_input.h"
+#include "job/unfinished_result.h"
 #include "report/class_colours.h"
 #include "report/particle_csv.h"
 #include "simd/target.h"
@@ -139,7 +140,7 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& asked, const R
   record.run.sample_seconds = watch.lap();
 
   const fs::path record_file = with_suffix(task.stem, kRecordSuffix);
-  fs::remove(record_file);  // from here to the end there is no finished result
+  const UnfinishedResult unfinished(task.stem, record);
   write_maps(task, sampling, input, record);
   describe_checks(input.grey, input.usable, sampling, checks, record);
   write_text_atomically(

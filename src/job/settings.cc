@@ -62,7 +62,7 @@ std::vector<NamedValue> named_settings(const SegmentSettings& settings) {
   if (settings.pixel_size_um) list.push_back({"pixel_size_um", *settings.pixel_size_um});
   if (!settings.mask.empty()) {
     list.push_back({"mask", settings.mask.generic_string()});
-    list.push_back({"mask_sha256", settings.mask_sha256});
+    if (!settings.mask_sha256.empty()) list.push_back({"mask_sha256", settings.mask_sha256});
   }
   return list;
 }

@@ -10,6 +10,7 @@
 
 #include "diagnose/verdict.h"
 #include "image/read.h"
+#include "job/shard.h"
 #include "measure/particles.h"
 #include "model/neighbourhood.h"
 #include "report/named_value.h"
@@ -42,7 +43,7 @@ struct SegmentSettings {
   ParticleSettings particles;
   std::optional<double> pixel_size_um;  // > 0; overrides that of the file
   std::filesystem::path mask;           // file, or folder of files named as the images; 0 = outside
-  std::string mask_sha256;              // of all that `mask` holds (job/mask.h)
+  std::string mask_sha256;              // of the mask of the image at hand (job/mask.h)
 };
 
 // Settings that do not.
@@ -53,6 +54,9 @@ struct RunSettings {
   ReadLimits limits;
   std::filesystem::path group_file;  // of the summary's groups; empty: by folder
   std::string group_column = "group";
+  std::optional<Shard> shard;  // a part of the images; empty: all
+  std::int64_t memory = 0;     // bytes a run may use; 0: what is free when it begins
+  bool dry_run = false;        // say what would be done, write nothing
 };
 
 // All of them under the names of the record.

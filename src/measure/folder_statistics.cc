@@ -1,10 +1,8 @@
 #include "measure/folder_statistics.h"
 
 #include <cmath>
-#include <vector>
 
 #include "core/error.h"
-#include "diagnose/moments.h"
 #include "measure/student_t.h"
 
 namespace stillfield {
@@ -28,40 +26,37 @@ double half_width(double s, std::int64_t n) {
 
 }  // namespace
 
-FolderStatistics folder_statistics(std::span<const Measurement> fields) {
-  FolderStatistics out;
-  if (fields.empty()) return out;
-  out.name = fields.front().name;
-  out.label = fields.front().label;
-  out.unit = fields.front().unit;
-
-  std::vector<double> estimates;
-  std::vector<double> variances;
-  const Measurement* last = nullptr;
-  for (const Measurement& field : fields) {
-    check_alike(fields.front(), field);
-    if (!std::isfinite(field.estimate) || !std::isfinite(field.sd)) {
-      ++out.left_out;
-      continue;
-    }
-    estimates.push_back(field.estimate);
-    variances.push_back(field.sd * field.sd);
-    last = &field;
+void FolderScatter::add(const Measurement& field) {
+  check_alike(first_, field);
+  if (!std::isfinite(field.estimate) || !std::isfinite(field.sd)) {
+    ++left_out_;
+    return;
   }
-  out.fields = static_cast<std::int64_t>(estimates.size());
+  estimates_.add(field.estimate);
+  variances_.add(field.sd * field.sd);
+  last_ = field;
+}
+
+FolderStatistics FolderScatter::statistics() const {
+  FolderStatistics out;
+  out.name = first_.name;
+  out.label = first_.label;
+  out.unit = first_.unit;
+  out.left_out = left_out_;
+  out.fields = estimates_.count();
   if (out.fields == 0) return out;
 
-  out.mean = mean_of(estimates);
-  out.within_field_sd = std::sqrt(mean_of(variances));
+  out.mean = estimates_.mean();
+  out.within_field_sd = std::sqrt(variances_.mean());
   if (out.fields == 1) {
     out.basis = kOneField;
-    out.standard_uncertainty = last->sd;
-    out.lower95 = last->lower95;
-    out.upper95 = last->upper95;
+    out.standard_uncertainty = last_.sd;
+    out.lower95 = last_.lower95;
+    out.upper95 = last_.upper95;
     out.ci95 = 0.5 * (out.upper95 - out.lower95);
   } else {
     out.basis = kBetweenFields;
-    out.s = std::sqrt(variance_of(estimates));
+    out.s = std::sqrt(estimates_.variance());
     out.standard_uncertainty = out.s / std::sqrt(static_cast<double>(out.fields));
     out.ci95 = half_width(out.s, out.fields);
     out.lower95 = out.mean - out.ci95;
@@ -69,6 +64,13 @@ FolderStatistics folder_statistics(std::span<const Measurement> fields) {
   }
   if (out.mean != 0) out.relative_accuracy = 100 * out.ci95 / std::fabs(out.mean);
   return out;
+}
+
+FolderStatistics folder_statistics(std::span<const Measurement> fields) {
+  if (fields.empty()) return {};
+  FolderScatter scatter(fields.front());
+  for (const Measurement& field : fields.subspan(1)) scatter.add(field);
+  return scatter.statistics();
 }
 
 std::optional<std::int64_t> further_fields(const FolderStatistics& statistics,

@@ -20,7 +20,9 @@
 #include <optional>
 #include <span>
 #include <string>
+#include <utility>
 
+#include "diagnose/moments.h"
 #include "measure/measurement.h"
 
 namespace stillfield {
@@ -44,6 +46,25 @@ struct FolderStatistics {
   double relative_accuracy = std::numeric_limits<double>::quiet_NaN();  // %RA
   double within_field_sd = std::numeric_limits<double>::quiet_NaN();
   std::string basis = kNoField;  // what the interval rests on: one of the three texts above
+};
+
+// Takes the fields one by one and keeps none of them.
+class FolderScatter {
+ public:
+  explicit FolderScatter(Measurement first) : first_(std::move(first)) { add(first_); }
+
+  bool alike(const Measurement& m) const {
+    return first_.name == m.name && first_.label == m.label && first_.unit == m.unit;
+  }
+  void add(const Measurement& field);
+  FolderStatistics statistics() const;
+
+ private:
+  Measurement first_;
+  Measurement last_;  // of those with a finite value
+  std::int64_t left_out_ = 0;
+  RunningMoments estimates_;
+  RunningMoments variances_;
 };
 
 FolderStatistics folder_statistics(std::span<const Measurement> fields);

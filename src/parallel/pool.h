@@ -4,6 +4,8 @@
 // numbers belong to pixels. Use one level of parallelism at a time: bands of rows inside one
 // large image, or whole chains of a small one, never both (DEVELOPERS.md).
 // Bodies must not throw; check inputs before the loop.
+// A pool may know when to stop: then no loop begins any more, and Error(kInterrupt) is thrown where
+// it would have. Work of many loops stops within one of them, wherever it is.
 #ifndef STILLFIELD_PARALLEL_POOL_H_
 #define STILLFIELD_PARALLEL_POOL_H_
 
@@ -15,7 +17,7 @@ namespace stillfield {
 class Pool {
  public:
   // threads >= 1; more threads than cores are really started (the byte-equality tests need that).
-  explicit Pool(int threads);
+  explicit Pool(int threads, std::function<bool()> stop_requested = {});
   ~Pool();
   Pool(const Pool&) = delete;
   Pool& operator=(const Pool&) = delete;
@@ -30,6 +32,8 @@ class Pool {
   void for_each(int n, const std::function<void(int)>& body) const;
 
  private:
+  void stop_if_requested() const;
+
   struct Impl;
   std::unique_ptr<Impl> impl_;
 };

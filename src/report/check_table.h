@@ -2,14 +2,13 @@
 #ifndef STILLFIELD_REPORT_CHECK_TABLE_H_
 #define STILLFIELD_REPORT_CHECK_TABLE_H_
 
-#include <span>
-#include <string>
-
+#include "report/csv.h"
 #include "report/record.h"
 
 namespace stillfield {
 
-std::string checks_csv(std::span<const ImageRecord> records);
+CsvTable checks_table();
+void add_checks(const ImageRecord& record, CsvTable& table);
 
 }  // namespace stillfield
 

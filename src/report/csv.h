@@ -10,6 +10,7 @@
 #include <cstdint>
 #include <string>
 #include <string_view>
+#include <utility>
 
 namespace stillfield {
 
@@ -25,6 +26,10 @@ class CsvTable {
 
   // The table with its final line break.
   std::string text() const { return text_ + '\n'; }
+
+  // What has been added since the last call, for tables that are written row by row; the line
+  // break of the last row is still to come.
+  std::string take() { return std::exchange(text_, {}); }
 
  private:
   void separate();

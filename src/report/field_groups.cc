@@ -22,26 +22,39 @@ std::size_t column_of(const CsvRow& header, const std::string& name, const fs::p
   return static_cast<std::size_t>(at - header.fields.begin());
 }
 
-// The image of the run that a row means.
-std::string image_meant(const std::string& name, const std::vector<std::string>& images) {
-  if (std::find(images.begin(), images.end(), name) != images.end()) return name;
-  std::string found;
-  for (const std::string& image : images) {
-    if (fs::path(image).filename() != name || image == found) continue;
-    if (!found.empty()) {
-      throw Error(ErrorKind::kInput, "`" + name + "` may be " + found + " or " + image +
+// Finds the image of the run that a row means.
+class ImageNames {
+ public:
+  explicit ImageNames(const std::vector<std::string>& images)
+      : images_(images.begin(), images.end()) {
+    for (const std::string& image : images_) {
+      const std::string name = fs::path(image).filename().string();
+      const auto [other, is_new] = by_file_name_.try_emplace(name, image, "");
+      if (!is_new && other->second.second.empty()) other->second.second = image;
+    }
+  }
+
+  std::string meant(const std::string& name) const {
+    if (images_.contains(name)) return name;
+    const auto found = by_file_name_.find(name);
+    if (found == by_file_name_.end()) {
+      throw Error(ErrorKind::kInput,
+                  "names `" + name +
+                      "`, which is not among the images of this run; correct the name as "
+                      "measurements.csv would have it, or leave the line out");
+    }
+    const auto& [image, another] = found->second;
+    if (!another.empty()) {
+      throw Error(ErrorKind::kInput, "`" + name + "` may be " + image + " or " + another +
                                          "; write the image with its folder");
     }
-    found = image;
+    return image;
   }
-  if (found.empty()) {
-    throw Error(ErrorKind::kInput,
-                "names `" + name +
-                    "`, which is not among the images of this run; correct the name as "
-                    "measurements.csv would have it, or leave the line out");
-  }
-  return found;
-}
+
+ private:
+  std::set<std::string> images_;
+  std::map<std::string, std::pair<std::string, std::string>> by_file_name_;  // first two images
+};
 
 std::vector<CsvRow> rows_of(const fs::path& file) {
   const std::vector<std::byte> bytes = read_whole(file);
@@ -49,12 +62,11 @@ std::vector<CsvRow> rows_of(const fs::path& file) {
 }
 
 void take_row(const CsvRow& row, std::size_t image_at, std::size_t group_at,
-              const std::vector<std::string>& images, std::set<std::string>& seen,
-              FieldGroups& groups) {
+              const ImageNames& images, std::set<std::string>& seen, FieldGroups& groups) {
   if (row.fields.size() <= std::max(image_at, group_at)) {
     throw Error(ErrorKind::kInput, "has fewer fields than the first line names columns");
   }
-  const std::string image = image_meant(row.fields[image_at], images);
+  const std::string image = images.meant(row.fields[image_at]);
   if (!seen.insert(image).second) {
     throw Error(ErrorKind::kInput, "names " + image + " a second time; leave one line out");
   }
@@ -67,13 +79,9 @@ void take_row(const CsvRow& row, std::size_t image_at, std::size_t group_at,
 
 }  // namespace
 
-FieldGroups group_by_folder(const std::vector<std::string>& images) {
-  FieldGroups groups;
-  for (const std::string& image : images) {
-    const std::string folder = fs::path(image).parent_path().generic_string();
-    groups[image] = folder.empty() ? "." : folder;
-  }
-  return groups;
+std::string folder_group(const std::string& image) {
+  const std::string folder = fs::path(image).parent_path().generic_string();
+  return folder.empty() ? "." : folder;
 }
 
 FieldGroups read_groups(const fs::path& file, const std::string& column,
@@ -86,10 +94,11 @@ FieldGroups read_groups(const fs::path& file, const std::string& column,
     if (rows.empty()) throw_input(file, "holds no line");
     const std::size_t image_at = column_of(rows.front(), "image", file);
     const std::size_t group_at = column_of(rows.front(), column, file);
+    const ImageNames names(images);
     std::set<std::string> seen;
     for (std::size_t i = 1; i < rows.size(); ++i) {
       line = rows[i].line;
-      take_row(rows[i], image_at, group_at, images, seen, groups);
+      take_row(rows[i], image_at, group_at, names, seen, groups);
     }
   } catch (const Error& error) {
     const std::string sentence = error.what();

@@ -22,7 +22,7 @@ inline constexpr char kAllFields[] = "(all)";
 // Group of each image, by its name in the tables.
 using FieldGroups = std::map<std::string, std::string>;
 
-FieldGroups group_by_folder(const std::vector<std::string>& images);
+std::string folder_group(const std::string& image);
 
 // Throws Error(kInput), naming file and line, if the file cannot be read, a column is missing, or a
 // row names an image that is not there, that it cannot be told from another, or for a second time.

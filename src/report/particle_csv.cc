@@ -39,13 +39,14 @@ std::string particles_csv(const InputFacts& input, double pixel_size_um,
   return table.text();
 }
 
-std::string joined_particles_csv(std::span<const std::string> tables) {
-  std::string joined = std::string(kHeader) + '\n';
-  for (const std::string& table : tables) {
-    const std::size_t end_of_header = table.find('\n');
-    if (end_of_header != std::string::npos) joined.append(table, end_of_header + 1);
-  }
-  return joined;
+std::string particles_header() {
+  return std::string(kHeader) + '\n';
+}
+
+std::string_view particle_rows(std::string_view table) {
+  const std::size_t end_of_header = table.find('\n');
+  return end_of_header == std::string_view::npos ? std::string_view()
+                                                 : table.substr(end_of_header + 1);
 }
 
 }  // namespace stillfield

@@ -7,6 +7,7 @@
 
 #include <span>
 #include <string>
+#include <string_view>
 
 #include "measure/particle_table.h"
 #include "report/record.h"
@@ -19,8 +20,9 @@ inline constexpr char kParticlesSuffix[] = ".particles.csv";
 std::string particles_csv(const InputFacts& input, double pixel_size_um,
                           std::span<const ParticleRow> rows);
 
-// Tables of images one after the other under one header.
-std::string joined_particles_csv(std::span<const std::string> tables);
+// A table without particles, and the rows of a table, to put those of images one after the other.
+std::string particles_header();
+std::string_view particle_rows(std::string_view table);
 
 }  // namespace stillfield
 

@@ -61,20 +61,22 @@ TEST_CASE("a mask of another size is refused with both sizes") {
              Contains("4 x 2") && Contains("5 x 2"));
 }
 
-TEST_CASE("the digest of a mask follows its content, of a folder also the names in it") {
+TEST_CASE("the digest of a mask follows the content of the image's own mask") {
   const TempFolder folder;
-  CHECK(mask_digest({}).empty());
-  CHECK(mask_digest(folder / "gone").empty());
-  save_mask(folder / "masks/a.png", {4, 2});
+  CHECK(MaskDigest({}).of(task_of("a.tif")).empty());
   save_mask(folder / "m.png", {4, 2});
-  const std::string file = mask_digest(folder / "m.png");
-  const std::string before = mask_digest(folder / "masks");
-  CHECK(file.size() == 64);
-  save_mask(folder / "m.png", {4, 3});
-  CHECK(mask_digest(folder / "m.png") != file);
+  const std::string one = MaskDigest(folder / "m.png").of(task_of("a.tif"));
+  CHECK(one.size() == 64);
+  CHECK(MaskDigest(folder / "m.png").of(task_of("b.tif")) == one);
+  save_mask(folder / "masks/a.png", {4, 2});
   save_mask(folder / "masks/heat/b.png", {4, 2});
-  const std::string two = mask_digest(folder / "masks");
-  CHECK(two != before);
-  fs::rename(folder / "masks/heat/b.png", folder / "masks/heat/c.png");
-  CHECK(mask_digest(folder / "masks") != two);
+  const MaskDigest digest(folder / "masks");
+  CHECK(digest.of(task_of("a.tif")) == one);
+  save_mask(folder / "masks/heat/b.png", {4, 3});
+  CHECK(digest.of(task_of("a.tif")) == one);
+  CHECK(digest.of(task_of("heat/b.tif")) != one);
+  CHECK_THAT(sentence_of(ErrorKind::kInput, [&] { digest.of(task_of("c.tif")); }),
+             Contains("has no file"));
+  CHECK_THAT(sentence_of(ErrorKind::kInput, [&] { MaskDigest(folder / "gone").of(task_of("a")); }),
+             Contains("there is no such mask"));
 }

@@ -83,3 +83,17 @@ TEST_CASE("a pool needs at least one thread") {
     }
   }
 }
+
+TEST_CASE("a pool that is asked to stop begins no further loop") {
+  for (const int threads : {1, 2}) {
+    bool stop = false;
+    const Pool pool(threads, [&stop] { return stop; });
+    std::atomic<int> visits{0};
+    const auto count = [&](int /*i*/) { ++visits; };
+    pool.for_each(4, count);
+    stop = true;
+    CHECK_THROWS_AS(pool.for_each(4, count), Error);
+    CHECK_THROWS_AS(pool.for_bands(4, 1, [&](int, int) { ++visits; }), Error);
+    CHECK(visits == 4);
+  }
+}

@@ -26,10 +26,9 @@ FieldGroups groups_from(const std::string& text, const std::string& column = "gr
 }  // namespace
 
 TEST_CASE("folders are the groups") {
-  const FieldGroups groups = group_by_folder(kImages);
-  CHECK(groups.at("a/1.tif") == "a");
-  CHECK(groups.at("b/1.tif") == "b");
-  CHECK(groups.at("top.tif") == ".");
+  CHECK(folder_group("a/1.tif") == "a");
+  CHECK(folder_group("a/b/1.tif") == "a/b");
+  CHECK(folder_group("top.tif") == ".");
 }
 
 TEST_CASE("a table gives the groups, by path or by a file name that is the only one") {
