@@ -44,6 +44,11 @@ std::vector<NamedValue> named_settings(const SegmentSettings& settings) {
   }
   list.push_back({"blur", blur_name(settings.blur.mode)});
   if (settings.blur.mode == BlurMode::kGiven) list.push_back({"blur_value", settings.blur.value});
+  if (settings.shading.mode != ShadingMode::kNone) {
+    list.push_back(settings.shading.mode == ShadingMode::kAuto
+                       ? NamedValue{"shading", std::string("auto")}
+                       : NamedValue{"shading", whole(settings.shading.coefficients)});
+  }
   const std::vector<NamedValue> rest = {
       {"variance", std::string(settings.shared_variance ? "shared" : "own")},
       {"chains", whole(settings.chains)},

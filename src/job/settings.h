@@ -25,6 +25,14 @@ struct BlurSettings {
   double value = 0.0;  // for kGiven
 };
 
+// Uneven light (job/restore_shaded.h): modelled where it shows, left out, or modelled with so many
+// coefficients along a side.
+enum class ShadingMode { kAuto, kNone, kGiven };
+struct ShadingSettings {
+  ShadingMode mode = ShadingMode::kNone;
+  int coefficients = 0;  // for kGiven
+};
+
 inline constexpr int kAutoClasses = 0;  // chosen by the data (job/choose_classes.h)
 
 // Settings that change results; all of them stand in the record.
@@ -34,6 +42,7 @@ struct SegmentSettings {
   CouplingSettings coupling;
   bool shared_variance = false;
   BlurSettings blur;
+  ShadingSettings shading;
   int chains = 4;  // 2..16
   std::uint64_t seed = 1;
   ScheduleSettings schedule;
