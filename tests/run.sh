@@ -64,7 +64,7 @@ fi
 if wants asan; then
   headline "asan: build"
   cmake --preset asan
-  build asan
+  build asan --target unit_tests
   headline "asan: unit tests"
   ctest --preset asan --parallel "$(nproc)" --no-tests=error </dev/null
   done_legs+=(asan)

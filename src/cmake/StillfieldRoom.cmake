@@ -16,10 +16,12 @@ function(stillfield_room NAME)
 endfunction()
 
 # stillfield_test(NAME SOURCES ... ROOMS ... [LIBRARIES ...] [LABELS ...])
-# One Catch2 executable a room; every TEST_CASE is a ctest entry.
+# One Catch2 executable a room; every TEST_CASE is a ctest entry. Catch2 is one large header, which
+# every test file would read anew: it is precompiled. Target unit_tests builds those labelled unit.
 function(stillfield_test NAME)
   cmake_parse_arguments(TEST "" "" "SOURCES;ROOMS;LIBRARIES;LABELS" ${ARGN})
   add_executable(test_${NAME} ${TEST_SOURCES})
+  target_precompile_headers(test_${NAME} PRIVATE <catch2/catch.hpp>)
   target_include_directories(test_${NAME} PRIVATE ${PROJECT_SOURCE_DIR}/tests)
   target_compile_definitions(test_${NAME} PRIVATE STILLFIELD_SOURCE_DIR="${PROJECT_SOURCE_DIR}")
   foreach(OTHER IN LISTS TEST_ROOMS)
@@ -28,6 +30,9 @@ function(stillfield_test NAME)
   target_link_libraries(test_${NAME} PRIVATE ${TEST_LIBRARIES} Catch2::Catch2WithMain stillfield_warnings)
   if(NOT TEST_LABELS)
     set(TEST_LABELS unit)
+  endif()
+  if(unit IN_LIST TEST_LABELS)
+    add_dependencies(unit_tests test_${NAME})
   endif()
   catch_discover_tests(test_${NAME} TEST_PREFIX "${NAME}: " EXTRA_ARGS --rng-seed 20261201
                        PROPERTIES LABELS "${TEST_LABELS}")
