@@ -34,8 +34,7 @@ class UnevenLight {
 
   // The image divided by the light known so far; itself when none is modelled.
   const GreyLevels& even_grey() const { return modelled() ? even_grey_ : *grey_; }
-  // NaN where missing; empty when none is modelled.
-  const Volume<float>& even_pixels() const { return even_pixels_; }
+  View<const float> even_pixels() const { return modelled() ? even_pixels_.view() : pixels_; }
   // The light known so far; empty when none is modelled.
   const Volume<float>& surface() const { return surface_; }
 

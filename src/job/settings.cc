@@ -69,6 +69,7 @@ std::vector<NamedValue> named_settings(const SegmentSettings& settings) {
     list.push_back({"mask", settings.mask.generic_string()});
     list.push_back({"mask_sha256", settings.mask_sha256});
   }
+  name_light_files(settings.light, list);
   return list;
 }
 

@@ -10,6 +10,7 @@
 
 #include "diagnose/verdict.h"
 #include "image/read.h"
+#include "job/light_files.h"
 #include "measure/particles.h"
 #include "model/neighbourhood.h"
 #include "report/named_value.h"
@@ -52,6 +53,7 @@ struct SegmentSettings {
   std::optional<double> pixel_size_um;  // > 0; overrides that of the file
   std::filesystem::path mask;           // file, or folder of files named as the images; 0 = outside
   std::string mask_sha256;              // of all that `mask` holds (job/mask.h)
+  LightFiles light;
 };
 
 // Settings that do not.

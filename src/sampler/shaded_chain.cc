@@ -7,6 +7,7 @@
 #include "model/gaussian_draw.h"
 #include "sampler/row_pairs.h"
 #include "sampler/weight_layout.h"
+#include "simd/exponentials.h"
 
 namespace stillfield {
 namespace {
@@ -14,38 +15,66 @@ namespace {
 constexpr double kMaxLogRatio = 69.07755278982137;  // ln 1e30, as in model/weight_table.cc
 constexpr double kSmallestWeight = 1e-37;
 
-// log e^{alpha_k} f_k of one pixel: constant - precision (y - g mean)^2.
-struct ClassTerms {
-  explicit ClassTerms(const LabelModel& model)
-      : alpha(model.prior.alpha), mean(model.classes.mean), log_weight(mean.size()) {
-    for (std::size_t k = 0; k < mean.size(); ++k) {
-      const double sd = model.classes.sd[k];
-      constant.push_back(alpha[k] - exact_log(sd));
-      precision.push_back(0.5 / (sd * sd));
+// Log weights of one row of pixels, class by class, and their exponentials.
+class RowWeights {
+ public:
+  RowWeights(const LabelModel& model, std::ptrdiff_t pixels)
+      : model_(&model),
+        pixels_(round_up(static_cast<std::size_t>(pixels), std::size_t{kExponentialsBatch})),
+        log_weight_(pixels_ * model.classes.mean.size()),
+        top_(pixels_) {}
+
+  // log e^{alpha_k} f_k(y) of every pixel; of those where nothing is observed alpha_k.
+  template <class Observed, class Value, class Light>
+  void fill(std::ptrdiff_t pixels, const Observed& observed, const Value& value,
+            const Light& light) {
+    for (std::size_t k = 0; k < model_->classes.mean.size(); ++k) {
+      const double alpha = model_->prior.alpha[k];
+      const double mean = model_->classes.mean[k], sd = model_->classes.sd[k];
+      const double constant = alpha - exact_log(sd), precision = 0.5 / (sd * sd);
+      double* out = log_weight_.data() + k * pixels_;
+      for (std::ptrdiff_t j = 0; j < pixels; ++j) {
+        const double d = observed(j) ? value(j) - light(j) * mean : 0.0;
+        out[j] = observed(j) ? constant - precision * d * d : alpha;
+      }
     }
   }
-  void observe(double y, double g) {
-    for (std::size_t k = 0; k < mean.size(); ++k) {
-      const double d = y - g * mean[k];
-      log_weight[k] = constant[k] - precision[k] * d * d;
-    }
-  }
-  void observe_nothing() { log_weight = alpha; }
-  // Weights at out[k * stride], as model/weight_table.h.
-  void store(float* out, std::ptrdiff_t stride) const {
-    if (mean.size() == 2) {
-      const double ratio = log_weight[0] - log_weight[1];
-      *out = static_cast<float>(exact_exp(std::clamp(ratio, -kMaxLogRatio, kMaxLogRatio)));
+
+  // Weights as in model/weight_table.h, planes `stride` apart.
+  void store(std::ptrdiff_t pixels, float* out, std::ptrdiff_t stride) {
+    double* first = log_weight_.data();
+    const int n = static_cast<int>(pixels);
+    if (model_->size() == 2) {
+      for (std::ptrdiff_t j = 0; j < pixels; ++j) {
+        first[j] = std::clamp(first[j] - first[pixels_ + static_cast<std::size_t>(j)],
+                              -kMaxLogRatio, kMaxLogRatio);
+      }
+      exponentials(first, n);
+      for (std::ptrdiff_t j = 0; j < pixels; ++j) out[j] = static_cast<float>(first[j]);
       return;
     }
-    const double top = *std::max_element(log_weight.begin(), log_weight.end());
-    for (std::size_t k = 0; k < mean.size(); ++k) {
-      const double weight = exact_exp(log_weight[k] - top);
-      out[static_cast<std::ptrdiff_t>(k) * stride] =
-          weight < kSmallestWeight ? 0.0F : static_cast<float>(weight);
+    std::copy_n(first, pixels, top_.begin());
+    for (std::size_t k = 1; k < model_->classes.mean.size(); ++k) {
+      const double* w = first + k * pixels_;
+      for (std::size_t j = 0; j < static_cast<std::size_t>(pixels); ++j) {
+        top_[j] = std::max(top_[j], w[j]);
+      }
+    }
+    for (std::size_t k = 0; k < model_->classes.mean.size(); ++k) {
+      double* w = first + k * pixels_;
+      float* plane = out + static_cast<std::ptrdiff_t>(k) * stride;
+      for (std::size_t j = 0; j < static_cast<std::size_t>(pixels); ++j) w[j] -= top_[j];
+      exponentials(w, n);
+      for (std::ptrdiff_t j = 0; j < pixels; ++j) {
+        plane[j] = w[j] < kSmallestWeight ? 0.0F : static_cast<float>(w[j]);
+      }
     }
   }
-  std::vector<double> alpha, mean, constant, precision, log_weight;
+
+ private:
+  const LabelModel* model_;
+  std::size_t pixels_;
+  std::vector<double> log_weight_, top_;
 };
 
 int grain(const Extent& e) {
@@ -68,21 +97,18 @@ void prepare_shaded_weights(const ObservedField& field, const Shading& shading,
   make_room_for_weights(c, weights);
   for (int colour = 0; colour < c.colours(); ++colour) {
     for_row_pairs(c, colour, pool, [&](int slice, int first_row, int rows) {
-      ClassTerms terms(chain.model);
+      const std::ptrdiff_t pixels = c.plane_stride();  // to the end of the padding
+      RowWeights row_weights(chain.model, pixels);
       for (int row = first_row; row < first_row + rows; ++row) {
         const SurfaceRow light(shading.basis, chain.light, c.y_of(colour, row));
         const std::uint16_t* level = field.level.data() + c.plane_row(colour, slice, row);
         float* out = weights.value.data() + weight_row(c, planes, colour, slice, row);
         const int first = c.first_x(colour, slice, row);
-        const int sites = c.sites(colour, slice, row);
-        for (int j = 0; j < c.plane_stride(); ++j) {  // to the end of the padding
-          if (j >= sites || level[j] == grey.missing()) {
-            terms.observe_nothing();
-          } else {
-            terms.observe(grey.value(level[j]), light.at(first + 2 * j));
-          }
-          terms.store(out + j, weight_plane(c));
-        }
+        row_weights.fill(
+            pixels, [&](std::ptrdiff_t j) { return level[j] != grey.missing(); },
+            [&](std::ptrdiff_t j) { return grey.value(level[j]); },
+            [&](std::ptrdiff_t j) { return light.at(first + 2 * static_cast<int>(j)); });
+        row_weights.store(pixels, out, weight_plane(c));
         if (planes == 1) correct_border(c, chain.model.prior.beta, colour, slice, row, out);
       }
     });
