@@ -1,6 +1,7 @@
 #include "model/surface_start.h"
 
 #include <algorithm>
+#include <array>
 #include <cmath>
 #include <limits>
 
@@ -13,7 +14,9 @@ namespace {
 constexpr int kCoarse = 128;
 constexpr int kSmallSide = 32;  // images up to here are taken pixel by pixel
 constexpr int kTiles = 8;
-constexpr int kIterations = 25;
+constexpr int kIterations = 40;
+constexpr std::array<int, 3> kRamps{1, 10, 25};  // rounds until the coupling is reached
+constexpr double kCoupling = 1.2;                // of neighbouring blocks
 constexpr int kBins = 512;
 constexpr double kTileNoise = 0.05;  // of the light that tiles show, relative
 
@@ -116,8 +119,9 @@ std::vector<double> through_tiles(const Coarse& coarse, const SurfacePrior& prio
 
 struct Fit {
   std::vector<double> surface;
-  std::vector<double> mean, share;
+  std::vector<double> mean;
   double variance = 1.0;
+  std::vector<Volume<double>> belonging;  // of each class: probability of each block
   double score = -std::numeric_limits<double>::infinity();
 };
 
@@ -144,8 +148,12 @@ Fit open_fit(const Coarse& coarse, std::vector<double> surface, int classes) {
     histogram.weight.push_back(count[b]);
   }
   const Mixture mixture = fit_mixture(histogram, classes, true);
-  return {std::move(surface), mixture.classes.mean, mixture.proportion,
-          mixture.classes.sd.front() * mixture.classes.sd.front()};
+  Fit fit{std::move(surface),
+          mixture.classes.mean,
+          mixture.classes.sd.front() * mixture.classes.sd.front(),
+          {}};
+  for (int k = 0; k < classes; ++k) fit.belonging.emplace_back(coarse.value.extent());
+  return fit;
 }
 
 double penalty(const std::vector<double>& surface, const SurfaceBasis& basis,
@@ -161,51 +169,75 @@ double penalty(const std::vector<double>& surface, const SurfaceBasis& basis,
   return 0.5 * sum;
 }
 
-// One round of expectation and maximisation; the score is that of the fit it began with.
-void improve(const Coarse& coarse, const SurfacePrior& prior, Fit& fit) {
+// Sum over the four neighbours' probabilities of class k.
+double around(const Volume<double>& belonging, int x, int y) {
+  double sum = 0.0;
+  if (x > 0) sum += belonging.at(x - 1, y);
+  if (x + 1 < belonging.width()) sum += belonging.at(x + 1, y);
+  if (y > 0) sum += belonging.at(x, y - 1);
+  if (y + 1 < belonging.height()) sum += belonging.at(x, y + 1);
+  return sum;
+}
+
+// Probabilities of all blocks, one after the other; the score is the pseudo-likelihood given the
+// neighbours' probabilities.
+void expect(const Coarse& coarse, const SurfacePrior& prior, double coupling, Fit& fit) {
   const std::size_t classes = fit.mean.size();
-  std::vector<double> n(classes), gv(classes), gg(classes), r(classes);
-  double squares = 0.0, score = -penalty(fit.surface, coarse.basis, prior), all = 0.0;
+  std::vector<double> r(classes);
+  fit.score = -penalty(fit.surface, coarse.basis, prior);
+  for_blocks(coarse, fit.surface, [&](int x, int y, double v, double g) {
+    double top = -std::numeric_limits<double>::infinity(), total = 0.0, weights = 0.0;
+    for (std::size_t k = 0; k < classes; ++k) {
+      const double d = v - g * fit.mean[k];
+      const double tie = coupling * around(fit.belonging[k], x, y);
+      weights += exact_exp(tie);
+      r[k] = tie - 0.5 * d * d / fit.variance;
+      top = std::max(top, r[k]);
+    }
+    for (double& p : r) total += p = exact_exp(p - top);
+    fit.score += top + exact_log(total) - exact_log(weights) - 0.5 * exact_log(fit.variance);
+    for (std::size_t k = 0; k < classes; ++k) fit.belonging[k].at(x, y) = r[k] / total;
+  });
+}
+
+// Classes and surface given the probabilities.
+void maximise(const Coarse& coarse, const SurfacePrior& prior, Fit& fit) {
+  const std::size_t classes = fit.mean.size();
+  std::vector<double> n(classes), gv(classes), gg(classes);
+  for_blocks(coarse, fit.surface, [&](int x, int y, double v, double g) {
+    for (std::size_t k = 0; k < classes; ++k) {
+      const double p = fit.belonging[k].at(x, y);
+      n[k] += p;
+      gv[k] += p * g * v;
+      gg[k] += p * g * g;
+    }
+  });
+  double all = 0.0, squares = 0.0;
+  for (std::size_t k = 0; k < classes; ++k) {
+    if (gg[k] > 0.0) fit.mean[k] = gv[k] / gg[k];
+    all += n[k];
+  }
   const int width = coarse.value.width();
   SurfaceSums sums(coarse.basis, coarse.value.height());
   std::vector<double> weight(static_cast<std::size_t>(width)), value(weight.size());
   for (int y = 0; y < coarse.value.height(); ++y) {
     const SurfaceRow light(coarse.basis, fit.surface, y);
-    std::fill(weight.begin(), weight.end(), 0.0);
     for (int x = 0; x < width; ++x) {
       const double v = coarse.value.at(x, y);
-      if (std::isnan(v)) continue;
-      const double g = light.at(x);
-      double top = -std::numeric_limits<double>::infinity(), total = 0.0;
-      for (std::size_t k = 0; k < classes; ++k) {
-        const double d = v - g * fit.mean[k];
-        r[k] = exact_log(std::max(fit.share[k], 1e-12)) - 0.5 * d * d / fit.variance;
-        top = std::max(top, r[k]);
-      }
-      for (double& p : r) total += p = exact_exp(p - top);
-      score += top + exact_log(total) - 0.5 * exact_log(fit.variance);
       const auto i = static_cast<std::size_t>(x);
-      value[i] = 0.0;
+      weight[i] = value[i] = 0.0;
+      if (std::isnan(v)) continue;
       for (std::size_t k = 0; k < classes; ++k) {
-        const double p = r[k] / total;
-        const double d = v - g * fit.mean[k];
-        n[k] += p;
-        gv[k] += p * g * v;
-        gg[k] += p * g * g;
+        const double p = fit.belonging[k].at(x, y);
+        const double d = v - light.at(x) * fit.mean[k];
         squares += p * d * d;
         weight[i] += p * fit.mean[k] * fit.mean[k] / fit.variance;
         value[i] += p * fit.mean[k] * v / fit.variance;
       }
-      all += 1.0;
     }
     sums.set_row(y, weight.data(), value.data());
   }
-  fit.score = score;
   fit.surface = SurfaceConditional(sums, prior).mean();
-  for (std::size_t k = 0; k < classes; ++k) {
-    if (gg[k] > 0.0) fit.mean[k] = gv[k] / gg[k];
-    fit.share[k] = n[k] / all;
-  }
   fit.variance = std::max(squares / all, fit.variance * 1e-3);
 }
 
@@ -227,10 +259,16 @@ SurfaceStart start_surface(const GreyLevels& grey, const SurfaceBasis& basis,
     return sum / static_cast<double>(sorted.size());
   }));
   Fit best;
-  for (std::vector<double>& start : starts) {
-    Fit fit = open_fit(coarse, std::move(start), classes);
-    for (int i = 0; i < kIterations; ++i) improve(coarse, prior, fit);
-    if (fit.score > best.score || best.surface.empty()) best = std::move(fit);
+  for (const std::vector<double>& start : starts) {
+    for (const int ramp : kRamps) {
+      Fit fit = open_fit(coarse, start, classes);
+      for (int i = 0; i < kIterations; ++i) {
+        expect(coarse, prior, kCoupling * std::min(1.0, static_cast<double>(i) / ramp), fit);
+        maximise(coarse, prior, fit);
+      }
+      expect(coarse, prior, kCoupling, fit);
+      if (fit.score > best.score || best.surface.empty()) best = std::move(fit);
+    }
   }
   double low = std::numeric_limits<double>::infinity(), high = -low;
   for_blocks(coarse, best.surface, [&](int, int, double, double g) {
