@@ -2,7 +2,6 @@
 
 #include <algorithm>
 #include <cmath>
-#include <limits>
 #include <utility>
 
 #include "core/error.h"
@@ -11,7 +10,7 @@
 #include "job/every_chain.h"
 #include "job/label_draws.h"
 #include "job/short_run.h"
-#include "measure/bootstrap_interval.h"
+#include "measure/bootstrap_shares.h"
 #include "measure/label_cleaning.h"
 #include "measure/one_particle.h"
 #include "model/label_scene.h"
@@ -22,10 +21,6 @@ namespace {
 constexpr std::uint32_t kFirstKey = 0x1000;  // chain numbers of the short runs
 constexpr int kDrawsAChain = 8;              // for the posterior scatter of cleaned draws
 constexpr int kLargeReplicates = 8;
-// Share of a correction that is its own standard uncertainty, squared: docs/trust.md has the table
-// that decided.
-constexpr double kFractionBiasShare = 0.5;
-constexpr double kShapeBiasShare = 1.0;
 
 using Labels = Volume<std::uint8_t>;
 using Values = std::vector<double>;
@@ -55,18 +50,6 @@ ShortRunSettings short_run_settings(const SegmentSettings& settings, std::int64_
     run.counted = 60;
   }
   return run;
-}
-
-Volume<float> grey_values(const GreyLevels& grey) {
-  Volume<float> plane(grey.level.extent());
-  for (int y = 0; y < plane.height(); ++y) {
-    for (int x = 0; x < plane.width(); ++x) {
-      const std::uint16_t level = grey.level.at(x, y);
-      plane.at(x, y) = level == grey.missing() ? std::numeric_limits<float>::quiet_NaN()
-                                               : static_cast<float>(grey.value(level));
-    }
-  }
-  return plane;
 }
 
 // Everything the replicates share.
@@ -158,22 +141,18 @@ double variance_over(const std::vector<Values>& draws, std::size_t key) {
   return finite.size() < 2 ? 0.0 : variance_of(finite);
 }
 
-bool correct(const CorrectedValue& value, Measurement& m) {
-  if (!std::isfinite(value.estimate)) return false;
-  m.estimate = value.estimate;
-  m.sd = value.sd;
-  m.lower90 = value.lower90;
-  m.upper90 = value.upper90;
-  m.lower95 = value.lower95;
-  m.upper95 = value.upper95;
-  return true;
+template <class Measurements>
+auto find(const MeasureKey& key, Measurements& measurements) -> decltype(measurements.data()) {
+  for (auto& m : measurements) {
+    if (m.name == key.name && m.label == key.label) return &m;
+  }
+  return nullptr;
 }
 
 }  // namespace
 
-BootstrapFacts bootstrap_measurements(const BootstrapInput& input, const Pool& pool,
-                                      JobObserver& observer, LabelSampling& sampling,
-                                      std::vector<Measurement>& measurements) {
+Bootstrap run_bootstrap(const BootstrapInput& input, const Pool& pool, JobObserver& observer,
+                        const std::vector<Measurement>& plain, LabelSampling& sampling) {
   const Extent extent = input.grey.level.extent();
   Setting setting{input,
                   measure_keys(input.measure),
@@ -219,28 +198,33 @@ BootstrapFacts bootstrap_measurements(const BootstrapInput& input, const Pool& p
   const Values value = setting.statistic(base, input.pixels);
   const Values floor = one_particle_variances(setting.cleaned(base.labels.view()).view(),
                                               input.usable, input.measure);
-  BootstrapFacts facts{2 * each, 0, setting.blur};
-  for (Measurement& m : measurements) {
-    const auto key =
-        std::find_if(setting.keys.begin(), setting.keys.end(),
-                     [&](const MeasureKey& k) { return k.name == m.name && k.label == m.label; });
-    if (key == setting.keys.end() || !std::isfinite(m.estimate)) continue;
-    const auto i = static_cast<std::size_t>(key - setting.keys.begin());
-    const bool fraction = m.name == "area_fraction";
-    BootstrapErrors bootstrap;
-    bootstrap.value = value[i];
+  Bootstrap result{{2 * each, 0, setting.blur}, setting.keys, {}};
+  for (std::size_t i = 0; i < setting.keys.size(); ++i) {
+    const MeasureKey& key = setting.keys[i];
+    const bool fraction = key.name == "area_fraction";
+    BootstrapErrors& all = result.errors.emplace_back();
+    all.value = value[i];
     for (const std::vector<Values>& kind : errors) {
-      Values& list = bootstrap.errors.emplace_back();
+      Values& list = all.errors.emplace_back();
       for (const Values& e : kind) list.push_back(e[i]);
     }
-    bootstrap.posterior_variance = fraction ? m.sd * m.sd : variance_over(draws.measured, i);
-    bootstrap.bias_share = fraction ? kFractionBiasShare : kShapeBiasShare;
-    bootstrap.floor_variance = floor[i];
-    if (m.name != "mean_intensity") bootstrap.lowest = 0;
-    if (fraction) bootstrap.highest = 1;
-    facts.corrected += correct(correct_value(bootstrap), m) ? 1 : 0;
+    const Measurement* of_draws = find(key, plain);
+    all.posterior_variance = fraction && of_draws != nullptr ? of_draws->sd * of_draws->sd
+                                                             : variance_over(draws.measured, i);
+    all.floor_variance = floor[i];
+    if (key.name != "mean_intensity") all.lowest = 0;
+    if (fraction) all.highest = 1;
   }
-  return facts;
+  return result;
+}
+
+void correct_measurements(Bootstrap& bootstrap, std::vector<Measurement>& measurements) {
+  for (std::size_t i = 0; i < bootstrap.keys.size(); ++i) {
+    Measurement* m = find(bootstrap.keys[i], measurements);
+    if (m == nullptr || !std::isfinite(m->estimate)) continue;
+    const BootstrapShares shares = bootstrap_shares(m->name);
+    bootstrap.facts.corrected += correct_measurement(bootstrap.errors[i], shares, *m) ? 1 : 0;
+  }
 }
 
 }  // namespace stillfield

@@ -26,6 +26,7 @@
 #include "job/label_sampling.h"
 #include "job/observer.h"
 #include "job/settings.h"
+#include "measure/bootstrap_interval.h"
 #include "measure/label_measures.h"
 #include "measure/measurement.h"
 #include "parallel/pool.h"
@@ -44,12 +45,20 @@ struct BootstrapInput {
   std::uint64_t image_seed = 0;
 };
 
-// Corrects estimate, sd and bounds of `measurements` that measure_labels knows, by name and class;
-// plain_estimate keeps what the estimate was. The chains stand further on afterwards. Throws
+struct Bootstrap {
+  BootstrapFacts facts;
+  std::vector<MeasureKey> keys;
+  std::vector<BootstrapErrors> errors;  // one a key
+};
+
+// `plain`: the measurements of the draws. The chains stand further on afterwards. Throws
 // Error(kInterrupt) when the observer asks to stop.
-BootstrapFacts bootstrap_measurements(const BootstrapInput& input, const Pool& pool,
-                                      JobObserver& observer, LabelSampling& sampling,
-                                      std::vector<Measurement>& measurements);
+Bootstrap run_bootstrap(const BootstrapInput& input, const Pool& pool, JobObserver& observer,
+                        const std::vector<Measurement>& plain, LabelSampling& sampling);
+
+// Corrects estimate, sd and bounds of those that the bootstrap knows, by name and class;
+// plain_estimate keeps what the estimate was. Counts them in the facts.
+void correct_measurements(Bootstrap& bootstrap, std::vector<Measurement>& measurements);
 
 }  // namespace stillfield
 

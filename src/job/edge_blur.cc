@@ -15,18 +15,6 @@ constexpr std::uint32_t kFirstKey = 0x2000;  // chain numbers of the simulations
 constexpr int kSettling = 40;
 constexpr int kCounted = 60;
 
-Volume<float> grey_values(const GreyLevels& grey) {
-  Volume<float> plane(grey.level.extent());
-  for (int y = 0; y < plane.height(); ++y) {
-    for (int x = 0; x < plane.width(); ++x) {
-      const std::uint16_t level = grey.level.at(x, y);
-      plane.at(x, y) = level == grey.missing() ? std::numeric_limits<float>::quiet_NaN()
-                                               : static_cast<float>(grey.value(level));
-    }
-  }
-  return plane;
-}
-
 struct Window {
   GreyLevels grey;
   Volume<std::uint8_t> labels;

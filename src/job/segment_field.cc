@@ -134,10 +134,11 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& asked, const R
   });
   describe_measured(measured.measurements(), input.complete(), record);
   if (settings.replicates > 0) {
-    record.bootstrap =
-        bootstrap_measurements({light.even_grey(), light.even_pixels(), input.usable.view(),
-                                input.measure, settings, input.seed},
-                               pool, observer, sampling, record.measurements);
+    Bootstrap bootstrap = run_bootstrap({light.even_grey(), light.even_pixels(),
+                                         input.usable.view(), input.measure, settings, input.seed},
+                                        pool, observer, record.measurements, sampling);
+    correct_measurements(bootstrap, record.measurements);
+    record.bootstrap = bootstrap.facts;
   }
   record.run.sample_seconds = watch.lap();
 

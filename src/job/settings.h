@@ -48,7 +48,7 @@ struct SegmentSettings {
   std::uint64_t seed = 1;
   ScheduleSettings schedule;
   ConvergenceTarget target;
-  int replicates = 12;  // of the bootstrap (job/bootstrap.h): even, from 6; 0: none
+  int replicates = 20;  // of the bootstrap (job/bootstrap.h): even, from 6; 0: none
   ParticleSettings particles;
   std::optional<double> pixel_size_um;  // > 0; overrides that of the file
   std::filesystem::path mask;           // file, or folder of files named as the images; 0 = outside

@@ -19,41 +19,46 @@ std::vector<double> finite(const std::vector<double>& values) {
 
 }  // namespace
 
-CorrectedValue correct_value(const BootstrapErrors& bootstrap) {
-  CorrectedValue result;
-  if (!std::isfinite(bootstrap.value) || bootstrap.errors.empty()) return result;
-  std::vector<double> bias;
-  double within = 0;
-  std::size_t n = 0;
+BootstrapParts bootstrap_parts(const BootstrapErrors& bootstrap) {
+  BootstrapParts parts;
+  if (!std::isfinite(bootstrap.value)) return parts;
   for (const std::vector<double>& kind : bootstrap.errors) {
     const std::vector<double> errors = finite(kind);
-    if (errors.size() < 2) return result;
-    bias.push_back(mean_of(errors));
-    within += variance_of(errors);
-    n += errors.size();
+    if (errors.size() < 2) return {};
+    parts.bias.push_back(mean_of(errors));
+    parts.within.push_back(variance_of(errors));
+    parts.number += static_cast<double>(errors.size());
   }
-  const auto kinds = static_cast<double>(bias.size());
-  const double b = mean_of(bias);
+  return parts;
+}
+
+bool correct_measurement(const BootstrapErrors& bootstrap, const BootstrapShares& shares,
+                         Measurement& m) {
+  const BootstrapParts parts = bootstrap_parts(bootstrap);
+  if (parts.bias.empty()) return false;
+  const double b = mean_of(parts.bias);
   double between = 0;
-  for (const double g : bias) between += (g - b) * (g - b);
-  const double v = (within + between) / kinds;
+  for (const double g : parts.bias) between += (g - b) * (g - b);
+  between /= static_cast<double>(parts.bias.size());
   const double p = std::isfinite(bootstrap.posterior_variance) ? bootstrap.posterior_variance : 0.0;
-  const double u = std::sqrt((1.0 + 1.0 / static_cast<double>(n)) * v + p +
-                             bootstrap.bias_share * b * b + bootstrap.floor_variance);
-  const auto dof = static_cast<std::int64_t>(n - bias.size());
+  const double u = std::sqrt(shares.within * (1.0 + 1.0 / parts.number) * mean_of(parts.within) +
+                             shares.between * between + shares.bias * b * b + shares.posterior * p +
+                             shares.floor * bootstrap.floor_variance);
+  const auto dof =
+      static_cast<std::int64_t>(parts.number) - static_cast<std::int64_t>(parts.bias.size());
   const auto within_range = [&](double value) {
     return std::clamp(value, bootstrap.lowest, bootstrap.highest);
   };
-  const double centre = bootstrap.value - b;
+  const double centre = bootstrap.value - shares.correction * b;
   const double half90 = student_t_quantile(0.95, dof) * u;
   const double half95 = student_t_quantile(0.975, dof) * u;
-  result.estimate = within_range(centre);
-  result.sd = u;
-  result.lower90 = within_range(centre - half90);
-  result.upper90 = within_range(centre + half90);
-  result.lower95 = within_range(centre - half95);
-  result.upper95 = within_range(centre + half95);
-  return result;
+  m.estimate = within_range(centre);
+  m.sd = u;
+  m.lower90 = within_range(centre - half90);
+  m.upper90 = within_range(centre + half90);
+  m.lower95 = within_range(centre - half95);
+  m.upper95 = within_range(centre + half95);
+  return true;
 }
 
 }  // namespace stillfield

@@ -121,4 +121,16 @@ GreyLevels make_grey_levels(View<const float> pixels) {
   return g;
 }
 
+Volume<float> grey_values(const GreyLevels& grey) {
+  Volume<float> plane(grey.level.extent());
+  for (int y = 0; y < plane.height(); ++y) {
+    for (int x = 0; x < plane.width(); ++x) {
+      const std::uint16_t level = grey.level.at(x, y);
+      plane.at(x, y) = level == grey.missing() ? std::numeric_limits<float>::quiet_NaN()
+                                               : static_cast<float>(grey.value(level));
+    }
+  }
+  return plane;
+}
+
 }  // namespace stillfield

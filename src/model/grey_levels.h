@@ -36,6 +36,9 @@ struct GreyLevels {
 // Throws Error(kInput) when every pixel is missing; the caller adds the file's name.
 GreyLevels make_grey_levels(View<const float> pixels);
 
+// The grey value of every pixel; NaN where it is missing.
+Volume<float> grey_values(const GreyLevels& grey);
+
 }  // namespace stillfield
 
 #endif  // STILLFIELD_MODEL_GREY_LEVELS_H_

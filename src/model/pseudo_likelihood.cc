@@ -4,18 +4,40 @@
 #include <algorithm>
 #include <cmath>
 
-#include "core/elementary.h"
+#include "simd/exponentials.h"
 
 namespace stillfield {
 namespace {
 
 constexpr double kPriorPrecision = 0.01;  // sd 10, for alpha_k around 0 and beta around 1
 constexpr double kMaxStep = 0.5;
+constexpr std::size_t kBatch = 256;  // pixels at a time
+static_assert(kBatch % kExponentialsBatch == 0);
 
 struct Score {
   Eigen::VectorXd gradient;  // alpha_2 .. alpha_K (alpha_1 = 0 fixes the scale), then beta
   Eigen::MatrixXd information;
 };
+
+// Weights of the pixels from `first` on, at most kBatch of them.
+void fill_weights(const NeighbourCounts& counts, const LabelPrior& prior, std::size_t first,
+                  std::vector<double>& weight) {
+  const auto width = static_cast<std::size_t>(counts.classes);
+  const std::size_t pixels = std::min(kBatch, counts.label.size() - first);
+  for (std::size_t i = 0; i < pixels; ++i) {
+    const float* n = counts.count.data() + (first + i) * width;
+    double top = -1e300;
+    for (std::size_t k = 0; k < width; ++k) {
+      const double v = prior.alpha[k] + prior.beta * static_cast<double>(n[k]);
+      weight[k * kBatch + i] = v;
+      top = std::max(top, v);
+    }
+    for (std::size_t k = 0; k < width; ++k) weight[k * kBatch + i] -= top;
+  }
+  for (std::size_t k = 0; k < width; ++k) {
+    exponentials(weight.data() + k * kBatch, static_cast<std::ptrdiff_t>(pixels));
+  }
+}
 
 Score score(const NeighbourCounts& counts, const LabelPrior& prior) {
   const int classes = counts.classes;
@@ -25,16 +47,13 @@ Score score(const NeighbourCounts& counts, const LabelPrior& prior) {
   Eigen::VectorXd gradient = Eigen::VectorXd::Zero(unknowns);
   Eigen::MatrixXd information = Eigen::MatrixXd::Zero(unknowns, unknowns);
   std::vector<double> p(width);
+  std::vector<double> weight(width * kBatch);  // e^{alpha_k + beta n_k - top}, [k * kBatch + pixel]
 
   for (std::size_t s = 0; s < counts.label.size(); ++s) {
     const float* n = counts.count.data() + s * width;
-    double top = -1e300;
-    for (std::size_t k = 0; k < width; ++k) {
-      p[k] = prior.alpha[k] + prior.beta * static_cast<double>(n[k]);
-      top = std::max(top, p[k]);
-    }
+    if (s % kBatch == 0) fill_weights(counts, prior, s, weight);
     double sum = 0.0;
-    for (double& v : p) sum += v = exact_exp(v - top);
+    for (std::size_t k = 0; k < width; ++k) sum += p[k] = weight[k * kBatch + s % kBatch];
     double mean_n = 0.0, mean_square = 0.0;
     for (std::size_t k = 0; k < width; ++k) {
       p[k] /= sum;

@@ -12,6 +12,9 @@ void sample_neighbours(const Colouring& c, const LabelChain& chain, int wanted, 
   const auto sites = static_cast<double>(c.extent().sites());
   // Every `stride`-th pixel of the colours' rows laid end to end.
   const double stride = std::max(1.0, sites / wanted);
+  const auto most = counts.label.size() + static_cast<std::size_t>(sites / stride) + 1;
+  counts.label.reserve(most);
+  counts.count.reserve(most * static_cast<std::size_t>(classes));
   double next = phase * stride;
   double begin = 0.0;  // running number of the current row's first pixel
   for (int colour = 0; colour < c.colours(); ++colour) {

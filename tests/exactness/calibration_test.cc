@@ -7,9 +7,8 @@
 //          slowly the chain moves: Geweke 2004 (joint distribution test) with independent
 //          replications, as in Gandy & Scott 2020; see also simulation-based calibration (Talts et
 //          al. 2018).
-// Prior    beta uniform on [0, max_coupling], means and variances as in model/gaussian_draw.h. Both
-//          classes are alike before the means are put in order, so the parameters of a class
-//          picked by chance follow the prior without order.
+// Prior    exactness/joint_draw.h. Both classes are alike before the means are put in order, so the
+//          parameters of a class picked by chance follow the prior without order.
 // Error    Kolmogorov-Smirnov distance at a false-alarm level of 1e-3, means at 4 standard errors
 #include <algorithm>
 #include <boost/math/distributions/gamma.hpp>
@@ -18,49 +17,17 @@
 #include <cmath>
 
 #include "exactness/batch_means.h"
+#include "exactness/joint_draw.h"
 #include "exactness/row_states.h"
-#include "exactness/strip.h"
-#include "exactness/test_field.h"
 #include "random/stream.h"
-#include "sampler/path_sampling.h"
 
 using namespace stillfield;
 using namespace stillfield::exactness;
 
 namespace {
 
-constexpr int kSide = 6;
 constexpr int kReplications = 4000;
 constexpr int kBlocks = 10;
-const GaussianPrior kPrior{100.0, 0.4, 25.0, 5.0};
-
-// ln Z of the 6 x 6 field by transfer matrices on a fine grid.
-LogPartition exact_log_partition(const Neighbourhood& neighbourhood) {
-  constexpr int kPoints = 400;
-  LogPartition result;
-  for (int i = 0; i <= kPoints; ++i) {
-    const double beta = max_coupling(neighbourhood, 2) * i / kPoints;
-    const StripSums sums = sum_strip(kSide, kSide, 2, beta);
-    result.beta.push_back(beta);
-    result.mean_pairs.push_back(sums.mean_pairs);
-    result.log_z.push_back(sums.log_z - kSide * kSide * std::log(2.0));
-  }
-  return result;
-}
-
-GaussianClasses draw_classes(RandomStream& random) {
-  GaussianClasses classes{{0.0, 0.0}, {0.0, 0.0}, false};
-  for (std::size_t k = 0; k < 2; ++k) {
-    const double variance = 0.5 * kPrior.nu * kPrior.variance / random.gamma(0.5 * kPrior.nu);
-    classes.sd[k] = std::sqrt(variance);
-    classes.mean[k] = kPrior.mean + std::sqrt(variance / kPrior.kappa) * random.normal();
-  }
-  if (classes.mean[0] > classes.mean[1]) {
-    std::swap(classes.mean[0], classes.mean[1]);
-    std::swap(classes.sd[0], classes.sd[1]);
-  }
-  return classes;
-}
 
 // Largest distance of the empirical distribution of values in [0, 1] from the uniform one, times
 // sqrt n.
@@ -82,39 +49,18 @@ struct Outcome {
 };
 
 Outcome replicate(const LogPartition& log_partition, std::uint64_t seed, double& beta_change) {
-  RandomStream random(chain_key(seed, 9), Purpose::kSimulation);
-  FieldSpec spec = empty_spec(kSide, kSide, 2, log_partition.max_beta() * random.uniform(), seed);
-  spec.model.classes = draw_classes(random);
-  const Labels truth = draw_row_states(plain_field(spec), [&random] { return random.uniform(); });
-  Volume<float> image({kSide, kSide});
-  for (int s = 0; s < kSide * kSide; ++s) {
-    const std::size_t k = truth[static_cast<std::size_t>(s)];
-    image.at(s % kSide, s / kSide) =
-        static_cast<float>(spec.model.classes.mean[k] + spec.model.classes.sd[k] * random.normal());
-  }
-  const GreyLevels grey = make_grey_levels(image.view());
-  spec.levels = grey.levels;
-  spec.origin = grey.origin;
-  spec.step = grey.step;
-  for (int s = 0; s < kSide * kSide; ++s) {
-    spec.level[static_cast<std::size_t>(s)] = grey.level.at(s % kSide, s / kSide);
-  }
-  TestField field(spec);
-  field.set_labels(truth);
+  const JointDraw joint = draw_jointly(log_partition, seed);
+  TestField field(joint.spec);
+  field.set_labels(joint.labels);
   LabelChain& chain = field.chain;
   const double beta_before = chain.model.prior.beta;
   for (int b = 0; b < kBlocks; ++b) {
-    field.prepare();
-    field.sweep(2);
-    const double pairs = field.pairs_now();
-    RandomStream parameters(chain.key, Purpose::kParameters, chain.sweeps_done);
-    draw_gaussian_classes(field.grey, chain.totals.classes, kPrior, parameters,
-                          chain.model.classes);
-    chain.model.prior.beta = draw_coupling(log_partition, pairs, parameters);
+    sweep_block(field);
+    draw_parameters(log_partition, field);
   }
   beta_change += std::fabs(chain.model.prior.beta - beta_before);
   return {chain.model, field.pairs_now(),
-          static_cast<double>(chain.totals.classes[1].sites) / (kSide * kSide)};
+          static_cast<double>(chain.totals.classes[1].sites) / (kJointSide * kJointSide)};
 }
 
 }  // namespace
@@ -137,8 +83,8 @@ TEST_CASE("labels, class parameters and coupling together keep their joint distr
   const Neighbourhood neighbourhood = make_neighbourhood(Connectivity::kFour);
   const LogPartition log_partition = exact_log_partition(neighbourhood);
   const double max_beta = log_partition.max_beta();
-  const boost::math::gamma_distribution<> precision(0.5 * kPrior.nu);
-  const boost::math::students_t mean_law(kPrior.nu);
+  const boost::math::gamma_distribution<> precision(0.5 * kJointPrior.nu);
+  const boost::math::students_t mean_law(kJointPrior.nu);
   std::vector<double> beta, sd, mean;
   BatchMeans pairs(1), ones(1);
   double beta_change = 0.0;
@@ -148,9 +94,10 @@ TEST_CASE("labels, class parameters and coupling together keep their joint distr
     const auto k = static_cast<std::size_t>(i % 2);
     beta.push_back(o.model.prior.beta / max_beta);
     sd.push_back(boost::math::cdf(
-        precision, 0.5 * kPrior.nu * kPrior.variance / (classes.sd[k] * classes.sd[k])));
-    mean.push_back(boost::math::cdf(
-        mean_law, (classes.mean[k] - kPrior.mean) / std::sqrt(kPrior.variance / kPrior.kappa)));
+        precision, 0.5 * kJointPrior.nu * kJointPrior.variance / (classes.sd[k] * classes.sd[k])));
+    mean.push_back(
+        boost::math::cdf(mean_law, (classes.mean[k] - kJointPrior.mean) /
+                                       std::sqrt(kJointPrior.variance / kJointPrior.kappa)));
     pairs.add(o.pairs);
     ones.add(o.ones);
   }

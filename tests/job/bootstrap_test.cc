@@ -65,8 +65,10 @@ Result analyse(const Volume<float>& image, int threads) {
                   [&](const LabelDraw& draw) { draws.record(draw); });
   Result result;
   result.before = result.after = draws.measurements();
-  result.facts = bootstrap_measurements({grey, image.view(), {}, measure, settings, 77}, pool,
-                                        observer, sampling, result.after);
+  Bootstrap bootstrap = run_bootstrap({grey, image.view(), {}, measure, settings, 77}, pool,
+                                      observer, result.before, sampling);
+  correct_measurements(bootstrap, result.after);
+  result.facts = bootstrap.facts;
   return result;
 }
 

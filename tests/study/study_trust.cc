@@ -1,12 +1,14 @@
 // Do the 90 % intervals cover on shapes that are not drawn from the model?
 //
 // usage: study_trust IMAGES [--cell FAMILY SIGMA BLUR] [--first N] [--threads N] [--quick]
-//                    [--replicates N]
+//                    [--replicates N] [--parts FILE]
 // 24 cells: disks, blobs, lines, polygons (study/shapes.h); noise of .4, .7 and 1.0 of the
 // contrast; with and without a blur of 1 px. Sides cycle over 96, 128, 192, 256. The truth is what
 // measure_labels gives of the true labels with the same settings. Prints Markdown: for each
 // cell and measurement coverage, bias and mean width before and after the bootstrap. An image whose
 // truth is NaN (no particle inside the frame) does not count. Results: docs/trust.md.
+// --parts appends what the bootstrap found, a line of CSV a measurement and image, for
+// study/bootstrap_shares.py.
 #include <array>
 #include <cmath>
 #include <cstdio>
@@ -36,6 +38,7 @@ struct Options {
   std::vector<int> families{0, 1, 2, 3};
   std::vector<double> sigmas{0.4, 0.7, 1.0};
   std::vector<double> blurs{0, 1};
+  std::FILE* parts = nullptr;
 };
 
 Options parse(int argc, char** argv) {
@@ -50,6 +53,8 @@ Options parse(int argc, char** argv) {
       o.sigmas = {std::atof(argv[i + 2])};
       o.blurs = {std::atof(argv[i + 3])};
       i += 3;
+    } else if (arg == "--parts" && i + 1 < argc) {
+      o.parts = std::fopen(argv[++i], "a");
     } else if (arg == "--quick") {
       o.settings.target = {1.05, 100, 0.02};
     } else if (i + 1 < argc) {
@@ -81,6 +86,19 @@ struct CellScores {
   double blur = 0;
 };
 
+void write_parts(std::FILE* file, const std::string& image, const MeasureKey& key, double truth,
+                 const Measurement& plain, const BootstrapErrors& errors) {
+  const BootstrapParts parts = bootstrap_parts(errors);
+  if (parts.bias.empty() || !std::isfinite(truth)) return;
+  std::fprintf(file, "%s,%s,%d,%.9g,%.9g,%.9g", image.c_str(), key.name.c_str(), key.label, truth,
+               plain.estimate, errors.value);
+  for (std::size_t g = 0; g < parts.bias.size(); ++g) {
+    std::fprintf(file, ",%.9g,%.9g", parts.bias[g], parts.within[g]);
+  }
+  std::fprintf(file, ",%.0f,%.9g,%.9g\n", parts.number, errors.posterior_variance,
+               errors.floor_variance);
+}
+
 void study_image(const Options& o, study::Family family, double sigma, double blur, int number,
                  const Pool& pool, CellScores& scores) {
   const int side = kSides[static_cast<std::size_t>(number) % kSides.size()];
@@ -102,10 +120,17 @@ void study_image(const Options& o, study::Family family, double sigma, double bl
                   [&](const LabelDraw& draw) { draws.record(draw); });
   const std::vector<Measurement> before = draws.measurements();
   std::vector<Measurement> after = before;
-  scores.blur += bootstrap_measurements({grey, image.view(), {}, measure, o.settings, seed}, pool,
-                                        observer, sampling, after)
-                     .blur;
+  Bootstrap bootstrap = run_bootstrap({grey, image.view(), {}, measure, o.settings, seed}, pool,
+                                      observer, before, sampling);
+  correct_measurements(bootstrap, after);
+  scores.blur += bootstrap.facts.blur;
+  const std::string name = std::string(study::kFamilyNames[static_cast<std::size_t>(family)]) +
+                           "," + std::to_string(sigma) + "," + std::to_string(blur) + "," +
+                           std::to_string(number);
   for (std::size_t i = 0; i < keys.size(); ++i) {
+    if (o.parts != nullptr) {
+      write_parts(o.parts, name, keys[i], truths[i], before[i], bootstrap.errors[i]);
+    }
     if (keys[i].label != 2) continue;
     for (std::size_t m = 0; m < kMeasured.size(); ++m) {
       if (keys[i].name != kMeasured[m]) continue;

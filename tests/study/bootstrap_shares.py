@@ -1,0 +1,132 @@
+#!/usr/bin/env python3
+"""Fits the shares of src/measure/bootstrap_shares.cc to images of known truth.
+
+usage: bootstrap_shares.py PARTS.csv [...]     (of study_trust ... --parts PARTS.csv)
+
+For each group of measurements the shares c, w, k, s, q, h of measure/bootstrap_interval.h are those
+that minimise, over cells of shapes, noise and blur that count alike,
+
+    mean log u  +  WEIGHT * mean over cells of (coverage - .9)^2
+
+with coverage of the 90 % interval smoothed by a logistic function so that it can be followed
+downhill. Prints the shares, the coverage of each cell, and the same for shares that were fitted to
+the other three families only: how far they carry over to shapes they have not seen.
+
+Needs python3-numpy and python3-scipy.
+"""
+
+import csv
+import sys
+from collections import defaultdict
+
+import numpy as np
+from scipy.optimize import minimize
+from scipy.stats import t as student
+
+GROUPS = {
+    "area_fraction": ["area_fraction"],
+    "interface_length": ["interface_length"],
+    "particle_count": ["particle_count"],
+    "sizes": ["mean_particle_area", "d10", "d50", "d90"],
+    "mean_intensity": ["mean_intensity"],
+}
+SHARES = ["correction", "within", "between", "bias", "posterior", "floor"]
+WEIGHT = 30.0
+SMOOTH = 0.15  # of u: width of the logistic function
+
+
+def read(files):
+    rows = []
+    for file in files:
+        with open(file, newline="") as text:
+            for r in csv.reader(text):
+                family, sigma, blur, number, name, label = r[:6]
+                if label != "2":
+                    continue
+                v = [float(x) for x in r[6:]]
+                truth, plain, value, b0, w0, b1, w1, n, posterior, floor = v
+                if not np.isfinite(posterior):
+                    posterior = 0.0
+                rows.append(((family, float(sigma), float(blur)), name, truth, value, b0, w0, b1, w1, n,
+                             posterior, floor))
+    return rows
+
+
+class Sample:
+    def __init__(self, rows):
+        self.cell = [r[0] for r in rows]
+        self.name = np.array([r[1] for r in rows])
+        a = np.array([r[2:] for r in rows], dtype=float)
+        truth, value, b0, w0, b1, w1, n, posterior, floor = a.T
+        self.bias = (b0 + b1) / 2
+        self.error = value - truth
+        self.parts = np.array([(1 + 1 / n) * (w0 + w1) / 2, ((b0 - b1) / 2) ** 2, self.bias**2,
+                               posterior, floor])
+        self.quantile = student.ppf(0.95, n - 2)
+        groups = defaultdict(list)
+        for i, r in enumerate(rows):
+            groups[(r[0], r[1])].append(i)
+        self.groups = {k: np.array(v) for k, v in groups.items()}
+
+    def half_width(self, shares):
+        u = np.sqrt(np.maximum(np.array(shares[1:]) @ self.parts, 1e-18))
+        return self.quantile * u
+
+    def remaining(self, shares):
+        return self.error - shares[0] * self.bias
+
+    def loss(self, shares):
+        half = self.half_width(shares)
+        e = np.abs(self.remaining(shares))
+        inside = 1 / (1 + np.exp(-np.clip((half - e) / (SMOOTH * half), -50, 50)))
+        total = 0.0
+        for rows in self.groups.values():
+            total += np.mean(np.log(half[rows])) + WEIGHT * (np.mean(inside[rows]) - 0.9) ** 2
+        return total / len(self.groups)
+
+    def coverage(self, shares):
+        inside = np.abs(self.remaining(shares)) <= self.half_width(shares)
+        return {k: (np.mean(inside[rows]), len(rows)) for k, rows in self.groups.items()}
+
+
+def fit(sample):
+    best = None
+    for start in range(3):
+        random = np.random.default_rng(start)
+        at = np.concatenate([[1.0], random.normal(-0.5, 1.0, 5)])
+        r = minimize(lambda th: sample.loss(np.concatenate([th[:1], np.exp(th[1:])])) + 0.001 * np.sum(th[1:] ** 2),
+                     at, method="Nelder-Mead",
+                     options={"maxfev": 4000, "maxiter": 4000, "adaptive": True, "xatol": 1e-3, "fatol": 1e-6})
+        if best is None or r.fun < best.fun:
+            best = r
+    return np.concatenate([best.x[:1], np.exp(best.x[1:])])
+
+
+def summary(coverage):
+    c = np.array([v[0] for v in coverage.values()])
+    return (f"mean {np.mean(c):.3f}, {np.sum((c >= 0.85) & (c <= 0.95))} of {len(c)} cells within .85-.95, "
+            f"{np.sum(c < 0.75)} below .75")
+
+
+def main():
+    rows = read(sys.argv[1:])
+    for group, names in GROUPS.items():
+        chosen = [r for r in rows if r[1] in names]
+        if not chosen:
+            continue
+        sample = Sample(chosen)
+        shares = fit(sample)
+        coverage = sample.coverage(shares)
+        print(f"\n{group}: " + ", ".join(f"{n} {s:.2f}" for n, s in zip(SHARES, shares)))
+        print("  all families:", summary(coverage))
+        for (cell, name), (c, n) in sorted(coverage.items()):
+            if name in ("area_fraction", "particle_count", "d50", "interface_length"):
+                print(f"    {cell[0]:9s} sigma {cell[1]:.1f} blur {cell[2]:.0f} {name:17s} {c:.2f} of {n}")
+        unseen = {}
+        for family in sorted({r[0][0] for r in chosen}):
+            others = fit(Sample([r for r in chosen if r[0][0] != family]))
+            unseen.update(Sample([r for r in chosen if r[0][0] == family]).coverage(others))
+        print("  unseen family:", summary(unseen))
+
+
+main()
