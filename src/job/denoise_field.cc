@@ -112,7 +112,8 @@ ImageRecord denoise(const FieldTask& task, const DenoiseSettings& settings, cons
                     const Pool& pool, JobObserver& observer, const PatchMixture* mixture) {
   ImageRecord record;
   Stopwatch watch;
-  const Field field = read_page(task.file, task.page, run.limits, ColourMode::kSeparate);
+  Field field = read_page(task.file, task.page, run.limits, ColourMode::kSeparate);
+  correct_light(settings.light, run.limits, field);
   const std::uint64_t seed =
       begin_record(task, field, kDenoise, named_settings(settings), settings.seed, record);
   const Volume<std::uint8_t> usable =

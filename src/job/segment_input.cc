@@ -33,6 +33,7 @@ SegmentInput read_segment_input(const FieldTask& task, const SegmentSettings& se
   SegmentInput input;
   Field field = read_page(task.file, task.page, limits);
   if (settings.pixel_size_um) use_pixel_size(*settings.pixel_size_um, field);
+  correct_light(settings.light, limits, field);
   input.seed = begin_record(task, field, kSegment, named_settings(settings), settings.seed, record);
   if (!settings.mask.empty()) {
     input.usable = read_mask(settings.mask, task, field.pixels.extent(), limits);

@@ -100,6 +100,17 @@ void describe(Archive& archive, BlurFacts& blur) {
 }
 
 template <class Archive>
+void describe(Archive& archive, ShadingFacts& shading) {
+  archive("coefficients_a_side", shading.coefficients);
+  archive("modelled", shading.modelled);
+  archive("first_span", shading.first_span);
+  archive("lowest", shading.lowest);
+  archive("highest", shading.highest);
+  archive("mean_sd", shading.mean_sd);
+  archive("largest_sd", shading.largest_sd);
+}
+
+template <class Archive>
 void describe(Archive& archive, ClassesTried& tried) {
   archive("classes", tried.classes);
   archive("score", tried.score);
@@ -203,6 +214,7 @@ void describe(Archive& archive, ImageRecord& record) {
     archive("class_choice", record.class_choice);
     archive("model", record.model);
     archive("blur", record.blur);
+    archive("shading", record.shading);
     archive("coupling_tried", record.coupling_tried);
     archive("schedule", record.schedule);
     archive("scalars", record.scalars);

@@ -18,6 +18,7 @@
 #include "report/blur_facts.h"
 #include "report/named_value.h"
 #include "report/restoration_facts.h"
+#include "report/shading_facts.h"
 
 namespace stillfield {
 
@@ -142,6 +143,7 @@ struct ImageRecord {
   ClassChoiceFacts class_choice;
   ModelFacts model;
   BlurFacts blur;
+  ShadingFacts shading;
   std::vector<CouplingTried> coupling_tried;
   ScheduleFacts schedule;
   std::vector<NamedSummary> scalars;

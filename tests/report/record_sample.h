@@ -47,6 +47,7 @@ inline ImageRecord record_sample(const std::string& path = "heat/a, \"b\".tif") 
   record.model = {
       1.25, kUnknown, kUnknown, kUnknown, {{1, 0, summary, summary}, {2, -0.3, summary, summary}}};
   record.blur = {0.8, 0.7, 0.9, true, true};
+  record.shading = {6, true, 0.25, 0.875, 1.125, 0.005, 0.02};
   record.coupling_tried = {{1.0, -100.5}, {1.25, -99.75}};
   record.schedule = {240, 96, 144, false, true};
   record.scalars = {{"area_fraction of class 1", summary}, {"equal_neighbours", {}}};
