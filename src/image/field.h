@@ -32,7 +32,7 @@ struct Field {
   SampleFormat format;
   int channels_in_file = 1;
   std::optional<double> pixel_size_um;  // side of a square pixel in micrometres
-  PixelSizeSource pixel_size_source = PixelSizeSource::kUnknown;
+  PixelSizeSource pixel_size_source = PixelSizeSource::kNotKnown;
   std::optional<OmePage> ome;      // what OME metadata say about the page
   std::vector<std::string> notes;  // what a reader of the results should know
 };

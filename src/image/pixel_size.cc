@@ -24,7 +24,7 @@ std::string short_number(double value) {
 PixelSize square_pixel_size(double x_um, double y_um, PixelSizeSource source) {
   if (std::fabs(x_um - y_um) <= kSquare * x_um) return {x_um, source, {}};
   return {{},
-          PixelSizeSource::kUnknown,
+          PixelSizeSource::kNotKnown,
           "pixels are not square (" + short_number(x_um) + " x " + short_number(y_um) +
               " um): lengths stay in pixels"};
 }
@@ -36,7 +36,7 @@ PixelSize pixel_size_from_resolution(double x, double y, double um_per_unit) {
   const double y_um = um_per_unit / y;
   if (is_screen_default(kUmPerInch / x_um) && is_screen_default(kUmPerInch / y_um)) {
     return {{},
-            PixelSizeSource::kUnknown,
+            PixelSizeSource::kNotKnown,
             "a resolution of " + short_number(std::round(kUmPerInch / x_um)) +
                 " pixels an inch is a screen's default and not taken for a pixel size"};
   }
@@ -51,7 +51,7 @@ std::string name_of(PixelSizeSource source) {
       return "OME metadata";
     case PixelSizeSource::kResolution:
       return "resolution tags";
-    case PixelSizeSource::kUnknown:
+    case PixelSizeSource::kNotKnown:
       break;
   }
   return {};

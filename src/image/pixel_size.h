@@ -18,11 +18,11 @@ inline constexpr double kUmPerInch = 25400;
 inline constexpr double kUmPerCentimetre = 1e4;
 inline constexpr double kUmPerMetre = 1e6;
 
-enum class PixelSizeSource { kUnknown, kOption, kOme, kResolution };
+enum class PixelSizeSource { kNotKnown, kOption, kOme, kResolution };
 
 struct PixelSize {
   std::optional<double> um;  // side of a square pixel in micrometres
-  PixelSizeSource source = PixelSizeSource::kUnknown;
+  PixelSizeSource source = PixelSizeSource::kNotKnown;
   std::string note;  // why there is none although the file says something; may be empty
 };
 

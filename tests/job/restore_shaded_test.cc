@@ -14,6 +14,7 @@
 
 using namespace stillfield;
 using namespace stillfield::study;
+using stillfield::testing::TempFolder;
 using Catch::Matchers::Contains;
 
 namespace {
