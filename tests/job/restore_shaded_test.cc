@@ -14,7 +14,7 @@
 
 using namespace stillfield;
 using namespace stillfield::study;
-using stillfield::testing::TempFolder;
+using stillfield::test::TempFolder;
 using Catch::Matchers::Contains;
 
 namespace {
