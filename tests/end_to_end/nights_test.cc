@@ -155,7 +155,7 @@ TEST_CASE("two whole runs in one folder: the second says so and does nothing") {
 TEST_CASE("a full disk: one sentence for the image, nothing of it written, the others done") {
   const TempFolder folder;
   save_scenes(folder / "in", 3);
-  save_png(folder / "in/b/large.png", draw_scene({220, 160, 2, 9}));
+  save_png(folder / "in/b/large.png", draw_scene({400, 320, 2, 9}));
   Arguments arguments = {"-c", "ulimit -f 120; exec \"$@\"", "sh", STILLFIELD_PROGRAM};
   const Arguments run = command(folder / "in", folder / "out");
   arguments.insert(arguments.end(), run.begin(), run.end());
