@@ -96,6 +96,8 @@ void add_run_options(CLI::App& app, CommonOptions& options) {
       ->capture_default_str();
   add_whole(app, "--max-pixels", options.run.limits.max_pixels, 1, std::uint64_t{1} << 34,
             "Refuse pages with more pixels");
+  add_whole(app, "--max-pages", options.run.limits.max_pages, 1, std::uint64_t{1} << 20,
+            "Refuse files with more pages");
   app.add_option("--memory", options.memory,
                  "Refuse images that need more than this, say 4GB or 500MB; otherwise all that is "
                  "free when the run begins")

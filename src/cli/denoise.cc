@@ -5,6 +5,7 @@
 #include <string>
 
 #include "cli/common_options.h"
+#include "cli/light_options.h"
 #include "cli/noise_option.h"
 #include "core/error.h"
 #include "image/digest.h"
@@ -40,6 +41,7 @@ struct DenoiseOptions : CommonOptions {
   std::string camera;
   std::string mask;
   std::string learn_from;
+  LightOptions light;
   std::string neighbours = "4";
   std::string correlation = "none";
   std::string saturation;
@@ -82,6 +84,12 @@ void complete_settings(DenoiseOptions& options) {
   }
   if (!options.saturation.empty()) settings.saturation = parse_number(options.saturation);
   settings.mask = options.mask;
+  settings.light = light_files(options.light);
+  if (settings.saturation && settings.light.any()) {
+    throw Error(ErrorKind::kUsage,
+                "--saturation (or that of --camera) and --flat-field or --background do not go "
+                "together: corrected grey values are cut off at no one value; leave one out");
+  }
   settings.learn_from = options.learn_from;
   settings.learn_from_sha256 = sha256_of_tree(settings.learn_from);
   settings.correlated_noise = options.correlation == "estimate";
@@ -126,6 +134,7 @@ void add_noise_options(CLI::App& app, DenoiseOptions& options) {
   add_text(app, "--mask", options.mask, "FILE|DIR",
            "Pixels to use (not 0) and to restore from their neighbours (0): one file for all "
            "images, or a folder of files named as the images");
+  add_light_options(app, options.light);
   add_choice(app, "--noise-correlation", options.correlation, {"none", "estimate"},
              "Noise of neighbouring pixels: independent, or a short-range covariance estimated");
 }

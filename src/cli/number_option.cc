@@ -6,6 +6,7 @@
 #include <utility>
 
 #include "model/blur.h"
+#include "model/spline_surface.h"
 
 namespace stillfield {
 namespace {
@@ -59,6 +60,14 @@ std::string check_blur(const std::string& text) {
   const auto value = parse_number(text);
   if (value && *value >= kSmallestBlur && *value <= kLargestBlur) return {};
   return "must be auto, none or a number of pixels from 0.2 to 3, not '" + text + "'";
+}
+
+std::string check_shading(const std::string& text) {
+  if (text == "none" || auto_or_whole(kLeastSurfaceSide, kMostSurfaceSide)(text).empty()) {
+    return {};
+  }
+  return "must be auto, none or a whole number from " + std::to_string(kLeastSurfaceSide) + " to " +
+         std::to_string(kMostSurfaceSide) + ", not '" + text + "'";
 }
 
 std::optional<double> parse_length_um(const std::string& text) {

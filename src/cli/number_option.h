@@ -30,6 +30,9 @@ std::string check_coupling(const std::string& text);
 // auto, none or a number of pixels from 0.2 to 3.
 std::string check_blur(const std::string& text);
 
+// auto, none or a whole number from 4 to 12.
+std::string check_shading(const std::string& text);
+
 // A length with its unit, 320nm, 0.32um (or with a micro sign) or 0.00032mm, in micrometres;
 // greater than 0.
 std::optional<double> parse_length_um(const std::string& text);

@@ -4,6 +4,8 @@
 #include <string>
 
 #include "cli/common_options.h"
+#include "cli/light_options.h"
+#include "core/error.h"
 
 namespace stillfield {
 namespace {
@@ -17,6 +19,7 @@ constexpr char kEpilogue[] =
     "  NAME.labels.tif       most probable class of each pixel, 1..K by rising grey value\n"
     "  NAME.probability.tif  probability of each class, one page a class\n"
     "  NAME.entropy.tif      doubt at each pixel, in bits\n"
+    "  NAME.shading.tif      the light, with --shading where it is modelled\n"
     "  NAME.labels.png       preview in colour\n"
     "  NAME.particles.csv    the particles of NAME.labels.tif, one by one\n"
     "  NAME.record.json      settings, diagnostics, measurements, digests\n"
@@ -39,6 +42,8 @@ struct SegmentOptions : CommonOptions {
   std::string particle_neighbours = "8";
   std::string pixel_size;
   std::string mask;
+  std::string shading = "none";
+  LightOptions light;
   bool quick = false;
   bool no_bootstrap = false;
   SegmentSettings settings;
@@ -56,6 +61,12 @@ BlurSettings blur_settings(const std::string& text) {
   return {BlurMode::kGiven, parse_number(text).value()};
 }
 
+ShadingSettings shading_settings(const std::string& text) {
+  if (text == "auto") return {ShadingMode::kAuto, 0};
+  if (text == "none") return {ShadingMode::kNone, 0};
+  return {ShadingMode::kGiven, static_cast<int>(parse_whole(text).value())};
+}
+
 int run_segment(SegmentOptions& options) {
   SegmentSettings& settings = options.settings;
   settings.classes = options.classes == "auto"
@@ -64,6 +75,13 @@ int run_segment(SegmentOptions& options) {
   settings.connectivity = options.neighbours == "8" ? Connectivity::kEight : Connectivity::kFour;
   settings.coupling = coupling_settings(options.coupling);
   settings.blur = blur_settings(options.blur);
+  settings.shading = shading_settings(options.shading);
+  settings.light = light_files(options.light);
+  if (settings.shading.mode != ShadingMode::kNone && settings.blur.mode != BlurMode::kNone) {
+    throw Error(ErrorKind::kUsage,
+                "--shading and --blur are not modelled together; leave one out, or take the light "
+                "off with --flat-field");
+  }
   settings.shared_variance = options.variance == "shared";
   settings.particles.connectivity = options.particle_neighbours == "4" ? 4 : 8;
   if (!options.pixel_size.empty()) settings.pixel_size_um = parse_length_um(options.pixel_size);
@@ -97,6 +115,13 @@ void add_model_options(CLI::App& app, SegmentOptions& options) {
       ->check(CLI::Validator(check_blur, "", ""))
       ->type_name("auto|none|PIXELS")
       ->capture_default_str();
+  app.add_option("--shading", options.shading,
+                 "Uneven light, as a smooth surface that is drawn with the labels: where it shows, "
+                 "left out, or with so many coefficients along a side")
+      ->check(CLI::Validator(check_shading, "", ""))
+      ->type_name("auto|none|4..12")
+      ->capture_default_str();
+  add_light_options(app, options.light);
 }
 
 void add_sampling_options(CLI::App& app, SegmentOptions& options) {

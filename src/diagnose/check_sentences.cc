@@ -37,7 +37,7 @@ std::string check_sentence(const ModelCheck& check) {
   }
   if (check.name == "slow_trend") {
     return "brightness drifts across the image within classes (" + percent_text(excess) +
-           " of the scatter): uneven light biases fractions and borders";
+           " of the scatter): uneven light biases fractions and borders; --shading auto models it";
   }
   if (check.name == "border_mixing") {
     return "borders are blurred: pixels along them hold " + percent_text(excess) +

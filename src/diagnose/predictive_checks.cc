@@ -32,8 +32,9 @@ struct Sums {
 }  // namespace
 
 PredictiveChecks::PredictiveChecks(const GreyLevels& grey, int chains, int draws_a_chain,
-                                   std::uint64_t image_seed)
+                                   std::uint64_t image_seed, const Volume<float>* light)
     : grey_(grey),
+      light_(light),
       stride_(std::max(1, chains * draws_a_chain / kCheckedDraws)),
       chains_(chains),
       kept_a_chain_((draws_a_chain + stride_ - 1) / stride_),
@@ -51,9 +52,9 @@ void PredictiveChecks::show(int chain, int draw, View<const std::uint8_t> labels
   for (const ResidualBlock& place : blocks_) {
     ResidualBlock block = place;
     mark_labels(labels, grey_, block);
-    observed_residuals(grey_, classes, block);
+    observed_residuals(grey_, classes, block, light_);
     image.add(block, classes);
-    replicated_residuals(grey_, classes, key, static_cast<std::uint32_t>(draw), block);
+    replicated_residuals(grey_, classes, key, static_cast<std::uint32_t>(draw), block, light_);
     replicate.add(block, classes);
   }
   const auto finish = [&](const Sums& sums) {

@@ -40,8 +40,10 @@ inline constexpr double kFewestCheckedPixels = 100;
 class PredictiveChecks {
  public:
   // Draws draws_a_chain draws of each chain will be shown; kCheckedDraws of them or somewhat
-  // more, evenly spaced, are looked at. `grey` must outlive this.
-  PredictiveChecks(const GreyLevels& grey, int chains, int draws_a_chain, std::uint64_t image_seed);
+  // more, evenly spaced, are looked at. `grey` and `light` must outlive this. light: class means
+  // are multiplied by it; null: even.
+  PredictiveChecks(const GreyLevels& grey, int chains, int draws_a_chain, std::uint64_t image_seed,
+                   const Volume<float>* light = nullptr);
 
   // labels: 1..K. Different chains may be shown at the same time; does not throw.
   void show(int chain, int draw, View<const std::uint8_t> labels, const GaussianClasses& classes);
@@ -67,6 +69,7 @@ class PredictiveChecks {
   double mean_of(double Comparison::*member) const;
 
   const GreyLevels& grey_;
+  const Volume<float>* light_;
   int stride_;
   int chains_;
   int kept_a_chain_;

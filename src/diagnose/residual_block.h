@@ -43,12 +43,14 @@ std::vector<ResidualBlock> residual_blocks(const Extent& extent);
 // Classes of the block's pixels. labels: 1..K.
 void mark_labels(View<const std::uint8_t> labels, const GreyLevels& grey, ResidualBlock& block);
 
+// light: class means are multiplied by it; null: even.
 void observed_residuals(const GreyLevels& grey, const GaussianClasses& classes,
-                        ResidualBlock& block);
+                        ResidualBlock& block, const Volume<float>* light = nullptr);
 
 // Of draw number `draw` of the chain with this key.
 void replicated_residuals(const GreyLevels& grey, const GaussianClasses& classes, PhiloxKey key,
-                          std::uint32_t draw, ResidualBlock& block);
+                          std::uint32_t draw, ResidualBlock& block,
+                          const Volume<float>* light = nullptr);
 
 }  // namespace stillfield
 

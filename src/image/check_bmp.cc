@@ -57,6 +57,11 @@ RasterHeader check_bmp(const std::filesystem::path& file, Bytes bytes, const Rea
   if (offset + row_bytes * header.height > static_cast<std::int64_t>(bytes.size())) {
     throw_truncated(file, "before the last row of the BMP");
   }
+  if (!core) {
+    const auto across = static_cast<double>(signed_32(bytes, 38));
+    const auto down = static_cast<double>(signed_32(bytes, 42));
+    header.pixel_size = pixel_size_from_resolution(across, down, kUmPerMetre);
+  }
   header.palette = depth <= 8;
   header.channels = header.palette ? 1 : 3;
   return header;

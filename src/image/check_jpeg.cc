@@ -6,8 +6,11 @@
 namespace stillfield {
 namespace {
 
+using std::string_view_literals::operator""sv;
+
 constexpr unsigned kStartOfScan = 0xda;
 constexpr unsigned kEndOfImage = 0xd9;
+constexpr unsigned kJfif = 0xe0;
 
 // Frame headers SOF0 .. SOF15; C4, C8 and CC are tables and extensions.
 bool is_frame(unsigned marker) {
@@ -56,10 +59,28 @@ RasterHeader parse_frame(const std::filesystem::path& file, unsigned marker, Byt
   return header;
 }
 
+// Of the JFIF segment (ISO/IEC 10918-5), which follows its length at the start of `segment`.
+PixelSize jfif_density(Bytes segment) {
+  if (segment.size() < 14 || !has_text(segment, 2, "JFIF\0"sv)) return {};
+  const auto unit = std::to_integer<int>(segment[9]);
+  const double um = unit == 1 ? kUmPerInch : unit == 2 ? kUmPerCentimetre : 0;
+  return pixel_size_from_resolution(big_endian_16(segment, 10), big_endian_16(segment, 12), um);
+}
+
+// No picture takes fewer bytes: every 8 x 8 block of luminance has a code of at least a bit, and a
+// component may be sampled 4 x 4 times more coarsely than the picture. Arithmetic codes may be
+// shorter, so they are not checked.
+bool too_short(const RasterHeader& header, unsigned frame, Bytes bytes) {
+  const std::int64_t least = header.width * header.height / (64 * 16 * 8);
+  return frame <= 0xc2 && static_cast<std::int64_t>(bytes.size()) < least;
+}
+
 }  // namespace
 
 RasterHeader check_jpeg(const std::filesystem::path& file, Bytes bytes, const ReadLimits& limits) {
   std::optional<RasterHeader> header;
+  PixelSize density;
+  unsigned frame = 0;
   bool has_scan = false;
   std::size_t at = 2;
   while (true) {
@@ -72,13 +93,19 @@ RasterHeader check_jpeg(const std::filesystem::path& file, Bytes bytes, const Re
     if (length > bytes.size() - at) throw_truncated(file, "inside a JPEG segment");
     if (is_frame(marker) && !header) {
       header = parse_frame(file, marker, bytes.subspan(at, length), limits);
+      frame = marker;
     }
+    if (marker == kJfif && !density.um) density = jfif_density(bytes.subspan(at, length));
     has_scan |= marker == kStartOfScan;
     at += length;
   }
   if (!header || !has_scan) {
     throw_input(file, std::string("the JPEG holds no picture before its end marker") + kCopyAgain);
   }
+  if (too_short(*header, frame, bytes)) {
+    throw_input(file, std::string("the JPEG holds less data than its header claims") + kCopyAgain);
+  }
+  header->pixel_size = density;
   return *header;
 }
 

@@ -97,6 +97,14 @@ RasterHeader parse_header(const std::filesystem::path& file, const Chunk& chunk,
   return header;
 }
 
+// A damaged one says nothing, as with other chunks that do not decide the pixels.
+PixelSize physical_size(const Chunk& chunk) {
+  constexpr auto kMetre = std::byte{1};
+  if (chunk.data.size() != 9 || !chunk.crc_ok || chunk.data[8] != kMetre) return {};
+  return pixel_size_from_resolution(big_endian_32(chunk.data, 0), big_endian_32(chunk.data, 4),
+                                    kUmPerMetre);
+}
+
 }  // namespace
 
 RasterHeader check_png(const std::filesystem::path& file, Bytes bytes, const ReadLimits& limits,
@@ -111,7 +119,7 @@ RasterHeader check_png(const std::filesystem::path& file, Bytes bytes, const Rea
   };
   std::size_t at = kSignature.size();
   Chunk chunk = chunk_at(file, bytes, at);
-  const RasterHeader header = parse_header(file, chunk, limits);
+  RasterHeader header = parse_header(file, chunk, limits);
   keep(bytes.first(at + chunk.whole.size()));
 
   std::int64_t compressed = 0;
@@ -119,6 +127,7 @@ RasterHeader check_png(const std::filesystem::path& file, Bytes bytes, const Rea
   do {
     at += chunk.whole.size();
     chunk = chunk_at(file, bytes, at);
+    if (chunk.type == "pHYs") header.pixel_size = physical_size(chunk);
     const bool is_data = chunk.type == "IDAT";
     const bool is_palette = chunk.type == "PLTE" && header.palette;
     if (!is_data && !is_palette && chunk.type != "IEND") continue;

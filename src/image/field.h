@@ -7,6 +7,8 @@
 #include <vector>
 
 #include "core/volume.h"
+#include "image/ome.h"
+#include "image/pixel_size.h"
 
 namespace stillfield {
 
@@ -30,7 +32,9 @@ struct Field {
   SampleFormat format;
   int channels_in_file = 1;
   std::optional<double> pixel_size_um;  // side of a square pixel in micrometres
-  std::vector<std::string> notes;       // what a reader of the results should know
+  PixelSizeSource pixel_size_source = PixelSizeSource::kNotKnown;
+  std::optional<OmePage> ome;      // what OME metadata say about the page
+  std::vector<std::string> notes;  // what a reader of the results should know
 };
 
 }  // namespace stillfield

@@ -4,6 +4,8 @@
 #include <tiffio.h>
 
 #include <opencv2/core.hpp>
+#include <pugixml.hpp>
+#include <string>
 #include <string_view>
 
 namespace stillfield {
@@ -19,6 +21,11 @@ std::string first_number(std::string_view text) {
   return std::string(text.substr(at, text.find_first_of(" \n", at) - at));
 }
 
+// 1130 -> "1.13".
+std::string pugixml_version() {
+  return std::to_string(PUGIXML_VERSION / 1000) + "." + std::to_string(PUGIXML_VERSION % 1000 / 10);
+}
+
 }  // namespace
 
 void use_one_thread_in_image_libraries() {
@@ -28,7 +35,8 @@ void use_one_thread_in_image_libraries() {
 std::vector<LibraryVersion> image_library_versions() {
   return {{"OpenCV", cv::getVersionString()},
           {"libtiff", first_number(TIFFGetVersion())},
-          {"OpenSSL", first_number(OpenSSL_version(OPENSSL_VERSION))}};
+          {"OpenSSL", first_number(OpenSSL_version(OPENSSL_VERSION))},
+          {"pugixml", pugixml_version()}};
 }
 
 }  // namespace stillfield

@@ -15,6 +15,7 @@
 #include <vector>
 
 #include "image/file_bytes.h"
+#include "image/pixel_size.h"
 #include "image/read.h"
 
 namespace stillfield {
@@ -26,6 +27,7 @@ struct RasterHeader {
   int bits = 8;          // per sample; unsigned
   bool palette = false;  // samples are indices into a table of colours
   bool alpha = false;    // the last channel is opacity
+  PixelSize pixel_size;  // from the resolution, where there is one
   int spread = 1;        // OpenCV's samples are the file's times this (fewer than 8 bits)
 };
 

@@ -7,8 +7,13 @@
 
 namespace stillfield {
 
-int count_pages(const std::filesystem::path& path) {
-  return file_type(path) == FileType::kTiff ? count_tiff_pages(path) : 1;
+int count_pages(const std::filesystem::path& path, const ReadLimits& limits) {
+  return file_type(path) == FileType::kTiff ? count_tiff_pages(path, limits) : 1;
+}
+
+std::vector<OmeImage> read_ome(const std::filesystem::path& path, const ReadLimits& limits) {
+  if (file_type(path) != FileType::kTiff) return {};
+  return read_tiff_ome(path, limits);
 }
 
 Field read_page(const std::filesystem::path& path, int page, const ReadLimits& limits,

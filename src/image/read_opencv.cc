@@ -4,6 +4,7 @@
 #include <opencv2/core/utils/logger.hpp>
 #include <opencv2/imgcodecs.hpp>
 
+#include "image/decode_jpeg.h"
 #include "image/luminance.h"
 #include "image/raster_header.h"
 
@@ -23,14 +24,19 @@ RasterHeader check(const std::filesystem::path& file, FileType type, const ReadL
   return header;
 }
 
-cv::Mat decode(const std::filesystem::path& file, std::vector<std::byte>& bytes) {
+// The colours of an OS/2 bitmap come as rounded grey unless colour is asked for (OpenCV 4.6).
+int decoding_of(FileType type, const RasterHeader& header) {
+  return type == FileType::kBmp && !header.palette ? cv::IMREAD_COLOR : cv::IMREAD_UNCHANGED;
+}
+
+cv::Mat decode(const std::filesystem::path& file, std::vector<std::byte>& bytes, int decoding) {
   static const auto silenced =
       cv::utils::logging::setLogLevel(cv::utils::logging::LOG_LEVEL_SILENT);
   static_cast<void>(silenced);
   cv::Mat mat;
   try {
     const cv::Mat buffer(1, static_cast<int>(bytes.size()), CV_8UC1, bytes.data());
-    mat = cv::imdecode(buffer, cv::IMREAD_UNCHANGED);
+    mat = cv::imdecode(buffer, decoding);
   } catch (const cv::Exception&) {
     mat.release();
   }
@@ -67,23 +73,28 @@ Field read_opencv(const std::filesystem::path& file, FileType type, const ReadLi
   std::vector<std::byte> bytes = read_whole(file);
   const ReadLimits tighter{std::min(limits.max_pixels, kMaxPixels)};
   const RasterHeader header = check(file, type, tighter, bytes);
-  const cv::Mat mat = decode(file, bytes);
+  Field field;
+  const cv::Mat mat = type == FileType::kJpeg ? decode_jpeg(file, bytes, header, field.notes)
+                                              : decode(file, bytes, decoding_of(type, header));
   const bool known_layout = (mat.depth() == CV_8U || mat.depth() == CV_16U) &&
                             (mat.channels() == 1 || mat.channels() >= 3);
   if (mat.cols != header.width || mat.rows != header.height || !known_layout) {
     throw_input(file, std::string("the picture is not what its header claims") + kCopyAgain);
   }
 
-  Field field;
   field.pixels = Volume<float>({mat.cols, mat.rows});
   field.format = {SampleKind::kUnsigned, header.palette ? 8 : header.bits};
   const bool colour_palette = header.palette && mat.channels() >= 3;
   field.channels_in_file = header.channels;
   if (colour_palette) field.notes.emplace_back(kPaletteNote);
-  const bool keep = colour == ColourMode::kSeparate && !header.palette && mat.channels() >= 3;
+  const bool in_colour = !header.palette && header.channels >= 3 && mat.channels() >= 3;
+  const bool keep = colour == ColourMode::kSeparate && in_colour;
   for (int c = 0; keep && c < 3; ++c) field.colour.emplace_back(field.pixels.extent());
-  if (!keep && !header.palette && header.channels >= 3) field.notes.emplace_back(kLuminanceNote);
+  if (!keep && in_colour) field.notes.emplace_back(kLuminanceNote);
   if (header.alpha) field.notes.emplace_back(kAlphaNote);
+  field.pixel_size_um = header.pixel_size.um;
+  field.pixel_size_source = header.pixel_size.source;
+  if (!header.pixel_size.note.empty()) field.notes.push_back(header.pixel_size.note);
   for (int y = 0; y < mat.rows; ++y) {
     if (mat.depth() == CV_8U) {
       copy_row<std::uint8_t>(mat, y, header.spread, field.pixels.row(y));

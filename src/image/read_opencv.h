@@ -1,4 +1,4 @@
-// PNG, JPEG, BMP and PNM through OpenCV's decoders, from memory.
+// PNG, BMP and PNM through OpenCV's decoders, JPEG through libjpeg, from memory.
 #ifndef STILLFIELD_IMAGE_READ_OPENCV_H_
 #define STILLFIELD_IMAGE_READ_OPENCV_H_
 

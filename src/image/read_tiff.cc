@@ -3,51 +3,46 @@
 #include <algorithm>
 #include <cmath>
 #include <limits>
+#include <utility>
 
 #include "image/file_bytes.h"
 #include "image/input_checks.h"
 #include "image/luminance.h"
 #include "image/tiff_handle.h"
 #include "image/tiff_layout.h"
+#include "image/tiff_pages.h"
 #include "image/tiff_samples.h"
 
 namespace stillfield {
 namespace {
 
 constexpr double kLargestExactInteger = 16777216;  // 2^24, for float
+constexpr std::size_t kEveryPage = std::numeric_limits<std::size_t>::max();
 
-bool is_page(TIFF* tiff) {
-  std::uint32_t kind = 0;
-  if (TIFFGetField(tiff, TIFFTAG_SUBFILETYPE, &kind) == 1) {
-    return (kind & (FILETYPE_REDUCEDIMAGE | FILETYPE_MASK)) == 0;
+// What stands for 1 of 255 in a colour map: 257 by the standard, 256 or 1 by some writers.
+double palette_unit(const std::uint16_t* const table[3], std::size_t entries) {
+  bool all_multiples = true;
+  bool all_small = true;
+  for (int c = 0; c < 3; ++c) {
+    for (std::size_t i = 0; i < entries; ++i) {
+      all_multiples &= table[c][i] % 256 == 0;
+      all_small &= table[c][i] < 256;
+    }
   }
-  std::uint16_t old_kind = OFILETYPE_IMAGE;
-  return TIFFGetField(tiff, TIFFTAG_OSUBFILETYPE, &old_kind) != 1 ||
-         old_kind != OFILETYPE_REDUCEDIMAGE;
+  return all_small ? 1 : all_multiples ? 256 : 257;
 }
 
-std::vector<std::uint64_t> page_offsets(const std::filesystem::path& file, TiffHandle& tiff) {
-  std::vector<std::uint64_t> offsets;
-  do {
-    if (is_page(tiff.get())) offsets.push_back(TIFFCurrentDirOffset(tiff.get()));
-    tiff.forget_messages();
-  } while (TIFFReadDirectory(tiff.get()) == 1);
-  if (!tiff.first_error().empty()) {
-    throw_input(file, "a TIFF directory cannot be read (" + tiff.first_error() + ")" + kCopyAgain);
-  }
-  if (offsets.empty()) {
-    throw_input(file, "the TIFF holds reduced copies or masks only; save the full image");
-  }
-  return offsets;
-}
-
-void go_to_page(const std::filesystem::path& file, int page, TiffHandle& tiff) {
-  const auto offsets = page_offsets(file, tiff);
-  check_page(file, page, static_cast<int>(offsets.size()));
-  if (TIFFSetSubDirectory(tiff.get(), offsets[static_cast<std::size_t>(page)]) != 1) {
+TiffPagePlace go_to_page(const std::filesystem::path& file, int page, const ReadLimits& limits,
+                         TiffHandle& tiff) {
+  const auto pages =
+      tiff_pages(file, tiff, limits, page < 0 ? kEveryPage : static_cast<std::size_t>(page) + 1);
+  check_page(file, page, static_cast<int>(pages.size()));
+  const TiffPagePlace& place = pages[static_cast<std::size_t>(page)];
+  if (TIFFSetSubDirectory(tiff.get(), place.offset) != 1) {
     throw_input(file, "page " + std::to_string(page + 1) + " of the TIFF cannot be read (" +
                           tiff.first_error() + ")" + kCopyAgain);
   }
+  return place;
 }
 
 // Turns the decoded rows of blocks into pixels of a field.
@@ -59,8 +54,10 @@ class PixelWriter {
     if (!layout.palette) return;
     std::uint16_t* table[3] = {};
     if (TIFFGetField(tiff, TIFFTAG_COLORMAP, &table[0], &table[1], &table[2]) != 1) return;
-    for (int i = 0; i < 1 << layout.format.bits; ++i) {
-      palette_.push_back(luminance(table[0][i] / 257.0, table[1][i] / 257.0, table[2][i] / 257.0));
+    const std::size_t entries = std::size_t{1} << layout.format.bits;
+    const double unit = palette_unit(table, entries);
+    for (std::size_t i = 0; i < entries; ++i) {
+      palette_.push_back(luminance(table[0][i] / unit, table[1][i] / unit, table[2][i] / unit));
     }
   }
 
@@ -178,16 +175,48 @@ void add_notes(const TiffHandle& tiff, const TiffLayout& layout, const PixelWrit
   }
 }
 
+// From OME metadata, else from the resolution tags.
+void set_pixel_size(TIFF* tiff, Field& field) {
+  PixelSize size;
+  if (field.ome && field.ome->voxel.x_um && field.ome->voxel.y_um) {
+    size = square_pixel_size(*field.ome->voxel.x_um, *field.ome->voxel.y_um, PixelSizeSource::kOme);
+  } else {
+    size = tiff_pixel_size(tiff);
+  }
+  field.pixel_size_um = size.um;
+  field.pixel_size_source = size.source;
+  if (!size.note.empty()) field.notes.push_back(size.note);
+}
+
 }  // namespace
 
-int count_tiff_pages(const std::filesystem::path& file) {
+int count_tiff_pages(const std::filesystem::path& file, const ReadLimits& limits) {
   TiffHandle tiff = TiffHandle::open(file);
-  return static_cast<int>(page_offsets(file, tiff).size());
+  return static_cast<int>(tiff_pages(file, tiff, limits, kEveryPage).size());
+}
+
+std::vector<OmeImage> read_tiff_ome(const std::filesystem::path& file, const ReadLimits& limits) {
+  TiffHandle tiff = TiffHandle::open(file);
+  OmeFile ome = tiff_ome(file, tiff, limits);
+  if (ome.images.empty()) return {};
+  const auto pages = tiff_pages(file, tiff, limits, kEveryPage);
+  std::vector<int> page_of_directory(static_cast<std::size_t>(pages.back().directory) + 1, -1);
+  for (std::size_t i = 0; i < pages.size(); ++i) {
+    page_of_directory[static_cast<std::size_t>(pages[i].directory)] = static_cast<int>(i);
+  }
+  for (OmeImage& image : ome.images) {
+    std::erase_if(image.planes, [&](OmePlane& plane) {
+      const auto directory = static_cast<std::size_t>(plane.page);
+      plane.page = directory < page_of_directory.size() ? page_of_directory[directory] : -1;
+      return plane.page < 0;
+    });
+  }
+  return std::move(ome.images);
 }
 
 PageShape tiff_page_shape(const std::filesystem::path& file, int page, const ReadLimits& limits) {
   TiffHandle tiff = TiffHandle::open(file);
-  go_to_page(file, page, tiff);
+  go_to_page(file, page, limits, tiff);
   const TiffLayout layout = tiff_layout(file, tiff, limits);
   return {layout.width, layout.height, layout.colour ? 3 : 1, layout.format.bits};
 }
@@ -195,7 +224,8 @@ PageShape tiff_page_shape(const std::filesystem::path& file, int page, const Rea
 Field read_tiff_page(const std::filesystem::path& file, int page, const ReadLimits& limits,
                      ColourMode colour) {
   TiffHandle tiff = TiffHandle::open(file);
-  go_to_page(file, page, tiff);
+  const OmeFile ome = tiff_ome(file, tiff, limits);
+  const TiffPagePlace place = go_to_page(file, page, limits, tiff);
   const TiffLayout layout = tiff_layout(file, tiff, limits);
   tiff.forget_messages();
 
@@ -205,7 +235,10 @@ Field read_tiff_page(const std::filesystem::path& file, int page, const ReadLimi
   for (int c = 0; keep && c < 3; ++c) field.colour.emplace_back(field.pixels.extent());
   field.format = layout.format;
   field.channels_in_file = layout.channels;
-  field.pixel_size_um = tiff_pixel_size_um(tiff.get());
+  field.notes = ome.notes;
+  field.ome = page_of(ome, place.directory);
+  if (field.ome) field.ome->place.page = page;
+  set_pixel_size(tiff.get(), field);
   PixelWriter writer(tiff.get(), layout, field);
   if (layout.palette) {
     if (!writer.has_palette()) {

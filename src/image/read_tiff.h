@@ -7,7 +7,9 @@
 
 namespace stillfield {
 
-int count_tiff_pages(const std::filesystem::path& file);
+int count_tiff_pages(const std::filesystem::path& file, const ReadLimits& limits);
+
+std::vector<OmeImage> read_tiff_ome(const std::filesystem::path& file, const ReadLimits& limits);
 
 PageShape tiff_page_shape(const std::filesystem::path& file, int page, const ReadLimits& limits);
 

@@ -1,7 +1,6 @@
 #include "image/tiff_layout.h"
 
 #include <algorithm>
-#include <cmath>
 #include <limits>
 
 #include "image/file_bytes.h"
@@ -91,6 +90,12 @@ void read_blocks(const std::filesystem::path& file, TIFF* tiff, const ReadLimits
     layout.block_width = tag<std::uint32_t>(tiff, TIFFTAG_TILEWIDTH, 0);
     layout.block_height = tag<std::uint32_t>(tiff, TIFFTAG_TILELENGTH, 0);
     check_size(file, layout.block_width, layout.block_height, limits);
+    // With the padding of the last tiles: bounds every product below.
+    const auto padded = [](std::int64_t size, std::int64_t block) {
+      return (size + block - 1) / block * block;
+    };
+    check_size(file, padded(layout.width, layout.block_width),
+               padded(layout.height, layout.block_height), limits);
   } else {
     layout.block_width = layout.width;
     const auto rows = tag<std::uint32_t>(tiff, TIFFTAG_ROWSPERSTRIP, 0xffffffffu);
@@ -164,18 +169,16 @@ TiffLayout tiff_layout(const std::filesystem::path& file, TiffHandle& tiff,
   return layout;
 }
 
-std::optional<double> tiff_pixel_size_um(TIFF* tiff) {
+PixelSize tiff_pixel_size(TIFF* tiff) {
   float x = 0;
   float y = 0;
-  if (TIFFGetField(tiff, TIFFTAG_XRESOLUTION, &x) != 1) return std::nullopt;
-  if (TIFFGetField(tiff, TIFFTAG_YRESOLUTION, &y) != 1) return std::nullopt;
+  if (TIFFGetField(tiff, TIFFTAG_XRESOLUTION, &x) != 1) return {};
+  if (TIFFGetField(tiff, TIFFTAG_YRESOLUTION, &y) != 1) return {};
   const auto unit = tag<std::uint16_t>(tiff, TIFFTAG_RESOLUTIONUNIT, RESUNIT_INCH);
-  const double um_per_unit = unit == RESUNIT_INCH         ? 25400.0
-                             : unit == RESUNIT_CENTIMETER ? 10000.0
+  const double um_per_unit = unit == RESUNIT_INCH         ? kUmPerInch
+                             : unit == RESUNIT_CENTIMETER ? kUmPerCentimetre
                                                           : 0;
-  const bool square = std::isfinite(x) && x > 0 && std::fabs(x - y) <= 1e-4f * x;
-  if (!square || um_per_unit == 0) return std::nullopt;
-  return um_per_unit / double{x};
+  return pixel_size_from_resolution(x, y, um_per_unit);
 }
 
 }  // namespace stillfield

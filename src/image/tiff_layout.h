@@ -8,8 +8,8 @@
 #define STILLFIELD_IMAGE_TIFF_LAYOUT_H_
 
 #include <cstdint>
-#include <optional>
 
+#include "image/pixel_size.h"
 #include "image/read.h"
 #include "image/tiff_handle.h"
 
@@ -40,8 +40,8 @@ struct TiffLayout {
 TiffLayout tiff_layout(const std::filesystem::path& file, TiffHandle& tiff,
                        const ReadLimits& limits);
 
-// Side of a pixel from the resolution tags, if the unit is known and pixels are square.
-std::optional<double> tiff_pixel_size_um(TIFF* tiff);
+// From the resolution tags, if the unit is known.
+PixelSize tiff_pixel_size(TIFF* tiff);
 
 }  // namespace stillfield
 

@@ -43,7 +43,9 @@ void set_tags(TIFF* tiff, const TiffPage<T>& page, std::uint32_t rows_per_strip)
   TIFFSetField(tiff, TIFFTAG_BITSPERSAMPLE, static_cast<int>(8 * sizeof(T)));
   TIFFSetField(tiff, TIFFTAG_SAMPLESPERPIXEL, static_cast<int>(1 + page.further.size()));
   TIFFSetField(tiff, TIFFTAG_SAMPLEFORMAT,
-               std::is_floating_point_v<T> ? SAMPLEFORMAT_IEEEFP : SAMPLEFORMAT_UINT);
+               std::is_floating_point_v<T> ? SAMPLEFORMAT_IEEEFP
+               : std::is_signed_v<T>       ? SAMPLEFORMAT_INT
+                                           : SAMPLEFORMAT_UINT);
   TIFFSetField(tiff, TIFFTAG_PHOTOMETRIC,
                page.further.empty() ? PHOTOMETRIC_MINISBLACK : PHOTOMETRIC_RGB);
   TIFFSetField(tiff, TIFFTAG_PLANARCONFIG, PLANARCONFIG_CONTIG);
@@ -95,6 +97,32 @@ bool write_strips(TIFF* tiff, const TiffPage<T>& page, int z, int rows_per_strip
   return TIFFWriteDirectory(tiff) == 1;
 }
 
+// The name of the sample type in the OME schema.
+template <typename T>
+std::string ome_type() {
+  if (std::is_floating_point_v<T>) return "float";
+  return (std::is_signed_v<T> ? "int" : "uint") + std::to_string(8 * sizeof(T));
+}
+
+template <typename T>
+std::string description_of(const std::filesystem::path& path, const std::vector<TiffPage<T>>& pages,
+                           const TiffOptions& options) {
+  if (!options.ome) return options.description;
+  const TiffPage<T>& first = pages.front();
+  const Extent extent = first.pixels.extent();
+  OmePixels pixels{ome_type<T>(),
+                   extent.width,
+                   extent.height,
+                   extent.depth,
+                   static_cast<int>(1 + first.further.size()),
+                   {}};
+  for (const auto& page : pages) {
+    if (page.pixels.extent() != extent) fail(path, "its pages differ in size");
+    pixels.pages.push_back(page.name);
+  }
+  return ome_xml(*options.ome, pixels);
+}
+
 template <typename T>
 void write_pages(const std::filesystem::path& path, const std::vector<TiffPage<T>>& pages,
                  const TiffOptions& options) {
@@ -107,6 +135,7 @@ void write_pages(const std::filesystem::path& path, const std::vector<TiffPage<T
   }
   if (total_pages == 0) fail(path, "there is no page to write");
 
+  const std::string description = description_of(path, pages, options);
   AtomicFile file(path);
   TiffHandle tiff = TiffHandle::create(file.descriptor(), path, total_bytes > kBigTiffBytes);
   int number = 0;
@@ -117,8 +146,8 @@ void write_pages(const std::filesystem::path& path, const std::vector<TiffPage<T
     for (int z = 0; z < page.pixels.depth(); ++z, ++number) {
       set_tags(tiff.get(), page, static_cast<std::uint32_t>(rows));
       if (options.pixel_size_um) set_resolution(tiff.get(), *options.pixel_size_um);
-      if (number == 0 && !options.description.empty()) {
-        TIFFSetField(tiff.get(), TIFFTAG_IMAGEDESCRIPTION, options.description.c_str());
+      if (number == 0 && !description.empty()) {
+        TIFFSetField(tiff.get(), TIFFTAG_IMAGEDESCRIPTION, description.c_str());
       }
       if (!page.name.empty()) TIFFSetField(tiff.get(), TIFFTAG_PAGENAME, page.name.c_str());
       if (total_pages > 1) TIFFSetField(tiff.get(), TIFFTAG_SUBFILETYPE, FILETYPE_PAGE);
@@ -131,6 +160,24 @@ void write_pages(const std::filesystem::path& path, const std::vector<TiffPage<T
 }
 
 }  // namespace
+
+template <typename T>
+void write_tiff(const std::filesystem::path& path, const std::vector<TiffPage<T>>& pages,
+                const TiffOptions& options) {
+  write_pages(path, pages, options);
+}
+
+#define STILLFIELD_WRITES(T)                                                                 \
+  template void write_tiff<T>(const std::filesystem::path&, const std::vector<TiffPage<T>>&, \
+                              const TiffOptions&);
+STILLFIELD_WRITES(std::uint8_t)
+STILLFIELD_WRITES(std::uint16_t)
+STILLFIELD_WRITES(std::uint32_t)
+STILLFIELD_WRITES(std::int8_t)
+STILLFIELD_WRITES(std::int16_t)
+STILLFIELD_WRITES(std::int32_t)
+STILLFIELD_WRITES(float)
+#undef STILLFIELD_WRITES
 
 void write_tiff(const std::filesystem::path& path, View<const std::uint8_t> image,
                 const TiffOptions& options) {
@@ -145,21 +192,6 @@ void write_tiff(const std::filesystem::path& path, View<const std::uint16_t> ima
 void write_tiff(const std::filesystem::path& path, View<const float> image,
                 const TiffOptions& options) {
   write_pages<float>(path, {{image}}, options);
-}
-
-void write_tiff(const std::filesystem::path& path, const std::vector<TiffPage<std::uint8_t>>& pages,
-                const TiffOptions& options) {
-  write_pages(path, pages, options);
-}
-
-void write_tiff(const std::filesystem::path& path,
-                const std::vector<TiffPage<std::uint16_t>>& pages, const TiffOptions& options) {
-  write_pages(path, pages, options);
-}
-
-void write_tiff(const std::filesystem::path& path, const std::vector<TiffPage<float>>& pages,
-                const TiffOptions& options) {
-  write_pages(path, pages, options);
 }
 
 }  // namespace stillfield

@@ -197,7 +197,7 @@ Bootstrap run_bootstrap(const BootstrapInput& input, const Pool& pool, JobObserv
 
   const Values value = setting.statistic(base, input.pixels);
   const Values floor = one_particle_variances(setting.cleaned(base.labels.view()).view(),
-                                              input.usable, input.measure);
+                                              input.usable, input.measure, setting.least_area);
   Bootstrap result{{2 * each, 0, setting.blur}, setting.keys, {}};
   for (std::size_t i = 0; i < setting.keys.size(); ++i) {
     const MeasureKey& key = setting.keys[i];
@@ -219,11 +219,17 @@ Bootstrap run_bootstrap(const BootstrapInput& input, const Pool& pool, JobObserv
 }
 
 void correct_measurements(Bootstrap& bootstrap, std::vector<Measurement>& measurements) {
+  double number_variance = 0;  // of the particles of the class, whose count comes before its sizes
   for (std::size_t i = 0; i < bootstrap.keys.size(); ++i) {
+    const std::string& name = bootstrap.keys[i].name;
+    if (name == "particle_count") number_variance = 0;
     Measurement* m = find(bootstrap.keys[i], measurements);
     if (m == nullptr || !std::isfinite(m->estimate)) continue;
-    const BootstrapShares shares = bootstrap_shares(m->name);
-    bootstrap.facts.corrected += correct_measurement(bootstrap.errors[i], shares, *m) ? 1 : 0;
+    BootstrapErrors errors = bootstrap.errors[i];
+    if (name != "particle_count") errors.floor_variance *= number_variance;
+    if (!correct_measurement(errors, bootstrap_shares(name), *m)) continue;
+    if (name == "particle_count") number_variance = m->sd * m->sd;
+    ++bootstrap.facts.corrected;
   }
 }
 

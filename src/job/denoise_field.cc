@@ -6,6 +6,7 @@
 #include "core/error.h"
 #include "image/read.h"
 #include "image/write.h"
+#include "image/write_rounded.h"
 #include "job/field_frame.h"
 #include "job/mask.h"
 #include "job/output_folder.h"
@@ -20,25 +21,6 @@ namespace {
 namespace fs = std::filesystem;
 
 constexpr const char* kColours[3] = {"red", "green", "blue"};
-constexpr int kMostIntegerBits = 16;
-
-bool keeps_integers(const SampleFormat& format, const DenoiseSettings& settings) {
-  return !settings.float_output && format.kind == SampleKind::kUnsigned &&
-         format.bits <= kMostIntegerBits;
-}
-
-// Rounded and limited to what the sample type holds.
-template <class T>
-Volume<T> rounded(const Volume<float>& plane, int bits) {
-  const float largest = static_cast<float>((1 << bits) - 1);
-  Volume<T> out(plane.extent());
-  for (int y = 0; y < plane.height(); ++y) {
-    for (int x = 0; x < plane.width(); ++x) {
-      out.at(x, y) = static_cast<T>(std::clamp(std::floor(plane.at(x, y) + 0.5F), 0.0F, largest));
-    }
-  }
-  return out;
-}
 
 // The planes of one or three channels as one page.
 template <class T>
@@ -55,14 +37,6 @@ TiffPage<T> page_of(const std::vector<const Volume<T>*>& planes, const std::stri
   return page;
 }
 
-template <class T>
-void write_rounded(const fs::path& file, const std::vector<PlaneRestoration>& planes, int bits,
-                   const TiffOptions& options) {
-  std::vector<Volume<T>> out;
-  for (const PlaneRestoration& plane : planes) out.push_back(rounded<T>(plane.restored, bits));
-  write_tiff(file, std::vector<TiffPage<T>>{page_of(out)}, options);
-}
-
 void write_maps(const FieldTask& task, const std::vector<PlaneRestoration>& planes,
                 const SampleFormat& format, const DenoiseSettings& settings,
                 const TiffOptions& options, ImageRecord& record) {
@@ -73,15 +47,12 @@ void write_maps(const FieldTask& task, const std::vector<PlaneRestoration>& plan
                options);
     list_output(task, suffix, record);
   };
-  if (!keeps_integers(format, settings)) {
+  if (settings.float_output || !keeps_integers(format)) {
     write(".restored.tif", &PlaneRestoration::restored);
   } else {
-    const fs::path file = with_suffix(task.stem, ".restored.tif");
-    if (format.bits <= 8) {
-      write_rounded<std::uint8_t>(file, planes, format.bits, options);
-    } else {
-      write_rounded<std::uint16_t>(file, planes, format.bits, options);
-    }
+    std::vector<View<const float>> restored;
+    for (const PlaneRestoration& plane : planes) restored.push_back(plane.restored.view());
+    write_rounded_tiff(with_suffix(task.stem, ".restored.tif"), restored, format, options);
     list_output(task, ".restored.tif", record);
   }
   write(".sd.tif", &PlaneRestoration::sd);
@@ -141,7 +112,8 @@ ImageRecord denoise(const FieldTask& task, const DenoiseSettings& settings, cons
                     const Pool& pool, JobObserver& observer, const PatchMixture* mixture) {
   ImageRecord record;
   Stopwatch watch;
-  const Field field = read_page(task.file, task.page, run.limits, ColourMode::kSeparate);
+  Field field = read_page(task.file, task.page, run.limits, ColourMode::kSeparate);
+  correct_light(settings.light, run.limits, field);
   const std::uint64_t seed =
       begin_record(task, field, kDenoise, named_settings(settings), settings.seed, record);
   const Volume<std::uint8_t> usable =
@@ -160,9 +132,7 @@ ImageRecord denoise(const FieldTask& task, const DenoiseSettings& settings, cons
 
   const fs::path record_file = with_suffix(task.stem, kRecordSuffix);
   const UnfinishedResult unfinished(task.stem, record);
-  TiffOptions options;
-  options.pixel_size_um = field.pixel_size_um;
-  write_maps(task, planes, field.format, settings, options, record);
+  write_maps(task, planes, field.format, settings, map_options(field), record);
   record.run.write_seconds = watch.lap();
   write_record(record_file, record);
   return record;

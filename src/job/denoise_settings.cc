@@ -63,6 +63,7 @@ std::vector<NamedValue> named_settings(const DenoiseSettings& settings) {
     list.push_back({"mask", settings.mask.generic_string()});
     if (!settings.mask_sha256.empty()) list.push_back({"mask_sha256", settings.mask_sha256});
   }
+  name_light_files(settings.light, list);
   if (!settings.learn_from.empty()) {
     list.push_back({"learn_from", settings.learn_from.generic_string()});
     list.push_back({"learn_from_sha256", settings.learn_from_sha256});

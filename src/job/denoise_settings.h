@@ -8,6 +8,7 @@
 #include <string>
 #include <vector>
 
+#include "job/light_files.h"
 #include "model/neighbourhood.h"
 #include "model/noise_model.h"
 #include "report/named_value.h"
@@ -38,6 +39,7 @@ struct DenoiseSettings {
   std::optional<double> saturation;  // grey values from here on are saturated
   std::filesystem::path mask;        // file, or folder of files named as the images; 0 = not used
   std::string mask_sha256;           // of the mask of the image at hand (job/mask.h)
+  LightFiles light;
   std::filesystem::path learn_from;  // file or folder of like images for the patch mixture
   std::string learn_from_sha256;     // of all that `learn_from` holds
   bool correlated_noise = false;     // model a short-range covariance of the noise

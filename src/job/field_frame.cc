@@ -40,6 +40,8 @@ InputFacts describe_input(const FieldTask& task, const Field& field) {
   input.samples = sample_name(field.format);
   input.channels = field.channels_in_file;
   input.pixel_size_um = field.pixel_size_um.value_or(kUnknown);
+  input.pixel_size_from = name_of(field.pixel_size_source);
+  if (field.ome) input.plane = describe(*field.ome);
   input.notes = field.notes;
   return input;
 }
@@ -81,6 +83,19 @@ std::uint64_t begin_record(const FieldTask& task, const Field& field, const std:
   const std::uint64_t of_image = seed_of(seed, record.input.sha256, task.page);
   record.image_seed = hexadecimal(of_image);
   return of_image;
+}
+
+void use_pixel_size(double um, Field& field) {
+  field.pixel_size_um = um;
+  field.pixel_size_source = PixelSizeSource::kOption;
+  if (field.ome) field.ome->voxel.x_um = field.ome->voxel.y_um = um;
+}
+
+TiffOptions map_options(const Field& field) {
+  TiffOptions options;
+  options.pixel_size_um = field.pixel_size_um;
+  if (field.ome) options.ome = OmeOutput{field.ome->image, field.ome->channel, field.ome->voxel};
+  return options;
 }
 
 void list_output(const FieldTask& task, const std::string& suffix, ImageRecord& record) {

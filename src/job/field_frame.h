@@ -9,6 +9,7 @@
 #include <string>
 
 #include "image/field.h"
+#include "image/write.h"
 #include "job/field_task.h"
 #include "report/record.h"
 
@@ -36,6 +37,12 @@ std::uint64_t seed_of(std::uint64_t seed, const std::string& sha256, int page);
 std::uint64_t begin_record(const FieldTask& task, const Field& field, const std::string& command,
                            const std::vector<NamedValue>& settings, std::uint64_t seed,
                            ImageRecord& record);
+
+// A pixel size that the user gave takes the place of the file's.
+void use_pixel_size(double um, Field& field);
+
+// The maps of a page carry on its pixel size and, where it came with OME metadata, those too.
+TiffOptions map_options(const Field& field);
 
 // Adds the file stem + suffix, which has just been written, to the record.
 void list_output(const FieldTask& task, const std::string& suffix, ImageRecord& record);

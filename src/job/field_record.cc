@@ -99,6 +99,17 @@ void describe_sampling(const LabelSampling& sampling, const SegmentSettings& set
   }
 }
 
+void describe_light(const ShadingFacts& light, ImageRecord& record) {
+  record.shading = light;
+  if (!light.modelled) return;
+  char text[160];
+  std::snprintf(
+      text, sizeof text,
+      "uneven light, from %.2f to %.2f of its mean; labels and grey values account for it",
+      light.lowest, light.highest);
+  record.input.notes.push_back(text);
+}
+
 void describe_measured(const std::vector<Measurement>& measured, bool complete,
                        ImageRecord& record) {
   for (const Measurement& m : measured) {

@@ -17,6 +17,9 @@ void describe_grey(const GreyLevels& grey, ImageRecord& record);
 void describe_sampling(const LabelSampling& sampling, const SegmentSettings& settings,
                        ImageRecord& record);
 
+// The light, with a note where it was modelled.
+void describe_light(const ShadingFacts& light, ImageRecord& record);
+
 // Adds what was measured on the draws, after describe_sampling. Area fractions stay those of the
 // traces, which saw every sweep, if the field is complete; else those saw the observed pixels
 // alone.

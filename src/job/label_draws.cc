@@ -35,7 +35,10 @@ void for_label_draws(const SegmentSettings& settings, int draws, const Pool& poo
     every_chain.run([&](int c, WeightPlanes& weights, const Pool& inner) {
       LabelChain& chain = sampling.chains[static_cast<std::size_t>(c)];
       for (int block = 0; block < kBlocksBetweenDraws; ++block) {
-        if (sampling.blurred.empty()) {
+        if (sampling.shading) {
+          advance_shaded_chain(sampling.problem, *sampling.shading,
+                               settings.schedule.sweeps_a_block, inner, weights, chain);
+        } else if (sampling.blurred.empty()) {
           advance_chain(sampling.problem, settings.schedule.sweeps_a_block, inner, weights, chain);
         } else {
           advance_blurred_chain(sampling.problem, settings.schedule.sweeps_a_block, inner,

@@ -12,8 +12,10 @@
 #include "posterior/label_counts.h"
 #include "posterior/traces.h"
 #include "report/blur_facts.h"
+#include "report/shading_facts.h"
 #include "sampler/blurred_field.h"
 #include "sampler/coupling_search.h"
+#include "sampler/shaded_chain.h"
 #include "sampler/sweep.h"
 
 namespace stillfield {
@@ -25,6 +27,7 @@ struct LabelSampling {
   std::vector<LabelChain> chains;     // where they stopped (label_draws.h goes on)
   std::vector<BlurredField> blurred;  // one a chain when blur is modelled, else empty
   BlurFacts blur;
+  std::shared_ptr<const Shading> shading;  // when uneven light is drawn with the labels
   std::unique_ptr<LabelCounts> counts;
   std::unique_ptr<Traces> traces;
   LabelPrior prior;  // of the last block; fixed while sampling unless sampled

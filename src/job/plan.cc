@@ -31,7 +31,7 @@ std::vector<PlannedField> plan_file(const InputFile& file, const SettingsOf& set
   try {
     if (!file.failure.empty()) throw Error(ErrorKind::kInput, file.failure);
     task.stamp = stamp_of(file.path);
-    task.pages = count_pages(file.path);
+    task.pages = count_pages(file.path, run.limits);
     if (task.pages > 1 && look == Look::kAtContent) task.sha256 = sha256_of_file(file.path);
     for (int page = 0; page < task.pages; ++page) {
       task.page = page;

@@ -2,12 +2,11 @@
 
 #include <algorithm>
 
-#include "core/elementary.h"
 #include "core/error.h"
+#include "job/class_field_step.h"
 #include "job/sample_chains.h"
 #include "sampler/blur_search.h"
 #include "sampler/blurred_chain.h"
-#include "sampler/neighbour_sample.h"
 
 namespace stillfield {
 namespace {
@@ -16,9 +15,7 @@ namespace {
 constexpr double kNoBlur = 0.4;
 constexpr double kSmallestStart = 0.5;  // of the drawn blur
 constexpr int kSettlingBlocks = 80;
-constexpr int kSettlingSweeps = 2;     // a block
-constexpr int kSampledPixels = 16384;  // for the class field, a block over all chains
-constexpr double kGainPower = 0.7;     // as sampler/coupling.cc
+constexpr int kSettlingSweeps = 2;  // a block
 // A blurred sweep costs tens of plain ones: the limit of sweeps is lower.
 constexpr int kMaxSweeps = 1500;
 
@@ -37,18 +34,6 @@ double first_estimate(const GreyLevels& grey, const LabelSampling& run) {
   const LabelModel& model = run.chains.front().model;
   absorb_thin_labels(grey, model.classes, labels);
   return search_blur(grey, model.size(), labels);
-}
-
-// One step of the class field towards the running labels of all chains, with falling gains.
-void adapt_class_field(int block, LabelSampling& run) {
-  NeighbourCounts counts;
-  const int wanted = kSampledPixels / static_cast<int>(run.chains.size());
-  for (const LabelChain& chain : run.chains) {
-    sample_neighbours(*run.colouring, chain, wanted, (block % 8) / 8.0, counts);
-  }
-  LabelPrior prior = run.chains.front().model.prior;
-  climb_class_field(counts, exact_exp(-kGainPower * exact_log(1.0 + block)), prior);
-  for (LabelChain& chain : run.chains) chain.model.prior = prior;
 }
 
 BlurFacts summarise_blur(std::vector<double> draws) {
@@ -98,7 +83,7 @@ void restore_blurred(const SegmentSettings& settings, const Pool& pool, JobObser
       advance(c, kSettlingSweeps);
       if (estimated) draw_blur(run.problem, fields[i], run.chains[i]);
     });
-    if (settings.coupling.mode == CouplingMode::kAuto) adapt_class_field(block, run);
+    if (settings.coupling.mode == CouplingMode::kAuto) step_class_field(block, run);
     if (block < kSettlingBlocks / 2) continue;
     for (const BlurredField& field : fields) draws.push_back(field.kernel.sd);
   }

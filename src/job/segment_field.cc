@@ -15,7 +15,7 @@
 #include "job/model_checks.h"
 #include "job/output_folder.h"
 #include "job/restore_blurred.h"
-#include "job/restore_one.h"
+#include "job/restore_shaded.h"
 #include "job/segment_input.h"
 #include "job/unfinished_result.h"
 #include "report/class_colours.h"
@@ -116,24 +116,28 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& asked, const R
   SegmentInput input = read_segment_input(task, asked, run.limits, record);
   record.run = {active_cpu_target(), pool.threads(), watch.lap(), 0, 0};
 
-  const SegmentSettings settings = with_chosen_classes(input.grey, asked, input.seed, pool, record);
+  UnevenLight light(asked.shading, input.grey, input.pixels.view(), asked.classes);
+  const SegmentSettings settings =
+      with_chosen_classes(light.even_grey(), asked, input.seed, pool, record);
   input.measure.classes = settings.classes;
-  LabelSampling sampling = restore_one(input.grey, settings, input.seed, pool, observer, &memo);
+  LabelSampling sampling = light.restore(settings, input.seed, pool, observer, &memo);
   restore_blurred(settings, pool, observer, sampling);
   describe_sampling(sampling, settings, record);
+  describe_light(light.facts(), record);
   add_choice_sentences(record);
-  MeasuredDraws measured(sampling.counts->most_probable().view(), input.pixels.view(),
+  MeasuredDraws measured(sampling.counts->most_probable().view(), light.even_pixels(),
                          input.usable.view(), input.measure, settings.chains);
-  PredictiveChecks checks(input.grey, settings.chains, kMeasuredDraws, input.seed);
+  PredictiveChecks checks(input.grey, settings.chains, kMeasuredDraws, input.seed,
+                          light.modelled() ? &light.surface() : nullptr);
   for_label_draws(settings, kMeasuredDraws, pool, observer, sampling, [&](const LabelDraw& draw) {
     measured.record(draw);
     checks.show(draw.chain, draw.draw, draw.labels, draw.model.classes);
   });
   describe_measured(measured.measurements(), input.complete(), record);
   if (settings.replicates > 0) {
-    Bootstrap bootstrap = run_bootstrap(
-        {input.grey, input.pixels.view(), input.usable.view(), input.measure, settings, input.seed},
-        pool, observer, record.measurements, sampling);
+    Bootstrap bootstrap = run_bootstrap({light.even_grey(), light.even_pixels(),
+                                         input.usable.view(), input.measure, settings, input.seed},
+                                        pool, observer, record.measurements, sampling);
     correct_measurements(bootstrap, record.measurements);
     record.bootstrap = bootstrap.facts;
   }
@@ -142,6 +146,10 @@ ImageRecord segment(const FieldTask& task, const SegmentSettings& asked, const R
   const fs::path record_file = with_suffix(task.stem, kRecordSuffix);
   const UnfinishedResult unfinished(task.stem, record);
   write_maps(task, sampling, input, record);
+  if (light.modelled()) {
+    write_tiff(with_suffix(task.stem, ".shading.tif"), light.surface().view(), input.options);
+    list_output(task, ".shading.tif", record);
+  }
   describe_checks(input.grey, input.usable, sampling, checks, record);
   write_text_atomically(
       with_suffix(task.stem, kParticlesSuffix),

@@ -32,6 +32,8 @@ SegmentInput read_segment_input(const FieldTask& task, const SegmentSettings& se
                                 const ReadLimits& limits, ImageRecord& record) {
   SegmentInput input;
   Field field = read_page(task.file, task.page, limits);
+  if (settings.pixel_size_um) use_pixel_size(*settings.pixel_size_um, field);
+  correct_light(settings.light, limits, field);
   input.seed = begin_record(task, field, kSegment, named_settings(settings), settings.seed, record);
   if (!settings.mask.empty()) {
     input.usable = read_mask(settings.mask, task, field.pixels.extent(), limits);
@@ -46,8 +48,7 @@ SegmentInput read_segment_input(const FieldTask& task, const SegmentSettings& se
   input.pixels = std::move(field.pixels);
   input.grey = make_grey_levels(input.pixels.view());
   describe_grey(input.grey, record);
-  input.options.pixel_size_um =
-      settings.pixel_size_um ? settings.pixel_size_um : field.pixel_size_um;
+  input.options = map_options(field);
   input.measure.classes = settings.classes;
   input.measure.particles = settings.particles;
   if (input.options.pixel_size_um) input.measure.pixel_size_um = *input.options.pixel_size_um;

@@ -44,6 +44,11 @@ std::vector<NamedValue> named_settings(const SegmentSettings& settings) {
   }
   list.push_back({"blur", blur_name(settings.blur.mode)});
   if (settings.blur.mode == BlurMode::kGiven) list.push_back({"blur_value", settings.blur.value});
+  if (settings.shading.mode != ShadingMode::kNone) {
+    list.push_back(settings.shading.mode == ShadingMode::kAuto
+                       ? NamedValue{"shading", std::string("auto")}
+                       : NamedValue{"shading", whole(settings.shading.coefficients)});
+  }
   const std::vector<NamedValue> rest = {
       {"variance", std::string(settings.shared_variance ? "shared" : "own")},
       {"chains", whole(settings.chains)},
@@ -64,6 +69,7 @@ std::vector<NamedValue> named_settings(const SegmentSettings& settings) {
     list.push_back({"mask", settings.mask.generic_string()});
     if (!settings.mask_sha256.empty()) list.push_back({"mask_sha256", settings.mask_sha256});
   }
+  name_light_files(settings.light, list);
   return list;
 }
 

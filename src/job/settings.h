@@ -10,6 +10,7 @@
 
 #include "diagnose/verdict.h"
 #include "image/read.h"
+#include "job/light_files.h"
 #include "job/shard.h"
 #include "measure/particles.h"
 #include "model/neighbourhood.h"
@@ -26,6 +27,14 @@ struct BlurSettings {
   double value = 0.0;  // for kGiven
 };
 
+// Uneven light (job/restore_shaded.h): modelled where it shows, left out, or modelled with so many
+// coefficients along a side.
+enum class ShadingMode { kAuto, kNone, kGiven };
+struct ShadingSettings {
+  ShadingMode mode = ShadingMode::kNone;
+  int coefficients = 0;  // for kGiven
+};
+
 inline constexpr int kAutoClasses = 0;  // chosen by the data (job/choose_classes.h)
 
 // Settings that change results; all of them stand in the record.
@@ -35,6 +44,7 @@ struct SegmentSettings {
   CouplingSettings coupling;
   bool shared_variance = false;
   BlurSettings blur;
+  ShadingSettings shading;
   int chains = 4;  // 2..16
   std::uint64_t seed = 1;
   ScheduleSettings schedule;
@@ -44,6 +54,7 @@ struct SegmentSettings {
   std::optional<double> pixel_size_um;  // > 0; overrides that of the file
   std::filesystem::path mask;           // file, or folder of files named as the images; 0 = outside
   std::string mask_sha256;              // of the mask of the image at hand (job/mask.h)
+  LightFiles light;
 };
 
 // Settings that do not.

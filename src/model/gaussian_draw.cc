@@ -6,15 +6,10 @@
 namespace stillfield {
 namespace {
 
-struct ClassMoments {
-  double n = 0.0;
-  double mean = 0.0;
-  double squares = 0.0;  // sum of squared deviations from the class mean
-};
-
 ClassMoments moments(const GreyLevels& grey, const ClassSums& s) {
   ClassMoments m;
   m.n = static_cast<double>(s.observed);
+  m.weight = m.n;
   if (s.observed == 0) return m;
   // 128-bit integers keep n * sum(l^2) - (sum l)^2 exact for any image.
   using Wide = unsigned __int128;
@@ -29,15 +24,20 @@ ClassMoments moments(const GreyLevels& grey, const ClassSums& s) {
 bool draw_gaussian_classes(const GreyLevels& grey, const std::vector<ClassSums>& sums,
                            const GaussianPrior& prior, RandomStream& random,
                            GaussianClasses& classes) {
-  const std::size_t count = sums.size();
-  std::vector<ClassMoments> m(count);
+  std::vector<ClassMoments> of_class;
+  for (const ClassSums& s : sums) of_class.push_back(moments(grey, s));
+  return draw_gaussian_classes(of_class, prior, random, classes);
+}
+
+bool draw_gaussian_classes(const std::vector<ClassMoments>& m, const GaussianPrior& prior,
+                           RandomStream& random, GaussianClasses& classes) {
+  const std::size_t count = m.size();
   std::vector<double> shape(count), scale(count);
   double shared_shape = 0.5 * prior.nu;
   double shared_scale = 0.5 * prior.nu * prior.variance;
   for (std::size_t k = 0; k < count; ++k) {
-    m[k] = moments(grey, sums[k]);
     const double shift = m[k].mean - prior.mean;
-    const double pull = prior.kappa * m[k].n / (prior.kappa + m[k].n) * shift * shift;
+    const double pull = prior.kappa * m[k].weight / (prior.kappa + m[k].weight) * shift * shift;
     const double squares = 0.5 * (m[k].squares + (m[k].n > 0.0 ? pull : 0.0));
     shape[k] = 0.5 * (prior.nu + m[k].n);
     scale[k] = 0.5 * prior.nu * prior.variance + squares;
@@ -48,8 +48,8 @@ bool draw_gaussian_classes(const GreyLevels& grey, const std::vector<ClassSums>&
   const double shared = classes.shared_variance ? shared_scale / random.gamma(shared_shape) : 0.0;
   for (std::size_t k = 0; k < count; ++k) {
     const double variance = classes.shared_variance ? shared : scale[k] / random.gamma(shape[k]);
-    const double weight = prior.kappa + m[k].n;
-    const double centre = (prior.kappa * prior.mean + m[k].n * m[k].mean) / weight;
+    const double weight = prior.kappa + m[k].weight;
+    const double centre = (prior.kappa * prior.mean + m[k].weight * m[k].mean) / weight;
     drawn.sd[k] = std::sqrt(variance);
     drawn.mean[k] = centre + std::sqrt(variance / weight) * random.normal();
   }

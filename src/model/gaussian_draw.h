@@ -36,10 +36,22 @@ struct GaussianPrior {
   double nu = 2.0;        // weight of s0^2, in pixels
 };
 
+// The pixels of one class as a regression y = g mean + noise; g is 1 under even light.
+struct ClassMoments {
+  double n = 0.0;        // observed pixels
+  double weight = 0.0;   // sum g^2
+  double mean = 0.0;     // sum g y / sum g^2
+  double squares = 0.0;  // sum (y - g mean)^2
+};
+
 // Draws new means and standard deviations into `classes`; false when the order rule kept the old.
 bool draw_gaussian_classes(const GreyLevels& grey, const std::vector<ClassSums>& sums,
                            const GaussianPrior& prior, RandomStream& random,
                            GaussianClasses& classes);
+
+// The same from moments, with sum g^2 in the place of n_k where it weighs the mean.
+bool draw_gaussian_classes(const std::vector<ClassMoments>& moments, const GaussianPrior& prior,
+                           RandomStream& random, GaussianClasses& classes);
 
 }  // namespace stillfield
 

@@ -15,6 +15,15 @@ Traces::Traces(int classes, int chains, bool with_coupling, bool complete)
   if (with_coupling) add("coupling", 0);
 }
 
+void Traces::trace_light(const SurfaceBasis& basis) {
+  light_ = &basis;
+  const std::size_t chains = traces_.front().chains.size();
+  for (const char* name : {"light_centre", "light_top_left", "light_top_right", "light_bottom_left",
+                           "light_bottom_right"}) {
+    traces_.push_back({name, 0, std::vector<std::vector<double>>(chains)});
+  }
+}
+
 void Traces::record(int chain_number, const LabelChain& chain, const Neighbourhood& neighbourhood) {
   const auto c = static_cast<std::size_t>(chain_number);
   std::size_t at = 0;
@@ -29,6 +38,15 @@ void Traces::record(int chain_number, const LabelChain& chain, const Neighbourho
   for (const double sd : chain.model.classes.sd) put(sd);
   if (complete_) put(chain.totals.weighted_pairs(neighbourhood) / sites);
   if (with_coupling_) put(chain.model.prior.beta);
+  if (light_) {
+    const int right = light_->extent.width - 1, bottom = light_->extent.height - 1;
+    put(SurfaceRow(*light_, chain.light, bottom / 2).at(right / 2));
+    for (const int y : {0, bottom}) {
+      const SurfaceRow row(*light_, chain.light, y);
+      put(row.at(0));
+      put(row.at(right));
+    }
+  }
 }
 
 void Traces::clear() {

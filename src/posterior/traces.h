@@ -5,6 +5,7 @@
 #include <string>
 #include <vector>
 
+#include "model/spline_surface.h"
 #include "sampler/label_chain.h"
 
 namespace stillfield {
@@ -25,6 +26,9 @@ class Traces {
   // Adds the current state of one chain. Different chains may record at the same time.
   void record(int chain_number, const LabelChain& chain, const Neighbourhood& neighbourhood);
 
+  // Records the light of shaded chains as well: at the centre and at the corners of the frame.
+  void trace_light(const SurfaceBasis& basis);
+
   // Forgets everything recorded so far.
   void clear();
 
@@ -34,6 +38,7 @@ class Traces {
  private:
   bool with_coupling_;
   bool complete_;
+  const SurfaceBasis* light_ = nullptr;
   std::vector<Trace> traces_;
 };
 

@@ -38,6 +38,8 @@ void describe(Archive& archive, InputFacts& input) {
   archive("samples", input.samples);
   archive("channels", input.channels);
   archive("pixel_size_um", input.pixel_size_um);
+  archive("pixel_size_from", input.pixel_size_from);
+  archive("plane", input.plane);
   archive("notes", input.notes);
 }
 
@@ -95,6 +97,17 @@ void describe(Archive& archive, BlurFacts& blur) {
   archive("upper90", blur.upper90);
   archive("estimated", blur.estimated);
   archive("modelled", blur.modelled);
+}
+
+template <class Archive>
+void describe(Archive& archive, ShadingFacts& shading) {
+  archive("coefficients_a_side", shading.coefficients);
+  archive("modelled", shading.modelled);
+  archive("first_span", shading.first_span);
+  archive("lowest", shading.lowest);
+  archive("highest", shading.highest);
+  archive("mean_sd", shading.mean_sd);
+  archive("largest_sd", shading.largest_sd);
 }
 
 template <class Archive>
@@ -201,6 +214,7 @@ void describe(Archive& archive, ImageRecord& record) {
     archive("class_choice", record.class_choice);
     archive("model", record.model);
     archive("blur", record.blur);
+    archive("shading", record.shading);
     archive("coupling_tried", record.coupling_tried);
     archive("schedule", record.schedule);
     archive("scalars", record.scalars);

@@ -18,6 +18,7 @@
 #include "report/blur_facts.h"
 #include "report/named_value.h"
 #include "report/restoration_facts.h"
+#include "report/shading_facts.h"
 
 namespace stillfield {
 
@@ -35,6 +36,8 @@ struct InputFacts {
   int channels = 1;
   double pixel_size_um = kUnknown;
   std::vector<std::string> notes;  // of the reader and of the grey levels
+  std::string pixel_size_from;     // "option", "OME metadata", "resolution tags"; empty: unknown
+  std::string plane;               // "z 3 of 12, channel 1 of 2, time 1 of 1"; empty without OME
 };
 
 struct GreyFacts {
@@ -140,6 +143,7 @@ struct ImageRecord {
   ClassChoiceFacts class_choice;
   ModelFacts model;
   BlurFacts blur;
+  ShadingFacts shading;
   std::vector<CouplingTried> coupling_tried;
   ScheduleFacts schedule;
   std::vector<NamedSummary> scalars;

@@ -46,6 +46,7 @@ struct LabelChain {
   LabelModel model;
   AlignedBuffer<std::uint8_t> labels;  // colour-split with guards
   LabelTotals totals;                  // of the current labels
+  std::vector<double> light;           // of shaded_chain.h; empty: even
   // Visits to each class above the first since they were last emptied (< 256); empty while
   // warming up.
   AlignedBuffer<std::uint8_t> visits;

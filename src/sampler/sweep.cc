@@ -5,76 +5,18 @@
 
 #include "core/elementary.h"
 #include "sampler/row_pairs.h"
+#include "sampler/weight_layout.h"
 #include "simd/label_statistics.h"
 #include "simd/level_lookup.h"
 
 namespace stillfield {
-namespace {
-
-// Weights of a row: its K planes one after the other, so that a row pair is one piece of memory.
-// Long planes get a tail that keeps them from competing for the same cache lines, as pieces at
-// multiples of 2048 bytes do.
-std::ptrdiff_t weight_plane(const Colouring& c) {
-  return c.plane_stride() + (c.plane_stride() % 512 == 0 ? 80 : 0);
-}
-
-std::ptrdiff_t weight_row(const Colouring& c, int planes, int colour, int slice, int row) {
-  const auto rows = static_cast<std::ptrdiff_t>(c.plane_row(colour, slice, row)) / c.plane_stride();
-  return rows * planes * weight_plane(c);
-}
-
-std::size_t weight_elements(const Colouring& c, int planes) {
-  const auto rows = static_cast<std::ptrdiff_t>(c.plane_elements()) / c.plane_stride();
-  return static_cast<std::size_t>(rows * planes * weight_plane(c));
-}
-
-// Label 0 has fewer neighbours at the border than the two-label kernel's table assumes: the ratio
-// is corrected by exp(-beta * missing weight).
-double missing_weight(const Colouring& c, int x, int y, int z) {
-  const Extent& e = c.extent();
-  double sum = 0.0;
-  for (const NeighbourRing& ring : c.neighbourhood().rings) {
-    int missing = 0;
-    for (const Displacement& d : ring.neighbours) {
-      missing += x + d.x < 0 || x + d.x >= e.width || y + d.y < 0 || y + d.y >= e.height ||
-                 z + d.z < 0 || z + d.z >= e.depth;
-    }
-    sum += ring.weight * missing;
-  }
-  return sum;
-}
-
-void correct_border(const Colouring& c, double beta, int colour, int slice, int row,
-                    float* weights) {
-  const int y = c.y_of(colour, row);
-  const int z = c.z_of(colour, slice);
-  const int first = c.first_x(colour, slice, row);
-  const int sites = c.sites(colour, slice, row);
-  const Extent& e = c.extent();
-  const auto correct = [&](int j) {
-    const double missing = missing_weight(c, first + 2 * j, y, z);
-    if (missing > 0.0) weights[j] *= static_cast<float>(exact_exp(-beta * missing));
-  };
-  const bool edge_row = y == 0 || y == e.height - 1;
-  const bool edge_slice = c.volume() && (z == 0 || z == e.depth - 1);
-  if (edge_row || edge_slice) {
-    for (int j = 0; j < sites; ++j) correct(j);
-  } else if (sites > 0) {
-    correct(0);
-    if (sites > 1) correct(sites - 1);
-  }
-}
-
-}  // namespace
 
 void prepare_weights(const ObservedField& field, const LabelModel& model, const Pool& pool,
                      WeightPlanes& weights) {
   const Colouring& c = *field.colouring;
   fill_weight_table(*field.grey, model, weights.table);
   const int planes = weights.table.planes;
-  if (weights.value.size() != weight_elements(c, planes)) {
-    weights.value = AlignedBuffer<float>(weight_elements(c, planes));
-  }
+  make_room_for_weights(c, weights);
   for (int colour = 0; colour < c.colours(); ++colour) {
     for_row_pairs(c, colour, pool, [&](int slice, int first_row, int rows) {
       for (int row = first_row; row < first_row + rows; ++row) {

@@ -20,6 +20,8 @@ const std::vector<ThirdParty>& third_parties() {
       {"Eigen/", {"model", "sampler", "diagnose"}},
       {"opencv2/", {"measure", "image"}},
       {"tiff", {"image"}},
+      {"jpeglib", {"image"}},
+      {"jerror", {"image"}},
       {"openssl/", {"image"}},
       {"pugixml", {"image"}},
       {"nlohmann/", {"report"}},
@@ -130,11 +132,12 @@ const std::set<std::string>& standard_headers() {
   return list;
 }
 
-// POSIX.1-2017 headers that a portable command-line program may need.
+// POSIX.1-2017 headers that a portable command-line program may need, and that of flock, which POSIX
+// lacks and every system we build on has.
 const std::set<std::string>& posix_headers() {
   static const std::set<std::string> list = {
-      "dirent.h",      "errno.h",    "fcntl.h",        "pthread.h",  "signal.h",   "sys/file.h",
-      "sys/ioctl.h",   "sys/mman.h", "sys/resource.h", "sys/stat.h", "sys/time.h", "sys/types.h",
+      "dirent.h",      "errno.h",    "fcntl.h",        "pthread.h",  "signal.h",   "sys/ioctl.h",
+      "sys/file.h",    "sys/mman.h", "sys/resource.h", "sys/stat.h", "sys/time.h", "sys/types.h",
       "sys/utsname.h", "sys/wait.h", "termios.h",      "time.h",     "unistd.h"};
   return list;
 }

@@ -81,7 +81,7 @@ TEST_CASE("two classes: same bytes everywhere") {
 
 TEST_CASE("three classes, rows and chains in parallel: same bytes everywhere") {
   // Few replicates: the large image would take most of the time of all tests.
-  check_labels(3, {"--replicates", "4"});
+  check_labels(3, {"--replicates", "6"});
 }
 
 TEST_CASE("five classes, eight neighbours, shared variance: same bytes everywhere") {

@@ -188,3 +188,37 @@ TEST_CASE("kinds of JPEG and BMP that cannot be read are named") {
   put(folder / "a.bmp", bmp);
   CHECK_THAT(sentence_for(folder / "a.bmp"), Contains("is a compressed or 8-bit BMP"));
 }
+
+TEST_CASE("a JPEG with damaged data is refused, one with harmless dirt is noted, both silently") {
+  const TempFolder folder;
+  cv::Mat noise(64, 64, CV_8UC1);
+  for (int y = 0; y < 64; ++y) {
+    for (int x = 0; x < 64; ++x) {
+      noise.at<std::uint8_t>(y, x) = static_cast<std::uint8_t>(pattern(x, y, 0, 255));
+    }
+  }
+  REQUIRE(cv::imwrite((folder / "a.jpg").string(), noise));
+  const std::string whole = get(folder / "a.jpg");
+  const Field clean = read_page(folder / "a.jpg");
+  CHECK(clean.notes.empty());
+  const CapturedStderr capture;
+  // The coded data follow the start of scan of one component: 2 + 8 bytes.
+  const std::size_t scan = whole.find("\xff\xda") + 10;
+  std::string damaged = whole;
+  damaged.erase(scan + 400, 300);
+  put(folder / "b.jpg", damaged);
+  CHECK_THAT(sentence_of(ErrorKind::kInput, [&] { read_page(folder / "b.jpg"); }),
+             Contains("the JPEG data are damaged ("));
+  std::string dirty = whole;
+  dirty.insert(whole.find("\xff\xc4"), "dirt");
+  put(folder / "c.jpg", dirty);
+  const Field field = read_page(folder / "c.jpg");
+  REQUIRE(field.notes.size() == 1);
+  CHECK_THAT(field.notes[0], Contains("the JPEG decoder warns: "));
+  int wrong = 0;
+  for (int y = 0; y < 64; ++y) {
+    for (int x = 0; x < 64; ++x) wrong += field.pixels.at(x, y) != clean.pixels.at(x, y);
+  }
+  CHECK(wrong == 0);
+  CHECK(capture.text().empty());
+}

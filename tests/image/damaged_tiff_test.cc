@@ -1,5 +1,7 @@
 // Broken, cut and lying TIFF files give one sentence each and nothing on the error stream.
 #include <catch2/catch.hpp>
+#include <initializer_list>
+#include <map>
 
 #include "captured_stderr.h"
 #include "image/read.h"
@@ -41,6 +43,51 @@ std::string hand_made(std::uint32_t width, std::uint32_t height, std::uint32_t s
     file += number(tag, 2) + number(type, 2) + number(1, 4) + number(value, 4);
   }
   return file + number(0, 4);
+}
+
+struct Entry {
+  std::uint32_t tag;
+  std::uint32_t type;  // 3: 16 bits, 4: 32 bits
+  std::uint32_t count;
+  std::uint32_t value;
+};
+
+// Grey of 8 x 4 pixels in one strip or tile of 32 bytes at 8, but for the entries given, which
+// replace those of the same tag; the directory at 512 is followed by the one at `next`.
+std::string lying(const std::vector<Entry>& lies, std::uint32_t next = 0, bool tiled = false) {
+  std::map<std::uint32_t, Entry> entries;
+  for (const Entry& entry : std::initializer_list<Entry>{{256, 4, 1, 8},
+                                                         {257, 4, 1, 4},
+                                                         {258, 3, 1, 8},
+                                                         {259, 3, 1, 1},
+                                                         {262, 3, 1, 1},
+                                                         {277, 3, 1, 1}}) {
+    entries[entry.tag] = entry;
+  }
+  if (tiled) {
+    for (const Entry& entry : std::initializer_list<Entry>{
+             {322, 4, 1, 16}, {323, 4, 1, 16}, {324, 4, 1, 8}, {325, 4, 1, 256}}) {
+      entries[entry.tag] = entry;
+    }
+  } else {
+    entries[273] = {273, 4, 1, 8};
+    entries[278] = {278, 4, 1, 4};
+    entries[279] = {279, 4, 1, 32};
+  }
+  for (const Entry& entry : lies) entries[entry.tag] = entry;
+  const auto number = [](std::uint32_t value, int bytes) {
+    std::string text;
+    for (int i = 0; i < bytes; ++i) text += static_cast<char>(value >> (8 * i) & 0xff);
+    return text;
+  };
+  std::string file = "II" + number(42, 2) + number(512, 4);
+  file.resize(512, '\x05');
+  file += number(static_cast<std::uint32_t>(entries.size()), 2);
+  for (const auto& [tag, entry] : entries) {
+    file +=
+        number(tag, 2) + number(entry.type, 2) + number(entry.count, 4) + number(entry.value, 4);
+  }
+  return file + number(next, 4);
 }
 
 }  // namespace
@@ -163,4 +210,52 @@ TEST_CASE("sample formats and colour models that cannot be read are named") {
   recipe.photometric = PHOTOMETRIC_SEPARATED;
   make_tiff<std::uint16_t>(file, recipe, SAMPLEFORMAT_UINT, noise);
   CHECK_THAT(sentence_for(file), Contains("colour model 5 cannot be read"));
+}
+
+TEST_CASE(
+    "headers that lie about tiles, strips, channels and pages are refused before allocation") {
+  const TempFolder folder;
+  const fs::path file = folder / "a.tif";
+  const auto sentence = [&](const std::string& bytes) {
+    put(file, bytes);
+    return sentence_for(file);
+  };
+  const CapturedStderr capture;
+  REQUIRE(sentence(lying({})) == "no error");
+  REQUIRE(sentence(lying({}, 0, true)) == "no error");
+  constexpr std::uint32_t kMost = 0xffffffff;
+
+  CHECK_THAT(sentence(lying({{256, 4, 1, kMost}, {257, 4, 1, kMost}})),
+             StartsWith(file.string()));  // libtiff refuses it first
+  // Tiles: larger than the limit; within it, but not with the padding; of no size.
+  CHECK_THAT(sentence(lying({{322, 4, 1, 0x7ffffff0}, {323, 4, 1, 0x7ffffff0}}, 0, true)),
+             Contains("more than the limit"));
+  CHECK_THAT(sentence(lying({{256, 4, 1, 1},
+                             {257, 4, 1, 1 << 16},
+                             {322, 4, 1, 1 << 15},
+                             {323, 4, 1, 1 << 15},
+                             {324, 4, 2, 8},
+                             {325, 4, 2, 8}},
+                            0, true)),
+             Contains("32768 x 65536 pixels, more than the limit"));
+  CHECK_THAT(sentence(lying({{322, 4, 1, 0}}, 0, true)), StartsWith(file.string()));
+  CHECK_THAT(sentence(lying({{322, 4, 1, 1 << 14}, {323, 4, 1, 1 << 14}}, 0, true)),
+             Contains("less data than its header claims"));
+  // Strips: more of them than the directory has room for, too large, outside the file.
+  CHECK_THAT(sentence(lying({{257, 4, 1, 1 << 27}, {278, 4, 1, 1}, {273, 4, kMost, 8}})),
+             StartsWith(file.string()));
+  CHECK(sentence(lying({{279, 4, 1, kMost}})) == "no error");  // libtiff counts anew
+  CHECK_THAT(sentence(lying({{273, 4, 1, kMost}})), Contains("the file is truncated"));
+  CHECK(sentence(lying({{278, 4, 1, kMost}})) == "no error");  // means one strip
+  // 65535 channels, in planes or not.
+  CHECK_THAT(sentence(lying({{277, 3, 1, 65535}})), StartsWith(file.string()));
+  CHECK_THAT(sentence(lying({{277, 3, 1, 65535}, {284, 3, 1, 2}})), StartsWith(file.string()));
+  // A description longer than the file.
+  const std::string long_text = sentence(lying({{270, 2, kMost, 8}}));
+  CHECK((long_text == "no error" || long_text.starts_with(file.string())));
+  // Directories in a ring of one, and after the end.
+  CHECK(sentence(lying({}, 512)) == "no error");  // the ring ends where it began
+  CHECK(count_pages(file) == 1);
+  CHECK_THAT(sentence(lying({}, 100000)), Contains("directory"));
+  CHECK(capture.text().empty());
 }

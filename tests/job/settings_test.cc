@@ -30,6 +30,10 @@ TEST_CASE("every setting that changes results changes the digest") {
     s.blur.mode = s.blur.mode == BlurMode::kAuto ? BlurMode::kNone : BlurMode::kAuto;
   }));
   CHECK(differs([](auto& s) { s.blur = {BlurMode::kGiven, 0.8}; }));
+  CHECK(differs([](auto& s) { s.shading.mode = ShadingMode::kAuto; }));
+  CHECK(differs([](auto& s) { s.shading = {ShadingMode::kGiven, 8}; }));
+  CHECK(differs([](auto& s) { s.light.flat_field = "flat.tif"; }));
+  CHECK(differs([](auto& s) { s.light.background = "dark.tif"; }));
   CHECK(differs([](auto& s) { s.chains = 5; }));
   CHECK(differs([](auto& s) { s.seed = 2; }));
   CHECK(differs([](auto& s) { s.schedule.sweeps_a_block = 8; }));

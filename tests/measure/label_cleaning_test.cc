@@ -104,26 +104,29 @@ TEST_CASE("one particle more or less changes what it can change") {
   square(25, 25, 4);
   LabelMeasureSettings settings;
   const std::vector<MeasureKey> keys = measure_keys(settings);
-  const std::vector<double> variance = one_particle_variances(labels.view(), {}, settings);
+  const std::vector<double> variance = one_particle_variances(labels.view(), {}, settings, {3, 3});
   const std::vector<Particle> list = find_particles(labels.view(), 2, {}, settings.particles).list;
   REQUIRE(list.size() == 3);
   const double w = list[0].weight, v = list[2].weight;
   const double mean = (2 * w * 4 + v * 16) / (2 * w + v);
   const double less_small = (w * 4 + v * 16) / (w + v);
+  const double weight = (2 * w + v) / 3;  // of one more, of 3 pixels
+  const double more = (2 * w * 4 + v * 16 + weight * 3) / (4 * weight);
   const double d4 = std::sqrt(16 / 3.141592653589793), d16 = 2 * d4;
   // The median is that of a small square; without one of them the large one holds more weight than
-  // half, and without the large one nothing changes.
+  // half; without the large one, or with one more small one, nothing changes.
   REQUIRE(v > w);
   for (std::size_t i = 0; i < keys.size(); ++i) {
     CAPTURE(keys[i].name, keys[i].label);
     if (keys[i].label == 1) continue;
     if (keys[i].name == "particle_count") {
-      CHECK(variance[i] == Approx(std::pow((2 * w + v) / 3 / 2, 2)));
+      // Both small squares are below twice 3 pixels.
+      CHECK(variance[i] == Approx(weight * (weight / 4 + 2 * w)));
     } else if (keys[i].name == "mean_particle_area") {
-      CHECK(variance[i] ==
-            Approx((2 * std::pow(less_small - mean, 2) + std::pow(4 - mean, 2)) / 12));
+      const double out = (2 * std::pow(less_small - mean, 2) + std::pow(4 - mean, 2)) / 3;
+      CHECK(variance[i] == Approx((out + std::pow(more - mean, 2)) / 2));
     } else if (keys[i].name == "d50") {
-      CHECK(variance[i] == Approx(2 * std::pow(d16 - d4, 2) / 12));
+      CHECK(variance[i] == Approx(2 * std::pow(d16 - d4, 2) / 6));
     } else if (keys[i].name == "area_fraction") {
       CHECK(variance[i] == 0);
     }

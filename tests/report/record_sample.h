@@ -33,7 +33,7 @@ inline ImageRecord record_sample(const std::string& path = "heat/a, \"b\".tif") 
   record.libraries = {{"libtiff", std::string("4.5.0")}};
   record.settings_digest = std::string(64, 'a');
   record.input = {path,     std::string(64, 'b'), 1234, 2, 3, 40, 30, "16-bit unsigned integer", 1,
-                  kUnknown, {"a note", "another"}};
+                  kUnknown, {"a note", "another"}, "", "z 1 of 3, channel 1 of 1, time 1 of 1"};
   record.grey = {300, 250, 17.5, 0.25, 1199, 1};
   record.settings = {{"classes", std::uint64_t{2}},
                      {"variance", std::string("own")},
@@ -47,6 +47,7 @@ inline ImageRecord record_sample(const std::string& path = "heat/a, \"b\".tif") 
   record.model = {
       1.25, kUnknown, kUnknown, kUnknown, {{1, 0, summary, summary}, {2, -0.3, summary, summary}}};
   record.blur = {0.8, 0.7, 0.9, true, true};
+  record.shading = {6, true, 0.25, 0.875, 1.125, 0.005, 0.02};
   record.coupling_tried = {{1.0, -100.5}, {1.25, -99.75}};
   record.schedule = {240, 96, 144, false, true};
   record.scalars = {{"area_fraction of class 1", summary}, {"equal_neighbours", {}}};

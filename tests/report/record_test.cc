@@ -26,18 +26,23 @@ TEST_CASE("a record reads back as it was written") {
   CHECK(again.outputs.at(0).bytes == 999);
   CHECK(again.blur.lower90 == 0.7);
   CHECK(again.blur.modelled);
+  CHECK(again.shading.lowest == 0.875);
+  CHECK(again.shading.modelled);
 }
 
 TEST_CASE("keys have a fixed order, and what differs between equal runs is in one object") {
   const ordered_json json = ordered_json::parse(record_text(record_sample()));
   std::vector<std::string> keys;
   for (const auto& item : json.items()) keys.push_back(item.key());
-  CHECK(keys == std::vector<std::string>{
-                    "format",          "program",      "command",   "version",        "libraries",
-                    "settings_digest", "input",        "settings",  "image_seed",     "grey_levels",
-                    "class_choice",    "model",        "blur",      "coupling_tried", "schedule",
-                    "scalars",         "probability",  "bootstrap", "verdict",        "assessment",
-                    "checks",          "measurements", "outputs",   "cautions",       "run"});
+  CHECK(keys == std::vector<std::string>{"format",      "program",      "command",
+                                         "version",     "libraries",    "settings_digest",
+                                         "input",       "settings",     "image_seed",
+                                         "grey_levels", "class_choice", "model",
+                                         "blur",        "shading",      "coupling_tried",
+                                         "schedule",    "scalars",      "probability",
+                                         "bootstrap",   "verdict",      "assessment",
+                                         "checks",      "measurements", "outputs",
+                                         "cautions",    "run"});
   ImageRecord other = record_sample();
   other.run = {"scalar", 4, 9, 9, 9};
   ordered_json other_json = ordered_json::parse(record_text(other));

@@ -6,10 +6,10 @@ usage: bootstrap_shares.py PARTS.csv [...]     (of study_trust ... --parts PARTS
 For each group of measurements the shares c, w, k, s, q, h of measure/bootstrap_interval.h are those
 that minimise, over cells of shapes, noise and blur that count alike,
 
-    mean log u  +  WEIGHT * mean over cells of (coverage - .9)^2
+    mean log u  +  mean over cells of w (coverage - .9)^2,  w = HIGH above .9, LOW below,
 
 with coverage of the 90 % interval smoothed by a logistic function so that it can be followed
-downhill. Prints the shares, the coverage of each cell, and the same for shares that were fitted to
+downhill; in the end u is scaled so that the mean over cells is MEAN_COVERAGE. Prints the shares, the coverage of each cell, and the same for shares that were fitted to
 the other three families only: how far they carry over to shapes they have not seen.
 
 Needs python3-numpy and python3-scipy.
@@ -31,7 +31,11 @@ GROUPS = {
     "mean_intensity": ["mean_intensity"],
 }
 SHARES = ["correction", "within", "between", "bias", "posterior", "floor"]
-WEIGHT = 30.0
+HIGH = 60.0
+LOW = 75.0
+USUAL = np.array([1.0, 0, 0, 0, 0, 0])  # correction, and logarithms of the other shares
+RESTRAINT = np.array([0.5, 0.001, 0.001, 0.001, 0.001, 0.001])
+MEAN_COVERAGE = 0.91
 SMOOTH = 0.15  # of u: width of the logistic function
 
 
@@ -48,7 +52,7 @@ def read(files):
                 if not np.isfinite(posterior):
                     posterior = 0.0
                 rows.append(((family, float(sigma), float(blur)), name, truth, value, b0, w0, b1, w1, n,
-                             posterior, floor))
+                             posterior, floor, int(number)))
     return rows
 
 
@@ -56,7 +60,7 @@ class Sample:
     def __init__(self, rows):
         self.cell = [r[0] for r in rows]
         self.name = np.array([r[1] for r in rows])
-        a = np.array([r[2:] for r in rows], dtype=float)
+        a = np.array([r[2:-1] for r in rows], dtype=float)
         truth, value, b0, w0, b1, w1, n, posterior, floor = a.T
         self.bias = (b0 + b1) / 2
         self.error = value - truth
@@ -68,9 +72,11 @@ class Sample:
             groups[(r[0], r[1])].append(i)
         self.groups = {k: np.array(v) for k, v in groups.items()}
 
+    def variance(self, shares):
+        return np.maximum(np.array(shares[1:]) @ self.parts, 1e-18)
+
     def half_width(self, shares):
-        u = np.sqrt(np.maximum(np.array(shares[1:]) @ self.parts, 1e-18))
-        return self.quantile * u
+        return self.quantile * np.sqrt(self.variance(shares))
 
     def remaining(self, shares):
         return self.error - shares[0] * self.bias
@@ -81,7 +87,8 @@ class Sample:
         inside = 1 / (1 + np.exp(-np.clip((half - e) / (SMOOTH * half), -50, 50)))
         total = 0.0
         for rows in self.groups.values():
-            total += np.mean(np.log(half[rows])) + WEIGHT * (np.mean(inside[rows]) - 0.9) ** 2
+            off = np.mean(inside[rows]) - 0.9
+            total += np.mean(np.log(half[rows])) + (HIGH if off > 0 else LOW) * off**2
         return total / len(self.groups)
 
     def coverage(self, shares):
@@ -91,15 +98,26 @@ class Sample:
 
 def fit(sample):
     best = None
-    for start in range(3):
+    for start in range(6):
         random = np.random.default_rng(start)
-        at = np.concatenate([[1.0], random.normal(-0.5, 1.0, 5)])
-        r = minimize(lambda th: sample.loss(np.concatenate([th[:1], np.exp(th[1:])])) + 0.001 * np.sum(th[1:] ** 2),
+        at = np.concatenate([[1.0], random.normal(0.0, 0.5 + 0.2 * start, 5)])
+        r = minimize(lambda th: sample.loss(np.concatenate([th[:1], np.exp(th[1:])])) + RESTRAINT @ (th - USUAL) ** 2,
                      at, method="Nelder-Mead",
                      options={"maxfev": 4000, "maxiter": 4000, "adaptive": True, "xatol": 1e-3, "fatol": 1e-6})
         if best is None or r.fun < best.fun:
             best = r
-    return np.concatenate([best.x[:1], np.exp(best.x[1:])])
+    return rescaled(sample, np.concatenate([best.x[:1], np.exp(best.x[1:])]))
+
+
+def rescaled(sample, shares):
+    """The logistic function leans to one side: the variance is scaled to the wanted mean coverage."""
+    low, high = 0.2, 5.0
+    for _ in range(40):
+        factor = np.sqrt(low * high)
+        scaled = np.concatenate([shares[:1], factor * shares[1:]])
+        mean = np.mean([c for c, _ in sample.coverage(scaled).values()])
+        low, high = (factor, high) if mean < MEAN_COVERAGE else (low, factor)
+    return scaled
 
 
 def summary(coverage):
@@ -108,14 +126,24 @@ def summary(coverage):
             f"{np.sum(c < 0.75)} below .75")
 
 
+def with_number_variance(rows, counts, variance):
+    """The floor of sizes is the change by one particle times the variance of their number."""
+    of_image = {(r[0], r[-1]): v for r, v in zip(counts, variance)}
+    return [r[:-2] + (r[-2] * of_image.get((r[0], r[-1]), 0.0), r[-1]) for r in rows]
+
+
 def main():
     rows = read(sys.argv[1:])
     for group, names in GROUPS.items():
         chosen = [r for r in rows if r[1] in names]
         if not chosen:
             continue
+        if group == "sizes":
+            chosen = with_number_variance(chosen, counts, variance)
         sample = Sample(chosen)
         shares = fit(sample)
+        if group == "particle_count":
+            counts, variance = chosen, sample.variance(shares)
         coverage = sample.coverage(shares)
         print(f"\n{group}: " + ", ".join(f"{n} {s:.2f}" for n, s in zip(SHARES, shares)))
         print("  all families:", summary(coverage))
