@@ -14,7 +14,6 @@
 
 using namespace stillfield;
 using namespace stillfield::study;
-using stillfield::test::TempFolder;
 using Catch::Matchers::Contains;
 using stillfield::test::TempFolder;
 
