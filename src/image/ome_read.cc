@@ -97,25 +97,18 @@ bool is_order(std::string_view order) {
 // The place that lies `step` places after `first` in the order of the file; nothing past the end.
 std::optional<OmePlane> place_after(const OmeImage& image, const OmePlane& first,
                                     std::int64_t step) {
-  std::int64_t index = 0;
-  std::int64_t stride = 1;
   const auto size = [&](char axis) {
     return std::int64_t{axis == 'Z' ? image.depth : axis == 'C' ? image.channels : image.times};
   };
+  OmePlane place = first;
+  std::int64_t carry = step;
   for (const char axis : image.order.substr(2)) {
-    index += stride * (axis == 'Z' ? first.z : axis == 'C' ? first.c : first.t);
-    if (stride > kLargestAxis) break;
-    stride *= size(axis);
+    int& at = axis == 'Z' ? place.z : axis == 'C' ? place.c : place.t;
+    carry += at;
+    at = static_cast<int>(carry % size(axis));
+    carry /= size(axis);
   }
-  index += step;
-  OmePlane place;
-  for (const char axis : image.order.substr(2)) {
-    (axis == 'Z'   ? place.z
-     : axis == 'C' ? place.c
-                   : place.t) = static_cast<int>(index % size(axis));
-    index /= size(axis);
-  }
-  if (index > 0) return std::nullopt;
+  if (carry > 0) return std::nullopt;
   return place;
 }
 

@@ -122,7 +122,7 @@ TEST_CASE("sizes come from headers alone") {
   put(folder / "a.ppm", "P6\n3 4\n255\n");
   put(folder / "a.pbm", "P4 12 13\n");
   put(folder / "a.jpg",
-      std::string("\xff\xd8\xff\xe0\0\4ab\xff\xff\xc2\0\x11\x08\1\2\3\4\3xxxxxxxxx", 30));
+      std::string("\xff\xd8\xff\xe0\0\4ab\xff\xff\xc2\0\x11\x08\1\2\3\4\3xxxxxxxxx", 28));
   put(folder / "a.bmp", std::string("BM") + std::string(16, '\0') +
                             std::string("\x10\0\0\0\xf0\xff\xff\xff\1\0\x18\0xxxxx", 17));
   put(folder / "bad.pgm", "P5 x");
