@@ -9,8 +9,10 @@ that minimise, over cells of shapes, noise and blur that count alike,
     mean log u  +  mean over cells of w (coverage - .9)^2,  w = HIGH above .9, LOW below,
 
 with coverage of the 90 % interval smoothed by a logistic function so that it can be followed
-downhill; in the end u is scaled so that the mean over cells is MEAN_COVERAGE. Prints the shares, the coverage of each cell, and the same for shares that were fitted to
-the other three families only: how far they carry over to shapes they have not seen.
+downhill; in the end u is scaled so that the mean over cells is MEAN_COVERAGE. Prints the shares, the
+coverage of each cell when its images are judged by shares fitted to the other half of the images, and
+a summary of the same with shares fitted to the other three families only: how far they carry over to
+shapes they have not seen.
 
 Needs python3-numpy and python3-scipy.
 """
@@ -58,6 +60,7 @@ def read(files):
 
 class Sample:
     def __init__(self, rows):
+        rows = sorted(rows, key=lambda r: (r[0], r[1]))
         self.cell = [r[0] for r in rows]
         self.name = np.array([r[1] for r in rows])
         a = np.array([r[2:-1] for r in rows], dtype=float)
@@ -71,6 +74,11 @@ class Sample:
         for i, r in enumerate(rows):
             groups[(r[0], r[1])].append(i)
         self.groups = {k: np.array(v) for k, v in groups.items()}
+        self.first = np.array([v[0] for v in self.groups.values()])  # of each group's run of rows
+        self.size = np.array([len(v) for v in self.groups.values()])
+
+    def by_group(self, values):
+        return np.add.reduceat(values, self.first) / self.size
 
     def variance(self, shares):
         return np.maximum(np.array(shares[1:]) @ self.parts, 1e-18)
@@ -85,11 +93,8 @@ class Sample:
         half = self.half_width(shares)
         e = np.abs(self.remaining(shares))
         inside = 1 / (1 + np.exp(-np.clip((half - e) / (SMOOTH * half), -50, 50)))
-        total = 0.0
-        for rows in self.groups.values():
-            off = np.mean(inside[rows]) - 0.9
-            total += np.mean(np.log(half[rows])) + (HIGH if off > 0 else LOW) * off**2
-        return total / len(self.groups)
+        off = self.by_group(inside) - 0.9
+        return np.mean(self.by_group(np.log(half)) + np.where(off > 0, HIGH, LOW) * off**2)
 
     def coverage(self, shares):
         inside = np.abs(self.remaining(shares)) <= self.half_width(shares)
@@ -101,9 +106,14 @@ def fit(sample):
     for start in range(6):
         random = np.random.default_rng(start)
         at = np.concatenate([[1.0], random.normal(0.0, 0.5 + 0.2 * start, 5)])
-        r = minimize(lambda th: sample.loss(np.concatenate([th[:1], np.exp(th[1:])])) + RESTRAINT @ (th - USUAL) ** 2,
-                     at, method="Nelder-Mead",
-                     options={"maxfev": 4000, "maxiter": 4000, "adaptive": True, "xatol": 1e-3, "fatol": 1e-6})
+
+        def restrained(th):
+            loss = sample.loss(np.concatenate([th[:1], np.exp(th[1:])]))
+            return loss + RESTRAINT @ (th - USUAL) ** 2
+
+        r = minimize(restrained, at, method="Nelder-Mead",
+                     options={"maxfev": 4000, "maxiter": 4000, "adaptive": True,
+                              "xatol": 1e-3, "fatol": 1e-6})
         if best is None or r.fun < best.fun:
             best = r
     return rescaled(sample, np.concatenate([best.x[:1], np.exp(best.x[1:])]))
@@ -132,6 +142,25 @@ def with_number_variance(rows, counts, variance):
     return [r[:-2] + (r[-2] * of_image.get((r[0], r[-1]), 0.0), r[-1]) for r in rows]
 
 
+def pooled(parts):
+    """Coverage of cells of which each part was judged by other shares."""
+    inside, images = defaultdict(float), defaultdict(int)
+    for coverage in parts:
+        for cell, (c, n) in coverage.items():
+            inside[cell] += c * n
+            images[cell] += n
+    return {cell: (inside[cell] / images[cell], images[cell]) for cell in images}
+
+
+def judged_by_others(chosen, part_of):
+    """Each part of the rows is judged by shares fitted to all other parts."""
+    judged = []
+    for part in sorted({part_of(r) for r in chosen}):
+        shares = fit(Sample([r for r in chosen if part_of(r) != part]))
+        judged.append(Sample([r for r in chosen if part_of(r) == part]).coverage(shares))
+    return pooled(judged)
+
+
 def main():
     rows = read(sys.argv[1:])
     for group, names in GROUPS.items():
@@ -144,17 +173,15 @@ def main():
         shares = fit(sample)
         if group == "particle_count":
             counts, variance = chosen, sample.variance(shares)
-        coverage = sample.coverage(shares)
         print(f"\n{group}: " + ", ".join(f"{n} {s:.2f}" for n, s in zip(SHARES, shares)))
-        print("  all families:", summary(coverage))
-        for (cell, name), (c, n) in sorted(coverage.items()):
+        print("  fitted to all:", summary(sample.coverage(shares)))
+        # Sides come in cycles of four: halves of whole cycles have the same sides.
+        unseen_images = judged_by_others(chosen, lambda r: r[-1] // 4 % 2)
+        print("  unseen images:", summary(unseen_images))
+        for (cell, name), (c, n) in sorted(unseen_images.items()):
             if name in ("area_fraction", "particle_count", "d50", "interface_length"):
                 print(f"    {cell[0]:9s} sigma {cell[1]:.1f} blur {cell[2]:.0f} {name:17s} {c:.2f} of {n}")
-        unseen = {}
-        for family in sorted({r[0][0] for r in chosen}):
-            others = fit(Sample([r for r in chosen if r[0][0] != family]))
-            unseen.update(Sample([r for r in chosen if r[0][0] == family]).coverage(others))
-        print("  unseen family:", summary(unseen))
+        print("  unseen family:", summary(judged_by_others(chosen, lambda r: r[0][0])))
 
 
 main()
